@@ -1,0 +1,223 @@
+package model
+
+import (
+	"math"
+)
+
+// A Species is one kind of molecule.
+type Species struct {
+	Name string
+	// Start is the amount at time 0 (a count where Fixed).
+	Start float64
+	// Fixed marks a species whose number does not scale with copies: an
+	// operator site, a plasmid. It stands in laws as a count.
+	Fixed bool
+}
+
+// A Constant is a named number that rate laws read.
+type Constant struct {
+	Name  string
+	Value float64
+}
+
+// A Term is a species with its whole-number coefficient in a reaction, or, among
+// products, a burst.
+type Term struct {
+	Species int
+	Count   int
+	// Burst, where positive, makes the count random: geometric on 0, 1, 2, …
+	// with this mean, P(k) = (1−q) qᵏ, q = Burst/(1+Burst). Count is then 0.
+	Burst float64
+}
+
+// A Reaction is one channel of the network, bound to values of the constants
+// and of copies.
+type Reaction struct {
+	Name string
+	// Uses are consumed, Needs are read and not consumed, Makes are produced.
+	Uses, Needs, Makes []Term
+	// MassAction tells that the law is Coefficient ∏ xᵢ^νᵢ over Reactants, with
+	// exact combinatorics in the propensity.
+	MassAction bool
+	// Coefficient is the mass-action constant, in amounts and the time unit.
+	Coefficient float64
+	// Reactants are Uses and Needs together, one term a species, by species.
+	Reactants []Term
+	// Net is the whole-number change of each species by one firing, without
+	// bursts; species of no change are left out. Bursts are the random products.
+	Net    []Term
+	Bursts []Term
+	// Law is the rate law in amounts with every constant bound. For mass action
+	// it is the product form Coefficient ∏ xᵢ^νᵢ.
+	Law *Node
+	// Free is the same law with constants still named, for derivatives in them.
+	Free *Node
+	// Scale turns the law's value into a propensity: copies, or 1 for a
+	// reaction that changes a fixed-count species.
+	Scale float64
+
+	reads  []int   // species that the propensity depends on, ascending
+	factor float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
+}
+
+// A Range bounds the count of one species in a declared core, both ends
+// included; Max is math.MaxInt64 where there is no upper bound.
+type Range struct {
+	Species  int
+	Min, Max int64
+}
+
+// A DeclaredCore is a core that the design file states itself.
+type DeclaredCore struct {
+	State  string
+	Ranges []Range
+}
+
+// A Network is a design bound to numbers: every constant and copies have a
+// value. It is immutable and safe for concurrent use.
+type Network struct {
+	Title      string
+	TimeUnit   string  // unit of every rate is 1/TimeUnit
+	Generation float64 // one cell generation in TimeUnit; 0 if not given
+	Copies     float64 // Ω: molecules in one unit of amount
+	Species    []Species
+	Constants  []Constant
+	Reactions  []Reaction
+	Readout    int // the species that orders and names the states
+	Declared   []DeclaredCore
+
+	// File, Text and Digest identify the design file: its name as given, its
+	// bytes, and their SHA-256 in lower-case hex. Empty for a network built in code.
+	File, Text, Digest string
+
+	values []float64 // the constants' values, by index
+}
+
+// Unit gives the molecules in one unit of species i's amount: Copies, or 1 for
+// a fixed-count species. Counts are amounts times Unit.
+func (n *Network) Unit(i int) float64 {
+	if n.Species[i].Fixed {
+		return 1
+	}
+	return n.Copies
+}
+
+// StartCounts gives the molecule counts at time 0, the starting amounts times
+// their unit rounded to the nearest whole number.
+func (n *Network) StartCounts() []int64 {
+	out := make([]int64, len(n.Species))
+	for i, s := range n.Species {
+		out[i] = int64(math.Round(s.Start * n.Unit(i)))
+	}
+	return out
+}
+
+// Amounts converts molecule counts to amounts, into dst if it is long enough.
+func (n *Network) Amounts(dst []float64, counts []int64) []float64 {
+	if cap(dst) < len(counts) {
+		dst = make([]float64, len(counts))
+	}
+	dst = dst[:len(counts)]
+	for i, k := range counts {
+		dst[i] = float64(k) / n.Unit(i)
+	}
+	return dst
+}
+
+// ConstantValues gives the values of the constants by index. The slice must not
+// be changed.
+func (n *Network) ConstantValues() []float64 { return n.values }
+
+// SpeciesIndex gives the index of the named species, or -1.
+func (n *Network) SpeciesIndex(name string) int {
+	for i, s := range n.Species {
+		if s.Name == name {
+			return i
+		}
+	}
+	return -1
+}
+
+// ConstantIndex gives the index of the named constant, or -1.
+func (n *Network) ConstantIndex(name string) int {
+	for i, c := range n.Constants {
+		if c.Name == name {
+			return i
+		}
+	}
+	return -1
+}
+
+// Reads lists, ascending, the species whose counts the propensity of reaction r
+// depends on: those its law reads, its reactants, and those it uses.
+func (n *Network) Reads(r int) []int { return n.Reactions[r].reads }
+
+// Propensity gives the expected firings of reaction r per unit of time at the
+// given counts (one per species).
+//
+// Mass action has exact combinatorics: k Ω^(1−order) ∏ nᵢ!/(nᵢ−νᵢ)!, with no
+// 1/ν!. A reaction whose law is given is Scale·v(n/Ω), and 0 where its uses are
+// not all there, so that no count falls below 0. Gillespie, J. Phys. Chem. 81
+// (1977) 2340.
+//
+// The result may be negative or not finite where the design's law is; callers
+// must check it.
+func (n *Network) Propensity(r int, counts []int64) float64 {
+	re := &n.Reactions[r]
+	if re.MassAction {
+		a := re.factor
+		for _, t := range re.Reactants {
+			k := counts[t.Species]
+			for j := range t.Count {
+				a *= float64(max(k-int64(j), 0))
+			}
+		}
+		return a
+	}
+	for _, t := range re.Uses {
+		if counts[t.Species] < int64(t.Count) {
+			return 0
+		}
+	}
+	var buf [8]float64
+	return re.Scale * re.Law.Eval(n.Amounts(buf[:], counts), nil)
+}
+
+// MassActionFactor gives the c of the propensity c ∏ nᵢ!/(nᵢ−νᵢ)! of a
+// mass-action reaction.
+func (n *Network) MassActionFactor(r int) float64 { return n.Reactions[r].factor }
+
+// Flux gives the deterministic law v of reaction r at amounts x, in amount (or
+// firings, where it changes a fixed-count species) per unit of time.
+func (n *Network) Flux(r int, x []float64) float64 { return n.Reactions[r].Law.Eval(x, nil) }
+
+// FluxGradient gives Flux and overwrites dx, one per species, with its partial
+// derivatives in the amounts.
+func (n *Network) FluxGradient(r int, x, dx []float64) float64 {
+	return n.Reactions[r].Law.Gradient(x, nil, dx, nil)
+}
+
+// FluxConstants gives Flux and overwrites dc, one per constant, with its partial
+// derivatives in the constants.
+func (n *Network) FluxConstants(r int, x, dc []float64) float64 {
+	return n.Reactions[r].Free.Gradient(x, n.values, nil, dc)
+}
+
+// AmountChange gives what one firing of reaction r per unit of time adds to
+// species i's amount per unit of flux: net change (bursts by their mean) times
+// Scale over Unit. The rate equations are dxᵢ/dt = Σ_r AmountChange(r, i)·Flux(r).
+func (n *Network) AmountChange(r, i int) float64 {
+	re := &n.Reactions[r]
+	s := 0.0
+	for _, t := range re.Net {
+		if t.Species == i {
+			s += float64(t.Count)
+		}
+	}
+	for _, t := range re.Bursts {
+		if t.Species == i {
+			s += t.Burst
+		}
+	}
+	return s * re.Scale / n.Unit(i)
+}
