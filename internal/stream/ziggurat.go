@@ -1,0 +1,146 @@
+package stream
+
+import "math"
+
+// A layer is one strip of a ziggurat: 53 random bits j make x = j·width, which
+// lies under the curve for sure where j < inside.
+type layer struct {
+	inside uint64
+	width  float64
+}
+
+// A ziggurat covers a falling density f on x ≥ 0, f(0) = 1, by 256 strips of the
+// same area: the lowest reaches to right and has the tail beyond it. Marsaglia
+// and Tsang, J. Stat. Softw. 5 (2000) 8. The strip and the place in it are made
+// of different bits of a random number, as Doornik (Univ. of Oxford working
+// paper, 2005) has it, so that the law is exact to the last of the 53 bits.
+type ziggurat struct {
+	layers [256]layer
+	edge   [257]float64 // right edges; edge[0] is the area over f(right), edge[256] is 0
+	height [257]float64 // f(edge), but 0 at 0: the base has the tail to itself
+}
+
+// newZiggurat stacks the strips of a density f with its inverse, from the right
+// edge of the lowest strip and the area of a strip.
+func newZiggurat(f, inverse func(float64) float64, right, area float64) *ziggurat {
+	z := &ziggurat{}
+	z.edge[0], z.edge[1], z.height[1] = area/f(right), right, f(right)
+	for i := 2; i < 256; i++ {
+		z.height[i] = z.height[i-1] + area/z.edge[i-1]
+		z.edge[i] = inverse(z.height[i])
+	}
+	z.height[256] = 1
+	for i := range z.layers {
+		z.layers[i] = layer{uint64(z.edge[i+1] / z.edge[i] * 0x1p53), z.edge[i] * 0x1p-53}
+	}
+	return z
+}
+
+// The right edges for 256 strips are those of Marsaglia and Tsang, page 6; the
+// areas follow from them: right·f(right) and the tail beyond.
+const (
+	expRight    = 7.69711747013104972
+	normalRight = 3.6541528853610088
+)
+
+// The two ziggurats. They are built once and never written again.
+var (
+	expZiggurat = newZiggurat(
+		func(x float64) float64 { return math.Exp(-x) },
+		func(y float64) float64 { return -math.Log(y) },
+		expRight, (expRight+1)*math.Exp(-expRight))
+	normalZiggurat = newZiggurat(
+		func(x float64) float64 { return math.Exp(-x * x / 2) },
+		func(y float64) float64 { return math.Sqrt(-2 * math.Log(y)) },
+		normalRight, normalRight*math.Exp(-normalRight*normalRight/2)+
+			math.Sqrt(math.Pi/2)*math.Erfc(normalRight/math.Sqrt2))
+)
+
+// Exp gives an exponential number of mean 1.
+func (s *Stream) Exp() float64 {
+	b := s.src.Uint64()
+	l := &expZiggurat.layers[b&255]
+	x := float64(int64(b>>11)) * l.width
+	if b>>11 < l.inside {
+		return x
+	}
+	return s.expEdge(b, x)
+}
+
+// expEdge decides the one case in a hundred that is not inside its strip for
+// sure. Beyond the right edge an exponential law starts anew.
+func (s *Stream) expEdge(b uint64, x float64) float64 {
+	z, shift := expZiggurat, 0.0
+	for {
+		i, j := b&255, b>>11
+		switch {
+		case j < z.layers[i].inside:
+			return shift + x
+		case i == 0:
+			shift += expRight
+		case z.height[i]+s.Float64()*(z.height[i+1]-z.height[i]) < math.Exp(-x):
+			return shift + x
+		}
+		b = s.src.Uint64()
+		x = float64(int64(b>>11)) * z.layers[b&255].width
+	}
+}
+
+// Normal gives a number of the standard normal law.
+func (s *Stream) Normal() float64 {
+	b := s.src.Uint64()
+	l := &normalZiggurat.layers[b&255]
+	x := float64(int64(b>>11)) * l.width
+	if b>>11 >= l.inside {
+		x = s.normalEdge(b, x)
+	}
+	return signed(x, b)
+}
+
+// FillNormal overwrites dst with the numbers that as many calls of Normal would
+// give.
+func (s *Stream) FillNormal(dst []float64) {
+	for i := range dst {
+		b := s.src.Uint64()
+		l := &normalZiggurat.layers[b&255]
+		x := float64(int64(b>>11)) * l.width
+		if b>>11 >= l.inside {
+			x = s.normalEdge(b, x)
+		}
+		dst[i] = signed(x, b)
+	}
+}
+
+// signed gives x the sign of bit 8 of b, which neither the strip nor the place
+// in it is made of.
+func signed(x float64, b uint64) float64 {
+	return math.Float64frombits(math.Float64bits(x) | b>>8<<63)
+}
+
+func (s *Stream) normalEdge(b uint64, x float64) float64 {
+	z := normalZiggurat
+	for {
+		i, j := b&255, b>>11
+		switch {
+		case j < z.layers[i].inside:
+			return x
+		case i == 0:
+			return s.normalTail()
+		case z.height[i]+s.Float64()*(z.height[i+1]-z.height[i]) < math.Exp(-x*x/2):
+			return x
+		}
+		b = s.src.Uint64()
+		x = float64(int64(b>>11)) * z.layers[b&255].width
+	}
+}
+
+// normalTail draws from the normal law beyond normalRight. Marsaglia,
+// Technometrics 6 (1964) 101.
+func (s *Stream) normalTail() float64 {
+	for {
+		x := s.Exp() / normalRight
+		if 2*s.Exp() > x*x {
+			return normalRight + x
+		}
+	}
+}
