@@ -11,6 +11,7 @@ import (
 	"encoding/binary"
 	"math/bits"
 
+	//lint:ignore SA1019 this source was asked for; it is pinned, and imported here alone so that it can be replaced
 	"golang.org/x/exp/rand"
 )
 
