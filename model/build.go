@@ -2,6 +2,7 @@ package model
 
 import (
 	"fmt"
+	"maps"
 	"math"
 	"slices"
 )
@@ -19,7 +20,11 @@ type Draft struct {
 	Readout    int
 	Declared   []DeclaredCore
 
+	// File, Text and Digest identify the design file: its name as given, its
+	// bytes, and their SHA-256 in lower-case hex.
 	File, Text, Digest string
+	// Notes are what is worth a look in the design file, though not wrong.
+	Notes Problems
 }
 
 // A DraftReaction is a reaction whose law still names its constants.
@@ -39,7 +44,7 @@ func (d *Draft) Bind(copies float64, set map[string]float64) (*Network, error) {
 	n := &Network{
 		Title: d.Title, TimeUnit: d.TimeUnit, Generation: d.Generation, Copies: d.Copies,
 		Species: d.Species, Constants: slices.Clone(d.Constants), Readout: d.Readout, Declared: d.Declared,
-		File: d.File, Text: d.Text, Digest: d.Digest,
+		File: d.File, Text: d.Text, Digest: d.Digest, Notes: d.Notes,
 	}
 	if copies != 0 {
 		n.Copies = copies
@@ -48,6 +53,9 @@ func (d *Draft) Bind(copies float64, set map[string]float64) (*Network, error) {
 		return nil, fmt.Errorf("copies = %v: must be a positive number", n.Copies)
 	}
 	if err := n.setConstants(set); err != nil {
+		return nil, err
+	}
+	if err := n.checkStarts(); err != nil {
 		return nil, err
 	}
 	for _, dr := range d.Reactions {
@@ -61,10 +69,10 @@ func (d *Draft) Bind(copies float64, set map[string]float64) (*Network, error) {
 }
 
 func (n *Network) setConstants(set map[string]float64) error {
-	for name, v := range set {
-		i := n.ConstantIndex(name)
+	for _, name := range slices.Sorted(maps.Keys(set)) {
+		v, i := set[name], n.ConstantIndex(name)
 		if i < 0 {
-			return fmt.Errorf("no constant is called %q", name)
+			return fmt.Errorf("no constant is called %q: %s", name, nearHint(name, n.constantNames()))
 		}
 		if v < 0 || math.IsNaN(v) || math.IsInf(v, 0) {
 			return fmt.Errorf("%s = %v: a constant must be a finite number, not below 0", name, v)
@@ -78,37 +86,51 @@ func (n *Network) setConstants(set map[string]float64) error {
 	return nil
 }
 
+// checkStarts sees that the molecules at the start can be counted.
+func (n *Network) checkStarts() error {
+	for i, s := range n.Species {
+		if k := s.Start * n.Unit(i); !(k >= 0 && k <= largestWhole) {
+			return fmt.Errorf("%s starts with %g molecules; the most that can be counted is %d", s.Name, k, int64(largestWhole))
+		}
+	}
+	return nil
+}
+
+func (n *Network) constantNames() []string {
+	out := make([]string, len(n.Constants))
+	for i, c := range n.Constants {
+		out[i] = c.Name
+	}
+	return out
+}
+
+func (n *Network) speciesNames() []string {
+	out := make([]string, len(n.Species))
+	for i, s := range n.Species {
+		out[i] = s.Name
+	}
+	return out
+}
+
 func (n *Network) bindReaction(d DraftReaction) (Reaction, error) {
 	r := Reaction{
-		Name: d.Name, Uses: d.Uses, Needs: d.Needs, Makes: d.Makes,
+		Name: d.Name, Uses: d.Uses, Needs: d.Needs, Makes: slices.Clone(d.Makes),
 		MassAction: d.MassAction != nil, Scale: n.Copies,
 		Reactants: merge(1, d.Uses, 1, d.Needs), Net: merge(-1, d.Uses, 1, d.Makes),
 	}
-	for _, t := range d.Makes {
-		if t.Burst > 0 {
-			r.Bursts = append(r.Bursts, t)
-		}
+	if err := n.bindBursts(&r); err != nil {
+		return r, err
 	}
 	for _, t := range slices.Concat(r.Net, r.Bursts) {
 		if n.Species[t.Species].Fixed {
 			r.Scale = 1
 		}
 	}
-	r.Free = d.Rate
-	if r.MassAction {
-		r.Coefficient = d.MassAction.Eval(nil, n.values)
-		if !(r.Coefficient >= 0) || math.IsInf(r.Coefficient, 0) {
-			return r, fmt.Errorf("reaction %q: mass_action is %v; it must be a finite number, not below 0", r.Name, r.Coefficient)
-		}
-		r.Free = product(d.MassAction, r.Reactants)
-		r.factor = r.Coefficient * r.Scale
-		for _, t := range r.Reactants {
-			if !n.Species[t.Species].Fixed {
-				r.factor /= math.Pow(n.Copies, float64(t.Count))
-			}
-		}
+	if err := n.bindLaw(&r, d); err != nil {
+		return r, err
 	}
 	r.Law = r.Free.Bind(n.values)
+	r.program = Compile(r.Law)
 	r.reads = r.Law.Reads()
 	for _, t := range d.Uses {
 		if !slices.Contains(r.reads, t.Species) {
@@ -117,6 +139,48 @@ func (n *Network) bindReaction(d DraftReaction) (Reaction, error) {
 	}
 	slices.Sort(r.reads)
 	return r, nil
+}
+
+// bindBursts gives each burst its mean.
+func (n *Network) bindBursts(r *Reaction) error {
+	for i := range r.Makes {
+		t := &r.Makes[i]
+		if t.Mean != nil {
+			t.Burst = t.Mean.Eval(nil, n.values)
+		}
+		if t.Mean == nil && t.Burst == 0 {
+			continue
+		}
+		if !(t.Burst > 0) || math.IsInf(t.Burst, 0) {
+			return fmt.Errorf("reaction %q: the mean burst of %s is %v; it must be a finite number above 0", r.Name, n.Species[t.Species].Name, t.Burst)
+		}
+		r.Bursts = append(r.Bursts, *t)
+	}
+	return nil
+}
+
+// bindLaw sets the law with constants still named and, for mass action, the
+// coefficient and the propensity's factor.
+func (n *Network) bindLaw(r *Reaction, d DraftReaction) error {
+	r.Free = d.Rate
+	if !r.MassAction {
+		if d.Rate == nil {
+			return fmt.Errorf("reaction %q has no law", r.Name)
+		}
+		return nil
+	}
+	r.Coefficient = d.MassAction.Eval(nil, n.values)
+	if !(r.Coefficient >= 0) || math.IsInf(r.Coefficient, 0) {
+		return fmt.Errorf("reaction %q: mass_action is %v; it must be a finite number, not below 0", r.Name, r.Coefficient)
+	}
+	r.Free = product(d.MassAction, r.Reactants)
+	r.factor = r.Coefficient * r.Scale
+	for _, t := range r.Reactants {
+		if !n.Species[t.Species].Fixed {
+			r.factor /= math.Pow(n.Copies, float64(t.Count))
+		}
+	}
+	return nil
 }
 
 // product is the tree of coefficient·∏ xᵢ^νᵢ.

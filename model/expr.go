@@ -39,6 +39,9 @@ type Node struct {
 	Value float64
 	Index int
 	Args  []*Node
+	// At is the byte offset in the design file (after a byte-order mark, if it
+	// has one) of the token that the node was read from; 0 for a tree built in code.
+	At int
 }
 
 // Number returns a literal node.
@@ -312,6 +315,9 @@ func (op Op) Arity() int {
 	}
 	return 2
 }
+
+// opName is how op is written in a formula.
+func opName(op Op) string { return opNames[op] }
 
 var opNames = map[Op]string{
 	OpAdd: "+", OpSub: "-", OpMul: "*", OpDiv: "/", OpPow: "^",

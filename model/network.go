@@ -28,6 +28,10 @@ type Term struct {
 	// Burst, where positive, makes the count random: geometric on 0, 1, 2, …
 	// with this mean, P(k) = (1−q) qᵏ, q = Burst/(1+Burst). Count is then 0.
 	Burst float64
+	// Mean is the burst's mean with constants still named; nil where the term is
+	// no burst, or the burst was given as a number in code. Bind sets Burst to
+	// its value.
+	Mean *Node
 }
 
 // A Reaction is one channel of the network, bound to values of the constants
@@ -56,9 +60,13 @@ type Reaction struct {
 	// reaction that changes a fixed-count species.
 	Scale float64
 
-	reads  []int   // species that the propensity depends on, ascending
-	factor float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
+	program *Program
+	reads   []int   // species that the propensity depends on, ascending
+	factor  float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
 }
+
+// Program gives the law compiled for fast evaluation at many amounts.
+func (r *Reaction) Program() *Program { return r.program }
 
 // A Range bounds the count of one species in a declared core, both ends
 // included; Max is math.MaxInt64 where there is no upper bound.
@@ -89,6 +97,8 @@ type Network struct {
 	// File, Text and Digest identify the design file: its name as given, its
 	// bytes, and their SHA-256 in lower-case hex. Empty for a network built in code.
 	File, Text, Digest string
+	// Notes are what is worth a look in the design file, though not wrong.
+	Notes Problems
 
 	values []float64 // the constants' values, by index
 }
@@ -180,7 +190,7 @@ func (n *Network) Propensity(r int, counts []int64) float64 {
 		}
 	}
 	var buf [8]float64
-	return re.Scale * re.Law.Eval(n.Amounts(buf[:], counts), nil)
+	return re.Scale * re.program.Eval(n.Amounts(buf[:], counts))
 }
 
 // MassActionFactor gives the c of the propensity c ∏ nᵢ!/(nᵢ−νᵢ)! of a
@@ -189,7 +199,7 @@ func (n *Network) MassActionFactor(r int) float64 { return n.Reactions[r].factor
 
 // Flux gives the deterministic law v of reaction r at amounts x, in amount (or
 // firings, where it changes a fixed-count species) per unit of time.
-func (n *Network) Flux(r int, x []float64) float64 { return n.Reactions[r].Law.Eval(x, nil) }
+func (n *Network) Flux(r int, x []float64) float64 { return n.Reactions[r].program.Eval(x) }
 
 // FluxGradient gives Flux and overwrites dx, one per species, with its partial
 // derivatives in the amounts.

@@ -1,0 +1,208 @@
+package model
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"github.com/pelletier/go-toml/v2/unstable"
+)
+
+// designer turns a TOML tree into a draft; what is wrong goes to the reporter.
+type designer struct {
+	*reporter
+	draft *Draft
+	names nameTable
+	// unsure tells that species or constants may have been lost to a syntax
+	// error, so that an unknown name says nothing.
+	unsure    bool
+	speciesAt []int // where each species stands in the file
+	reactions map[string]int
+	readoutAt int // where readout was set, −1 before
+}
+
+func newDesigner(doc *tomlDoc) *designer {
+	return &designer{
+		reporter: doc.reporter, draft: &Draft{Copies: 1}, names: nameTable{},
+		unsure: doc.lostHeader, reactions: map[string]int{}, readoutAt: -1,
+	}
+}
+
+// topKeys are the keys of a design file.
+func topKeys() []string {
+	return []string{"title", "time", "generation", "copies", "species", "constants", "reaction", "core"}
+}
+
+// read takes species and constants first, so that their order in the file does
+// not matter.
+func (d *designer) read(root *tomlTable) {
+	for i := range root.entries {
+		d.top(&root.entries[i])
+	}
+	d.required(root)
+	if e := root.get("species"); e != nil {
+		d.readSpecies(e)
+	}
+	if e := root.get("constants"); e != nil {
+		d.readConstants(e)
+	}
+	if e := root.get("reaction"); e != nil {
+		d.readReactions(e)
+	}
+	if e := root.get("core"); e != nil {
+		d.readCores(e)
+	}
+	d.chooseReadout()
+	d.noteUnused()
+	d.checkStarts()
+}
+
+// top reads the plain keys and refuses those that are not known.
+func (d *designer) top(e *tomlEntry) {
+	switch e.key {
+	case "title":
+		d.draft.Title, _ = d.text(e)
+	case "time":
+		if unit, ok := d.text(e); ok && unit == "" {
+			d.errorf(e.value.at, timeHint, "the time unit is empty")
+		} else {
+			d.draft.TimeUnit = unit
+		}
+	case "generation":
+		d.draft.Generation, _ = d.number(e, positive)
+	case "copies":
+		if v, ok := d.number(e, positive); ok {
+			d.draft.Copies = v
+		}
+	case "species", "constants", "reaction", "core":
+	default:
+		d.unknownKey(e, topKeys())
+	}
+}
+
+const timeHint = `write the unit of every rate: time = "min"`
+
+// required reports what no design can do without. A damaged table may have had it.
+func (d *designer) required(root *tomlTable) {
+	if root.damaged {
+		return
+	}
+	if root.get("time") == nil {
+		d.errorf(0, timeHint, "the time unit is missing")
+	}
+	if d.unsure {
+		return
+	}
+	if root.get("species") == nil {
+		d.errorf(0, "write [species], then one line a species: protein = { start = 0 }", "the design has no species")
+	}
+	if root.get("reaction") == nil {
+		d.errorf(0, "begin each reaction with [[reaction]]", "the design has no reactions")
+	}
+}
+
+func (d *designer) unknownKey(e *tomlEntry, known []string) {
+	d.errorf(e.at, nearHint(e.key, known), "unknown key %q", e.key)
+}
+
+// table gives the table of an entry that must be one.
+func (d *designer) table(e *tomlEntry, hint string) *tomlTable {
+	if e.value.table == nil {
+		d.errorf(e.value.at, hint, "%s must be a table, not %s", e.key, e.value.valueKind())
+		return nil
+	}
+	return e.value.table
+}
+
+// text gives the string of an entry that must be one.
+func (d *designer) text(e *tomlEntry) (string, bool) {
+	if e.value.kind != unstable.String {
+		d.errorf(e.value.at, "write it in quotes: "+e.key+` = "…"`, "%s must be a text, not %s", e.key, e.value.valueKind())
+		return "", false
+	}
+	return e.value.text, true
+}
+
+// flag gives the value of an entry that must be true or false.
+func (d *designer) flag(e *tomlEntry) bool {
+	if e.value.kind != unstable.Bool {
+		d.errorf(e.value.at, "write "+e.key+" = true, without quotes, or leave it out", "%s must be true or false, not %s", e.key, e.value.valueKind())
+		return false
+	}
+	return e.value.text == "true"
+}
+
+// span is what a number may be.
+type span struct {
+	allowed string
+	within  func(v float64) bool
+}
+
+var (
+	positive    = span{"a finite number above 0", func(v float64) bool { return v > 0 }}
+	notNegative = span{"a finite number, not below 0", func(v float64) bool { return v >= 0 }}
+)
+
+// number gives the value of an entry that must be a finite number within s.
+func (d *designer) number(e *tomlEntry, s span) (float64, bool) {
+	v, ok := d.anyNumber(e.key, &e.value, s.allowed)
+	if !ok {
+		return 0, false
+	}
+	if math.IsNaN(v) || math.IsInf(v, 0) || !s.within(v) {
+		d.errorf(e.value.at, "it must be "+s.allowed, "%s = %s is not allowed", e.key, e.value.text)
+		return 0, false
+	}
+	return v, true
+}
+
+// anyNumber reads a number, finite or not.
+func (d *designer) anyNumber(key string, v *tomlValue, want string) (float64, bool) {
+	if v.kind != unstable.Integer && v.kind != unstable.Float {
+		hint := "it must be " + want
+		if v.kind == unstable.String && looksNumeric(v.text) {
+			hint = "leave out the quotes: " + key + " = " + v.text
+		}
+		d.errorf(v.at, hint, "%s must be a number, not %s", key, v.valueKind())
+		return 0, false
+	}
+	x, err := parseNumber(v)
+	if err != nil {
+		d.errorf(v.at, "it must be "+want, "%s = %s is too large", key, v.text)
+		return 0, false
+	}
+	return x, true
+}
+
+// whole gives the value of an entry that must be a whole number within s.
+func (d *designer) whole(e *tomlEntry, s span) (int64, bool) {
+	v, ok := d.number(e, s)
+	if !ok {
+		return 0, false
+	}
+	if v != math.Trunc(v) || math.Abs(v) > largestWhole {
+		d.errorf(e.value.at, fmt.Sprintf("it must be a whole number of molecules, at most %d", int64(largestWhole)), "%s = %s is not a whole number that can be counted", e.key, e.value.text)
+		return 0, false
+	}
+	return int64(v), true
+}
+
+// largestWhole is the largest count that a float64 still tells from the next one.
+const largestWhole = 1 << 53
+
+// declare enters a name, or reports why it cannot be one.
+func (d *designer) declare(e *tomlEntry, thing namedThing) {
+	thing.at = e.at
+	switch old := d.names[e.key]; {
+	case !isIdentifier(e.key):
+		d.errorf(e.at, "a name has letters, digits and _, and does not begin with a digit", "%q cannot be the name of a %s", e.key, thing.kind)
+	case functions()[e.key] != 0:
+		d.errorf(e.at, "choose another name", "%q is the name of a function, so it cannot name a %s", e.key, thing.kind)
+	case slices.Contains(reservedWords(), e.key):
+		d.errorf(e.at, "choose another name, such as "+e.key+"_", "%q is a reserved word of formulas, so it cannot name a %s", e.key, thing.kind)
+	case old != nil:
+		d.errorf(e.at, "choose another name", "%q is the name of a %s already, on line %d", e.key, old.kind, d.lineOf(old.at))
+		return
+	}
+	d.names[e.key] = &thing
+}
