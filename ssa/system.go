@@ -1,0 +1,132 @@
+package ssa
+
+import (
+	"cmp"
+	"math"
+	"slices"
+
+	"holdfast/model"
+)
+
+// A system is a plan worked out: what the workers share and only read.
+type system struct {
+	Plan
+	changes    [][]change // of each reaction, by species
+	bursts     [][]burst
+	dependents [][]int32 // reactions whose propensity a firing may change
+	targets    []target
+	groups     []group
+}
+
+// A change is what one firing adds to a species' count.
+type change struct {
+	species int32
+	by      int64
+}
+
+// A burst is a geometric product: the whole part of an exponential number times
+// scale, P(k) = (1−q) qᵏ with q = mean/(1+mean) and scale = −1/ln q.
+type burst struct {
+	species int32
+	scale   float64
+}
+
+func newSystem(p Plan) *system {
+	s := &system{Plan: p}
+	readers := make([][]int32, len(p.Network.Species))
+	for r := range p.Network.Reactions {
+		if !s.live(r) {
+			continue
+		}
+		for _, i := range p.Network.Reads(r) {
+			readers[i] = append(readers[i], int32(r))
+		}
+	}
+	for r := range p.Network.Reactions {
+		s.addReaction(&p.Network.Reactions[r], readers)
+	}
+	s.targets = newTargets(p.Cores, p.From)
+	s.groups = s.group()
+	return s
+}
+
+// live tells whether reaction r may ever fire: its mass-action constant is not 0.
+func (s *system) live(r int) bool {
+	return !s.Network.Reactions[r].MassAction || s.Network.MassActionFactor(r) > 0
+}
+
+func (s *system) addReaction(re *model.Reaction, readers [][]int32) {
+	var changes []change
+	var bursts []burst
+	var dependents []int32
+	for _, t := range re.Net {
+		changes = append(changes, change{int32(t.Species), int64(t.Count)})
+		dependents = append(dependents, readers[t.Species]...)
+	}
+	for _, t := range re.Bursts {
+		bursts = append(bursts, burst{int32(t.Species), 1 / math.Log1p(1/t.Burst)})
+		dependents = append(dependents, readers[t.Species]...)
+	}
+	slices.Sort(dependents)
+	s.changes = append(s.changes, changes)
+	s.bursts = append(s.bursts, bursts)
+	s.dependents = append(s.dependents, slices.Compact(dependents))
+}
+
+// A target is a core that ends a run. Its bounds are tested in the order that is
+// most likely to miss.
+type target struct {
+	index  int
+	core   *model.Core
+	bounds []bound
+}
+
+type bound struct {
+	species   int
+	low, high int64
+}
+
+// newTargets lists the cores other than from. Species whose range in the core
+// lies farthest from that of the core that runs start in come first.
+func newTargets(cores []model.Core, from int) []target {
+	var out []target
+	for i := range cores {
+		if i == from {
+			continue
+		}
+		t := target{index: i, core: &cores[i]}
+		for s := range cores[i].Low {
+			t.bounds = append(t.bounds, bound{s, cores[i].Low[s], cores[i].High[s]})
+		}
+		if from >= 0 {
+			slices.SortStableFunc(t.bounds, func(a, b bound) int { return cmp.Compare(b.gap(&cores[from]), a.gap(&cores[from])) })
+		}
+		out = append(out, t)
+	}
+	return out
+}
+
+// gap is the distance from the bound to the other core's range of the same
+// species; negative where they overlap.
+func (b bound) gap(other *model.Core) float64 {
+	return max(float64(b.low)-float64(other.High[b.species]), float64(other.Low[b.species])-float64(b.high))
+}
+
+// entered gives the index of the first target that holds counts, or −1.
+func (s *system) entered(counts []int64) int {
+	for i := range s.targets {
+		if s.targets[i].holds(counts) {
+			return s.targets[i].index
+		}
+	}
+	return -1
+}
+
+func (t *target) holds(counts []int64) bool {
+	for _, b := range t.bounds {
+		if n := counts[b.species]; n < b.low || n > b.high {
+			return false
+		}
+	}
+	return t.core.Contains(counts)
+}
