@@ -1,0 +1,216 @@
+package lattice
+
+import (
+	"context"
+	"math"
+
+	"holdfast/model"
+)
+
+// A chain is the Markov chain of a network on the part of a box that can be
+// reached, as a sparse list of transitions. Its nodes are the lattice states and,
+// where reactions make bursts, lattice states with a burst under way, in which no
+// time passes.
+type chain struct {
+	species int
+	counts  []int32 // node by node
+	phase   []uint8 // 0 in a lattice state
+	jumps   []int   // longest single step in each species
+	rank    int     // independent directions of species with long ranges
+
+	first []int // transitions of node i are first[i] to first[i+1]
+	to    []int32
+	rate  []float64
+	exit  []float64 // rate out of the box, by node
+	exits []exit    // the same by face
+
+	starts []int32 // nodes that exploration began from
+}
+
+// An exit is a transition out of the box. Faces are numbered 2·species for the
+// low side and one more for the high side.
+type exit struct {
+	node int32
+	face int
+	rate float64
+}
+
+func (c *chain) nodes() int               { return len(c.phase) }
+func (c *chain) point(i int) []int32      { return c.counts[i*c.species : (i+1)*c.species] }
+func (c *chain) edges(i int) (a, b int)   { return c.first[i], c.first[i+1] }
+func (c *chain) isState(i int) bool       { return c.phase[i] == 0 }
+func (c *chain) successors(i int) []int32 { return c.to[c.first[i]:c.first[i+1]] }
+
+// states counts the lattice states.
+func (c *chain) states() int {
+	n := 0
+	for _, p := range c.phase {
+		if p == 0 {
+			n++
+		}
+	}
+	return n
+}
+
+// An explorer builds a chain by breadth-first search, so that conserved totals,
+// parities and whatever else cannot be reached drop out.
+type explorer struct {
+	*chain
+	network *model.Network
+	box     Box
+	moves   []move
+	phases  []phase
+	seen    finder
+	limit   int // nodes allowed
+	point   []int64
+	target  []int64
+}
+
+// explore lists the nodes that can be reached from the starts inside the box. It
+// gives errTooMany with the chain so far when there are more than limit.
+func explore(ctx context.Context, n *model.Network, b Box, starts [][]int64, limit int) (*chain, error) {
+	ms, phases := moves(n)
+	size := len(n.Species)
+	e := &explorer{
+		chain:   &chain{species: size, first: []int{0}, jumps: jumps(size, ms, phases)},
+		network: n, box: b, moves: ms, phases: phases, limit: limit,
+		seen:  newFinder(b, len(phases)),
+		point: make([]int64, size), target: make([]int64, size),
+	}
+	for _, s := range starts {
+		e.starts = append(e.starts, e.node(s, 0))
+	}
+	for i := 0; i < e.nodes(); i++ {
+		if i%4096 == 0 && ctx.Err() != nil {
+			return nil, ctx.Err()
+		}
+		if e.nodes() > limit {
+			return e.chain, errTooMany
+		}
+		if err := e.expand(i); err != nil {
+			return nil, err
+		}
+	}
+	e.rank = dimensions(ms, phases, b, e.long())
+	return e.chain, nil
+}
+
+// long marks the species whose counts on the lattice span more than a few values.
+func (c *chain) long() []bool {
+	const few = 4
+	out := make([]bool, c.species)
+	for s := range out {
+		low, high := int32(math.MaxInt32), int32(0)
+		for i := s; i < len(c.counts); i += c.species {
+			low, high = min(low, c.counts[i]), max(high, c.counts[i])
+		}
+		out[s] = high-low >= few
+	}
+	return out
+}
+
+// node gives the number of the node, new or old.
+func (e *explorer) node(counts []int64, phase int) int32 {
+	slot := e.seen.slot(counts, phase)
+	if i := e.seen.get(slot); i >= 0 {
+		return i
+	}
+	i := int32(e.nodes())
+	e.seen.put(slot, i)
+	for _, k := range counts {
+		e.counts = append(e.counts, int32(k))
+	}
+	e.phase = append(e.phase, uint8(phase))
+	return i
+}
+
+// expand lists the transitions out of node i.
+func (e *explorer) expand(i int) error {
+	for s, k := range e.chain.point(i) {
+		e.point[s] = int64(k)
+	}
+	e.exit = append(e.exit, 0)
+	if p := e.phase[i]; p != 0 {
+		e.burst(i, e.phases[p], int(p))
+		e.first = append(e.first, len(e.to))
+		return nil
+	}
+	for r := range e.moves {
+		m := &e.moves[r]
+		if m.idle {
+			continue
+		}
+		a := e.propensity(r, m)
+		if !(a >= 0) || math.IsInf(a, 1) {
+			return e.badRate(r, a)
+		}
+		if a > 0 {
+			copy(e.target, e.point)
+			for _, t := range m.net {
+				e.target[t.Species] += int64(t.Count)
+			}
+			e.step(i, m.phase, a)
+		}
+	}
+	e.first = append(e.first, len(e.to))
+	return nil
+}
+
+// burst lists the two ways out of a burst under way.
+func (e *explorer) burst(i int, p phase, number int) {
+	copy(e.target, e.point)
+	e.target[p.species]++
+	e.step(i, number, p.again)
+	e.target[p.species]--
+	e.step(i, p.next, 1-p.again)
+}
+
+// step adds the transition from node i to the target, or to its exits.
+func (e *explorer) step(i, phase int, rate float64) {
+	for s, k := range e.target {
+		face := -1
+		if k < e.box.Low[s] {
+			face = 2 * s
+		} else if k > e.box.High[s] {
+			face = 2*s + 1
+		}
+		if face >= 0 {
+			e.exit[i] += rate
+			e.exits = append(e.exits, exit{int32(i), face, rate})
+			return
+		}
+	}
+	j := e.node(e.target, phase)
+	for k := e.first[i]; k < len(e.to); k++ {
+		if e.to[k] == j {
+			e.rate[k] += rate
+			return
+		}
+	}
+	e.to = append(e.to, j)
+	e.rate = append(e.rate, rate)
+}
+
+// propensity evaluates reaction r at the point, from its table where its law
+// reads one species only.
+func (e *explorer) propensity(r int, m *move) float64 {
+	if m.species < 0 {
+		return e.network.Propensity(r, e.point)
+	}
+	k := int(e.point[m.species] - e.box.Low[m.species])
+	for len(m.table) <= k {
+		m.table = append(m.table, math.NaN())
+	}
+	if math.IsNaN(m.table[k]) {
+		m.table[k] = e.network.Propensity(r, e.point)
+	}
+	return m.table[k]
+}
+
+func (e *explorer) badRate(r int, value float64) error {
+	err := &RateError{Reaction: e.network.Reactions[r].Name, Value: value, Counts: append([]int64(nil), e.point...)}
+	for _, s := range e.network.Species {
+		err.Species = append(err.Species, s.Name)
+	}
+	return err
+}

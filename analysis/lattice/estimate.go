@@ -1,0 +1,133 @@
+package lattice
+
+import (
+	"context"
+	"errors"
+	"math"
+	"time"
+)
+
+// An Estimate is what a problem would take, found before any elimination.
+type Estimate struct {
+	// States is the number of lattice states, Nodes the same with bursts under
+	// way counted separately.
+	States, Nodes int
+	Box           Box
+	// Bytes is the memory needed, Seconds the time of one elimination on this
+	// machine, Multiplications its work.
+	Bytes           int64
+	Seconds         float64
+	Multiplications float64
+}
+
+// bytesPerNode is the memory that a node takes besides the factors: its counts,
+// transitions and places, about six transitions a node.
+const bytesPerNode = 450
+
+// Estimate counts the lattice of the first box, which may have to grow, and
+// tells what its elimination takes. Errors are those of Solve.
+func (p Problem) Estimate(ctx context.Context) (Estimate, error) {
+	if err := p.check(); err != nil {
+		return Estimate{}, err
+	}
+	pl, err := p.lay(ctx, firstBox(&p, firstDeviations))
+	if err != nil {
+		return Estimate{}, err
+	}
+	return p.estimate(pl), nil
+}
+
+// laid is a plan with the box that it belongs to.
+type laid struct {
+	*plan
+	box Box
+}
+
+// lay explores the box and plans its elimination, if memory allows.
+func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
+	p.report("counting states", 0)
+	limit := int(min(float64(p.memory())/bytesPerNode, math.MaxInt32-1))
+	c, err := explore(ctx, p.Network, b, p.starts(), limit)
+	if errors.Is(err, errTooMany) {
+		return nil, p.tooMany(c, b)
+	}
+	if err != nil {
+		return nil, err
+	}
+	if err := p.tooDeep(c); err != nil {
+		return nil, err
+	}
+	r, err := findRegions(c, p.Cores)
+	if err != nil {
+		return nil, err
+	}
+	p.report("ordering", 0)
+	l := &laid{newPlan(c, order(c, r.last), r), b}
+	if e := p.estimate(l); e.Bytes > p.memory() {
+		return nil, &TooLargeError{Estimate: e, Allowed: p.memory()}
+	}
+	return l, ctx.Err()
+}
+
+// tooMany refuses a lattice whose states alone do not fit.
+func (p *Problem) tooMany(c *chain, b Box) error {
+	ms, phases := moves(p.Network)
+	long := make([]bool, c.species)
+	for s := range long {
+		long[s] = b.High[s]-b.Low[s] >= 4
+	}
+	if d := dimensions(ms, phases, b, long); d > 3 {
+		return &DimensionError{d, p.names(long)}
+	}
+	e := Estimate{States: c.states(), Nodes: c.nodes(), Box: b, Bytes: int64(c.nodes()) * bytesPerNode * 4}
+	e.Multiplications = 10 * math.Pow(float64(e.Nodes), 1.5)
+	e.Seconds = e.Multiplications / speed() / float64(p.threads())
+	return &TooLargeError{Estimate: e, Allowed: p.memory(), AtLeast: true}
+}
+
+// smallLattice is how many nodes are served in any number of dimensions.
+const smallLattice = 20000
+
+// tooDeep refuses more than three dimensions unless conserved totals leave few
+// states.
+func (p *Problem) tooDeep(c *chain) error {
+	if c.rank > 3 && c.nodes() > smallLattice {
+		return &DimensionError{c.rank, p.names(c.long())}
+	}
+	return nil
+}
+
+func (p *Problem) names(which []bool) []string {
+	var out []string
+	for s, yes := range which {
+		if yes {
+			out = append(out, p.Network.Species[s].Name)
+		}
+	}
+	return out
+}
+
+func (p *Problem) estimate(l *laid) Estimate {
+	vectors := int64(8 + 8*len(p.Cores))
+	return Estimate{
+		States: l.states(), Nodes: l.nodes(), Box: l.box,
+		Bytes:           8*(l.numbers+2*l.peak) + int64(l.nodes())*(bytesPerNode+8*vectors),
+		Seconds:         l.work/speed()/float64(p.threads()) + float64(l.nodes())*4e-6,
+		Multiplications: l.work,
+	}
+}
+
+// speed measures, in a few milliseconds, how many multiplications one thread does
+// in a second.
+func speed() float64 {
+	const n = 96
+	t := team{newWorker()}
+	a, b, c := make([]float64, n*n), make([]float64, n*n), make([]float64, n*n)
+	start, done := time.Now(), 0.0
+	for time.Since(start) < 3*time.Millisecond {
+		t.multiplyAdd(dense(n, n, c), dense(n, n, a), dense(n, n, b))
+		done += n * n * n
+	}
+	const overhead = 0.4 // small fronts run at about this part of the full speed (measured)
+	return overhead * done / time.Since(start).Seconds()
+}
