@@ -34,8 +34,13 @@ type Memory struct {
 // Anderson and Darling (J. Am. Stat. Assoc. 49 (1954) 765), which sees rates that
 // rise, fall, or do both.
 func TestMemory(obs []Observation, level float64) Memory {
-	places := testTimes(byTime(obs, Any))
-	m := Memory{Level: level, Flips: countFlips(obs, Any)}
+	return testSorted(byTime(obs), level)
+}
+
+// testSorted is TestMemory for dwells sorted by time.
+func testSorted(sorted []Observation, level float64) Memory {
+	places := testTimes(sorted)
+	m := Memory{Level: level, Flips: countFlips(sorted, Any)}
 	if m.Flips < fewestTested || len(places) == 0 {
 		return m
 	}

@@ -62,7 +62,7 @@ func TestMemoryVerdict(t *testing.T) {
 // The clock by hand: dwells 1 (flip), 2 (cut off), 4 (flip), 4 (cut off): it reads 4
 // at time 1, 4+3 at 2, 7+4 at 4, and that is its end.
 func TestTestTimes(t *testing.T) {
-	got := testTimes(byTime([]Observation{{To: Censored, Time: 4}, {To: 1, Time: 4}, {To: 1, Time: 1}, {To: Censored, Time: 2}}, Any))
+	got := testTimes(byTime([]Observation{{To: Censored, Time: 4}, {To: 1, Time: 4}, {To: 1, Time: 1}, {To: Censored, Time: 2}}))
 	if len(got) != 2 || math.Abs(got[0]-4.0/11) > 1e-15 || math.Abs(got[1]-1) > 1e-15 {
 		t.Errorf("places %v, want [4/11 1]", got)
 	}

@@ -31,6 +31,14 @@ func (o *Observation) flipped(target int) bool {
 	return o.To == target || target == Any && o.To != Censored
 }
 
+// cutOff is −1 for a dwell that was cut off, else 0.
+func (o *Observation) cutOff() int {
+	if o.To == Censored {
+		return -1
+	}
+	return 0
+}
+
 // An ObservationError is an observation that cannot be one.
 type ObservationError struct {
 	Index       int // place in the list of observations

@@ -68,8 +68,9 @@ func Summarise(obs []Observation, states int, options Options) (Summary, error) 
 	if !(s.Exposure > 0) {
 		return Summary{}, ErrNoExposure
 	}
-	s.Memory = TestMemory(obs, o.Level)
-	s.Survival = KaplanMeier(obs, Any, o.Confidence)
+	sorted := byTime(obs)
+	s.Memory = testSorted(sorted, o.Level)
+	s.Survival = productLimit(sorted, Any, o.Confidence)
 	s.Any = s.estimate(obs, Any, o)
 	targets := s.targets(obs, states)
 	o.oneTarget = len(targets) == 1

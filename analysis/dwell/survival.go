@@ -38,7 +38,11 @@ type Survival struct {
 // ends by a flip the chance is 0 from there, and its upper limit that of the step
 // before.
 func KaplanMeier(obs []Observation, target int, confidence float64) Survival {
-	sorted := byTime(obs, target)
+	return productLimit(byTime(obs), target, confidence)
+}
+
+// productLimit is KaplanMeier for dwells sorted by time.
+func productLimit(sorted []Observation, target int, confidence float64) Survival {
 	s := Survival{confidence: confidence, watched: make([]float64, len(sorted))}
 	for i := range sorted {
 		s.watched[i] = sorted[i].Time
@@ -75,21 +79,18 @@ func survivalLimits(chance, greenwood, z, before float64) (low, high float64) {
 	return math.Exp(log * math.Exp(w)), math.Exp(log * math.Exp(-w))
 }
 
-// byTime gives the dwells by ascending time, at equal times those that flipped to
-// target first.
-func byTime(obs []Observation, target int) []Observation {
+// byTime gives the dwells by ascending time, at equal times those that flipped
+// before those that were cut off.
+func byTime(obs []Observation) []Observation {
 	sorted := slices.Clone(obs)
-	slices.SortStableFunc(sorted, func(a, b Observation) int {
-		if c := cmp.Compare(a.Time, b.Time); c != 0 {
-			return c
-		}
-		switch fa, fb := a.flipped(target), b.flipped(target); {
-		case fa == fb:
-			return 0
-		case fa:
+	slices.SortFunc(sorted, func(a, b Observation) int {
+		switch {
+		case a.Time < b.Time:
 			return -1
+		case a.Time > b.Time:
+			return 1
 		}
-		return 1
+		return cmp.Compare(b.cutOff(), a.cutOff())
 	})
 	return sorted
 }
