@@ -1,0 +1,238 @@
+package deterministic
+
+import (
+	"fmt"
+	"math"
+)
+
+// Basis says why no resting state has more of a species than the box's upper end.
+type Basis uint8
+
+// The reasons, from strict to heuristic.
+const (
+	// ByTotals: the conserved totals of the start allow no more.
+	ByTotals Basis = iota
+	// ByBalance: the reactions cannot balance with more, by bounds on every rate
+	// over the box and the steady-state balance of all species.
+	ByBalance
+	// ByFlow: no such bound was found; flows from ever larger amounts led back to
+	// states inside. Not proved.
+	ByFlow
+)
+
+func (b Basis) String() string {
+	switch b {
+	case ByTotals:
+		return "conserved totals"
+	case ByBalance:
+		return "balance of the reactions"
+	case ByFlow:
+		return "followed flows"
+	}
+	return fmt.Sprintf("Basis(%d)", uint8(b))
+}
+
+// box is bounds on the amounts of every resting state of the class.
+type box struct {
+	low, high []float64
+	basis     []Basis
+}
+
+// margin widens bounds from the linear programs beyond their rounding.
+const margin = 1e-9
+
+// boxRounds is the most rounds of tightening; later ones gain little.
+const boxRounds = 6
+
+// findBox bounds every resting state on the class: amounts by the conserved
+// totals (a linear program), then in rounds each reaction's rate over the box by
+// interval arithmetic, each rate again by the balance N v = 0 of all rates at rest
+// (a linear program), and each amount by the rates: it is not where a law goes
+// beyond its reaction's bound. Ends that stay unbounded are +Inf.
+func findBox(s *system, c *class) *box {
+	b := &box{low: make([]float64, s.n), high: make([]float64, s.n), basis: make([]Basis, s.n)}
+	b.byTotals(c)
+	for range boxRounds {
+		if !b.tighten(s, c) {
+			break
+		}
+	}
+	return b
+}
+
+func (b *box) byTotals(c *class) {
+	p, ok := newProgram(c.rows, c.total)
+	for i := range b.high {
+		b.high[i] = math.Inf(1)
+		b.basis[i] = ByFlow
+		if !ok || len(c.rows) == 0 {
+			continue
+		}
+		goal := make([]float64, len(b.high))
+		goal[i] = 1
+		if most := p.maximise(goal); !math.IsInf(most, 1) {
+			b.high[i], b.basis[i] = max(most, 0)*(1+margin), ByTotals
+		}
+	}
+}
+
+// tighten does one round; false where it gained little.
+func (b *box) tighten(s *system, c *class) bool {
+	rates := b.rates(s)
+	balanceRates(s, c, rates)
+	gained := false
+	for i := range s.n {
+		for r := range s.changes {
+			if reads(s.reads[r], i) {
+				gained = b.lower(s, r, i, rates[r].hi) || gained
+				gained = b.raise(s, r, i, rates[r].lo) || gained
+			}
+		}
+	}
+	return gained
+}
+
+func reads(list []int, i int) bool {
+	for _, k := range list {
+		if k == i {
+			return true
+		}
+	}
+	return false
+}
+
+func (b *box) intervals() []interval {
+	out := make([]interval, len(b.high))
+	for i := range out {
+		out[i] = interval{b.low[i], b.high[i]}
+	}
+	return out
+}
+
+// rates encloses every reaction's rate over the box; rates are not negative.
+func (b *box) rates(s *system) []interval {
+	over := b.intervals()
+	out := make([]interval, len(s.changes))
+	for r := range out {
+		out[r] = enclose(s.net.Reactions[r].Law, over).meet(interval{0, math.Inf(1)})
+	}
+	return out
+}
+
+// lower moves the upper end of species i down to where reaction r's law first
+// exceeds most whatever the other species do; true where that gained a tenth.
+func (b *box) lower(s *system, r, i int, most float64) bool {
+	if math.IsInf(most, 1) {
+		return false
+	}
+	over := b.intervals()
+	exceeds := func(u float64) bool {
+		over[i] = interval{u, max(u, b.high[i])}
+		return enclose(s.net.Reactions[r].Law, over).lo > most
+	}
+	top := min(b.high[i], huge)
+	if !exceeds(top * 0.9) {
+		return false
+	}
+	bottom := max(b.low[i], tiny)
+	for top > 1.01*bottom {
+		if mid := math.Sqrt(top) * math.Sqrt(bottom); exceeds(mid) {
+			top = mid
+		} else {
+			bottom = mid
+		}
+	}
+	b.high[i], b.basis[i] = top, ByBalance
+	return true
+}
+
+// raise moves the lower end of species i up to where reaction r's law is below
+// least in any case.
+func (b *box) raise(s *system, r, i int, least float64) bool {
+	if !(least > 0) || math.IsInf(b.high[i], 1) {
+		return false
+	}
+	over := b.intervals()
+	misses := func(u float64) bool {
+		over[i] = interval{b.low[i], u}
+		return enclose(s.net.Reactions[r].Law, over).hi < least
+	}
+	bottom := max(b.low[i], tiny)
+	if !misses(bottom * 1.1) {
+		return false
+	}
+	top := b.high[i]
+	for top > 1.01*bottom {
+		if mid := math.Sqrt(top) * math.Sqrt(bottom); misses(mid) {
+			bottom = mid
+		} else {
+			top = mid
+		}
+	}
+	b.low[i] = bottom
+	return true
+}
+
+// huge and tiny are the ends of the amounts looked at.
+const (
+	huge = 1e30
+	tiny = 1e-30
+)
+
+// mostPrograms is the largest number of reactions whose rates are all tightened
+// by linear programs; beyond it only rates without a bound are.
+const mostPrograms = 40
+
+// balanceRates tightens bounds on rates by N v = 0.
+func balanceRates(s *system, c *class, rates []interval) {
+	p, ok := balanceProgram(s, c, rates)
+	if !ok {
+		return
+	}
+	goal := make([]float64, len(rates))
+	for r, v := range rates {
+		if len(rates) > mostPrograms && !math.IsInf(v.hi, 1) {
+			continue
+		}
+		goal[r] = 1
+		most := v.lo + p.maximise(goal)
+		goal[r] = -1
+		least := v.lo - p.maximise(goal)
+		goal[r] = 0
+		rates[r].hi = min(v.hi, most*(1+margin))
+		rates[r].lo = max(v.lo, least-margin*most)
+	}
+}
+
+// balanceProgram is N (lo + w) = 0 over the independent species, w ≤ hi − lo,
+// w ≥ 0.
+func balanceProgram(s *system, c *class, rates []interval) (*program, bool) {
+	var bounded []int
+	for r, v := range rates {
+		if !math.IsInf(v.hi, 1) {
+			bounded = append(bounded, r)
+		}
+	}
+	width := len(rates) + len(bounded)
+	position := make([]int, s.n)
+	a := make([][]float64, c.dim(), c.dim()+len(bounded))
+	b := make([]float64, c.dim(), cap(a))
+	for k, i := range c.independent {
+		position[i] = k + 1
+		a[k] = make([]float64, width)
+	}
+	for r, list := range s.changes {
+		for _, ch := range list {
+			if k := position[ch.species] - 1; k >= 0 {
+				a[k][r] += ch.amount
+				b[k] -= ch.amount * rates[r].lo
+			}
+		}
+	}
+	for k, r := range bounded {
+		row := make([]float64, width)
+		row[r], row[len(rates)+k] = 1, 1
+		a, b = append(a, row), append(b, rates[r].hi-rates[r].lo)
+	}
+	return newProgram(a, b)
+}

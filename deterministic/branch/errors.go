@@ -1,0 +1,66 @@
+package branch
+
+import (
+	"fmt"
+	"strings"
+)
+
+// An UnknownKnobError says that a knob's name is none of those that the network
+// has.
+type UnknownKnobError struct {
+	Name  string
+	Known []string // what could have been written
+}
+
+func (e *UnknownKnobError) Error() string {
+	return fmt.Sprintf("there is no constant, total or product %q to turn; known here: %s", e.Name, strings.Join(e.Known, ", "))
+}
+
+// A RangeError says what is wrong with a knob's range.
+type RangeError struct {
+	Knob      string
+	Low, High float64
+	Problem   string
+}
+
+func (e *RangeError) Error() string {
+	return fmt.Sprintf("%s from %g to %g: %s", e.Knob, e.Low, e.High, e.Problem)
+}
+
+// An OutsideError says that today's setting is not in the knob's range.
+type OutsideError struct {
+	Knob             string
+	Today, Low, High float64
+}
+
+func (e *OutsideError) Error() string {
+	return fmt.Sprintf("today's %s is %g, outside the range from %g to %g; widen the range so that it holds %g", e.Knob, e.Today, e.Low, e.High, e.Today)
+}
+
+// A ProductError says why a product of constants cannot be turned.
+type ProductError struct {
+	Knob    string
+	Problem string
+}
+
+func (e *ProductError) Error() string { return fmt.Sprintf("product %s: %s", e.Knob, e.Problem) }
+
+// A NoStateError says that no resting state was found at any of the settings that
+// were looked at.
+type NoStateError struct {
+	Knob      string
+	Low, High float64
+	// Last is what the survey of the last setting said; may be nil.
+	Last error
+}
+
+func (e *NoStateError) Error() string {
+	text := fmt.Sprintf("no resting state found anywhere on %s from %g to %g", e.Knob, e.Low, e.High)
+	if e.Last != nil {
+		text += ": " + e.Last.Error()
+	}
+	return text
+}
+
+// Unwrap gives what the last survey said.
+func (e *NoStateError) Unwrap() error { return e.Last }

@@ -1,0 +1,239 @@
+package deterministic
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"holdfast/model"
+)
+
+// declare replaces or adds the cores that the design declares.
+func (k *coreMaker) declare() error {
+	m := k.m
+	isDeclared := make([]bool, len(m.Cores))
+	for _, d := range m.Network.Declared {
+		i := slices.IndexFunc(m.Cores, func(c model.Core) bool { return c.State == d.State })
+		c, err := k.declaredCore(d, i)
+		if err != nil {
+			return err
+		}
+		if i >= 0 {
+			m.Cores[i], isDeclared[i] = c, true
+			continue
+		}
+		k.addDeclared(c)
+		isDeclared = append(isDeclared, true)
+	}
+	for i := range m.Cores {
+		for j := range i {
+			if isDeclared[i] || isDeclared[j] {
+				if err := k.settle(j, isDeclared[j], i, isDeclared[i]); err != nil {
+					return err
+				}
+			}
+		}
+	}
+	k.warnHeld(isDeclared)
+	return nil
+}
+
+// declaredCore makes the core of a declaration, of the stable state i or of none.
+func (k *coreMaker) declaredCore(d model.DeclaredCore, i int) (model.Core, error) {
+	n := k.m.class.n
+	c := model.Core{State: d.State, Low: make([]int64, n), High: slices.Repeat([]int64{math.MaxInt64}, n)}
+	for _, r := range d.Ranges {
+		c.Low[r.Species], c.High[r.Species] = r.Min, r.Max
+	}
+	target := floats(k.m.Network.StartCounts())
+	if i >= 0 {
+		target = k.m.States[i].Molecules
+	}
+	start, ok := k.nearestIn(target, c.Low, c.High)
+	if !ok {
+		return c, &CoreError{d.State, "no counts within its ranges keep the conserved totals of the start"}
+	}
+	c.Start = start
+	c.Center = slices.Clone(target)
+	if i < 0 {
+		c.Center = floats(start)
+	}
+	return c, nil
+}
+
+// nearestIn gives the lattice point within the ranges nearest to the target: the
+// target is first moved to the nearest point of ranges and totals.
+func (k *coreMaker) nearestIn(target []float64, low, high []int64) ([]int64, bool) {
+	moved, ok := k.m.class.nearestWithin(k.m.sys, target, low, high)
+	if !ok {
+		return nil, false
+	}
+	return k.lattice.nearest(moved, low, high)
+}
+
+// addDeclared adds a state of its own for a declared core that is no resting
+// state.
+func (k *coreMaker) addDeclared(c model.Core) {
+	m := k.m
+	s := State{
+		Name: c.State, Kind: Declared, Molecules: slices.Clone(c.Center),
+		Amounts: m.Network.Amounts(nil, c.Start), SlowRate: math.NaN(),
+	}
+	m.States = slices.Insert(m.States, len(m.Cores), s)
+	m.Cores = append(m.Cores, c)
+}
+
+// settle sees that cores a and b, of which one at least is declared, do not meet:
+// a core of the program's own is shrunk away from a declared one.
+func (k *coreMaker) settle(a int, aDeclared bool, b int, bDeclared bool) error {
+	m := k.m
+	if aDeclared && bDeclared {
+		return k.apart(&m.Cores[a], &m.Cores[b])
+	}
+	if aDeclared {
+		a, b = b, a
+	}
+	own, declared := &m.Cores[a], &m.Cores[b]
+	if declared.Contains(own.Start) {
+		return &CoreError{declared.State, fmt.Sprintf(
+			"its ranges hold the resting state %q (%v): call it [core.%s], or narrow the ranges", own.State, own.Start, own.State)}
+	}
+	if boxesApart(own, declared) {
+		return nil
+	}
+	limit := k.boxDistance(k.shapes[a], own.Center, declared)
+	k.shapes[a].radius = min(k.shapes[a].radius, touch*limit)
+	c, err := k.core(a)
+	m.Cores[a] = c
+	return err
+}
+
+// boxDistance is the distance, in standard deviations, from the centre to the
+// furthest of the bounds of a declared core that it violates: no point of the core
+// is nearer.
+func (k *coreMaker) boxDistance(e *ellipsoid, center []float64, c *model.Core) float64 {
+	full := inMolecules(k.m.sys, k.m.class, e.cov)
+	n := len(center)
+	most := 0.0
+	for i, v := range center {
+		sd := math.Sqrt(max(full[i*n+i], 0))
+		short := max(float64(c.Low[i])-v, v-float64(c.High[i]))
+		switch {
+		case short <= 0:
+		case sd == 0:
+			return math.Inf(1)
+		default:
+			most = max(most, short/sd)
+		}
+	}
+	return most
+}
+
+func boxesApart(a, b *model.Core) bool {
+	for i := range a.Low {
+		if a.Low[i] > b.High[i] || b.Low[i] > a.High[i] {
+			return true
+		}
+	}
+	return false
+}
+
+// apart gives an error where two declared cores have a lattice point in common.
+func (k *coreMaker) apart(a, b *model.Core) error {
+	if boxesApart(a, b) {
+		return nil
+	}
+	low, high := slices.Clone(a.Low), slices.Clone(a.High)
+	for i := range low {
+		low[i], high[i] = max(low[i], b.Low[i]), min(high[i], b.High[i])
+	}
+	if shared, ok := k.nearestIn(floats(a.Start), low, high); ok {
+		return &CoreError{b.State, fmt.Sprintf("it overlaps [core.%s]: both hold the counts %v", a.State, shared)}
+	}
+	return nil
+}
+
+// warnHeld warns of declared cores that hold a saddle or another state that is not
+// stable.
+func (k *coreMaker) warnHeld(isDeclared []bool) {
+	m := k.m
+	for _, s := range m.States[len(m.Cores):] {
+		for i, c := range m.Cores {
+			inside := isDeclared[i]
+			for j, v := range s.Molecules {
+				inside = inside && v >= float64(c.Low[j]) && v <= float64(c.High[j])
+			}
+			if inside {
+				m.warn("[core.%s] holds the %v %q: a path there is as likely to turn back", c.State, s.Kind, s.Name)
+			}
+		}
+	}
+}
+
+// nearestWithin gives the point of ranges and totals, both in molecules, nearest
+// to the target, by Dykstra's alternating projections (Boyle and Dykstra, Lecture
+// Notes in Statistics 37 (1986) 28); false where they have no point in common.
+func (c *class) nearestWithin(s *system, target []float64, low, high []int64) ([]float64, bool) {
+	x := slices.Clone(target)
+	owed := make([]float64, c.n)
+	f := newLU(len(c.rows))
+	for range 5000 {
+		moved := 0.0
+		for i, v := range x {
+			v += owed[i]
+			clipped := min(max(v, float64(low[i])), float64(high[i]))
+			owed[i] = v - clipped
+			moved = max(moved, abs(clipped-x[i]))
+			x[i] = clipped
+		}
+		off := c.ontoTotals(s, f, x)
+		if off < 1e-6 && moved < 1e-6 {
+			return x, true
+		}
+	}
+	return x, c.offRanges(x, low, high) < 0.5
+}
+
+// offRanges is the furthest that x lies outside the ranges.
+func (c *class) offRanges(x []float64, low, high []int64) float64 {
+	worst := 0.0
+	for i, v := range x {
+		worst = max(worst, float64(low[i])-v, v-float64(high[i]))
+	}
+	return worst
+}
+
+// ontoTotals moves x, in molecules, to the nearest point with the class's totals,
+// and gives the largest change.
+func (c *class) ontoTotals(s *system, f *lu, x []float64) float64 {
+	k := len(c.rows)
+	if k == 0 {
+		return 0
+	}
+	row := func(p, i int) float64 { return c.rows[p][i] / s.unit[i] }
+	y := make([]float64, k)
+	for p := range k {
+		y[p] = -c.total[p]
+		for i, v := range x {
+			y[p] += row(p, i) * v
+			for q := range k {
+				if i == 0 {
+					f.a[p*k+q] = 0
+				}
+				f.a[p*k+q] += row(p, i) * row(q, i)
+			}
+		}
+	}
+	f.factor()
+	f.solve(y)
+	moved := 0.0
+	for i := range x {
+		d := 0.0
+		for p := range k {
+			d += row(p, i) * y[p]
+		}
+		x[i] -= d
+		moved = max(moved, abs(d))
+	}
+	return moved
+}

@@ -1,0 +1,163 @@
+package deterministic
+
+import (
+	"cmp"
+	"context"
+	"fmt"
+	"math"
+	"slices"
+
+	"holdfast/model"
+)
+
+// search finds the box and the resting states in it.
+func (m *Map) search(ctx context.Context, o Options) (*finder, error) {
+	s := m.sys
+	f := &finder{ctx: ctx, w: newWorkspace(s), options: o, whole: m.class}
+	b := findBox(s, m.class)
+	f.setBox(b)
+	if err := f.openEnds(b); err != nil {
+		return nil, err
+	}
+	m.Low, m.High, m.Basis = b.low, b.high, b.basis
+	list, complete := s.faces(m.Totals)
+	if !complete {
+		m.warn("faces where species are absent: only the first %d were searched", maxFaces)
+	}
+	for _, face := range slices.Backward(list) { // the inside last: its search counts the rest
+		f.searchFace(face.class)
+	}
+	if err := ctx.Err(); err != nil {
+		return nil, err
+	}
+	m.limit, m.resolution = f.limit, f.resolution
+	return f, nil
+}
+
+// setBox derives the scales of the search from the box.
+func (f *finder) setBox(b *box) {
+	n := f.whole.n
+	f.low, f.high = b.low, b.high
+	f.floor, f.resolution, f.limit = make([]float64, n), make([]float64, n), make([]float64, n)
+	for i, high := range b.high {
+		unit := f.w.sys.unit[i]
+		start := f.w.sys.net.Species[i].Start
+		if math.IsInf(high, 1) {
+			high = max(1, start) // until openEnds has found better
+		}
+		f.floor[i] = 1e-14 * high
+		f.resolution[i] = 1e-3 * min(1/unit, high)
+		f.limit[i] = 1e6 * max(high, start, 1/unit)
+	}
+}
+
+func (m *Map) warn(format string, a ...any) {
+	m.Warnings = append(m.Warnings, fmt.Sprintf(format, a...))
+}
+
+// states turns the found candidates into the Map's States, sorted and named.
+func (m *Map) states(f *finder) {
+	sorted := slices.Clone(f.found)
+	slices.SortFunc(sorted, m.order)
+	m.roots = sorted
+	for _, c := range sorted {
+		m.States = append(m.States, m.state(f.w, c))
+	}
+	m.nameStates()
+	sum, ok := f.indexSum()
+	m.Search = Search{
+		Starts: f.starts, Flows: f.flows, Checked: ok, Balanced: ok && sum == 1, Scanned: m.class.dim() == 1,
+	}
+}
+
+// order sorts states: stable, saddles, unstable, degenerate; each by the readout,
+// then by the other species in turn.
+func (m *Map) order(a, b *candidate) int {
+	rank := func(k Kind) int {
+		if k == StableFocus {
+			return int(StableNode)
+		}
+		return int(k)
+	}
+	r := m.Network.Readout
+	return cmp.Or(cmp.Compare(rank(a.kind), rank(b.kind)), cmp.Compare(a.x[r], b.x[r]), slices.Compare(a.x, b.x))
+}
+
+func (m *Map) state(w *workspace, c *candidate) State {
+	s := State{
+		Kind: c.kind, Amounts: slices.Clone(c.x), Molecules: make([]float64, len(c.x)),
+		Eigenvalues: c.values, UnstableDirections: c.unstable, SlowRate: slowRate(c.values), Quality: c.quality,
+	}
+	for i, x := range c.x {
+		s.Molecules[i] = x * m.sys.unit[i]
+	}
+	if c.kind == Degenerate {
+		s.SlowRate = 0
+	}
+	if c.kind.Stable() {
+		_, s.Covariance, _ = w.covariance(m.class, c.x)
+	}
+	return s
+}
+
+// nameStates gives every state its name.
+func (m *Map) nameStates() {
+	stable := countKind(m.States, Kind.Stable)
+	saddles := countKind(m.States, func(k Kind) bool { return k == Saddle })
+	next := map[Kind]int{}
+	for i := range m.States {
+		s := &m.States[i]
+		switch {
+		case s.Kind.Stable():
+			s.Name = stableName(i, stable)
+		case s.Kind == Saddle && saddles == 1:
+			s.Name = "saddle"
+		default:
+			next[s.Kind]++
+			s.Name = fmt.Sprintf("%v%d", s.Kind, next[s.Kind])
+		}
+	}
+}
+
+func stableName(i, count int) string {
+	switch count {
+	case 1:
+		return "only"
+	case 2:
+		return [...]string{"low", "high"}[i]
+	case 3:
+		return [...]string{"low", "middle", "high"}[i]
+	}
+	return fmt.Sprintf("level%d", i+1)
+}
+
+func countKind(list []State, is func(Kind) bool) int {
+	n := 0
+	for i := range list {
+		if is(list[i].Kind) {
+			n++
+		}
+	}
+	return n
+}
+
+// noStates explains a search that found no stable state.
+func (m *Map) noStates(f *finder) error {
+	if countKind(m.States, Kind.Stable) > 0 {
+		return nil
+	}
+	if len(f.ranAway) > 0 {
+		i := f.ranAway[0]
+		return &RunawayError{m.Network.Species[i].Name, f.limit[i]}
+	}
+	return ErrNoRestingState
+}
+
+// speciesNames lists the names in order.
+func speciesNames(n *model.Network) []string {
+	out := make([]string, len(n.Species))
+	for i, s := range n.Species {
+		out[i] = s.Name
+	}
+	return out
+}
