@@ -95,9 +95,12 @@ func explore(ctx context.Context, n *model.Network, b Box, starts [][]int64, lim
 	return e.chain, nil
 }
 
+// few is the range of counts above which a species counts as a direction of the
+// lattice of its own.
+const few = 4
+
 // long marks the species whose counts on the lattice span more than a few values.
 func (c *chain) long() []bool {
-	const few = 4
 	out := make([]bool, c.species)
 	for s := range out {
 		low, high := int32(math.MaxInt32), int32(0)

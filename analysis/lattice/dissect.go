@@ -19,7 +19,7 @@ type front struct {
 	exit                   []float64 // rate out of the box, pivots then border
 }
 
-func (f *front) pivots() int { return f.high - f.low }
+func (fr *front) pivots() int { return fr.high - fr.low }
 
 // An ordering is an elimination order: node[p] is the node at position p,
 // fronts are in an order in which children come first, and the nodes from

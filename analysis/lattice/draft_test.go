@@ -79,13 +79,13 @@ func (d draft) permuted(order []int) draft {
 	}
 	for i := range out.reactions {
 		r := &out.reactions[i]
-		r.uses, r.needs, r.makes = move2(r.uses, order), move2(r.needs, order), move2(r.makes, order)
+		r.uses, r.needs, r.makes = reordered(r.uses, order), reordered(r.needs, order), reordered(r.makes, order)
 		r.rate = reindex(r.rate, order)
 	}
 	return out
 }
 
-func move2(c counts, order []int) counts {
+func reordered(c counts, order []int) counts {
 	out := counts{}
 	for s, k := range c {
 		out[order[s]] = k
@@ -119,8 +119,10 @@ func toggle(a, b float64) draft {
 	return draft{
 		species: []string{"u", "v"}, readout: 1,
 		reactions: []draftReaction{
-			{makes: counts{0: 1}, rate: repressed(a, 1, 2)}, {uses: counts{0: 1}, k: 1},
-			{makes: counts{1: 1}, rate: repressed(b, 0, 2)}, {uses: counts{1: 1}, k: 1},
+			{makes: counts{0: 1}, rate: repressed(a, 1, 2)},
+			{uses: counts{0: 1}, k: 1},
+			{makes: counts{1: 1}, rate: repressed(b, 0, 2)},
+			{uses: counts{1: 1}, k: 1},
 		},
 	}
 }
@@ -133,9 +135,12 @@ func trio(top float64) draft {
 	return draft{
 		species: []string{"u", "v", "w"}, readout: 2,
 		reactions: []draftReaction{
-			{makes: counts{0: 1}, rate: both(1, 2)}, {uses: counts{0: 1}, k: 1},
-			{makes: counts{1: 1}, rate: both(0, 2)}, {uses: counts{1: 1}, k: 1.1},
-			{makes: counts{2: 1}, rate: both(0, 1)}, {uses: counts{2: 1}, k: 1.2},
+			{makes: counts{0: 1}, rate: both(1, 2)},
+			{uses: counts{0: 1}, k: 1},
+			{makes: counts{1: 1}, rate: both(0, 2)},
+			{uses: counts{1: 1}, k: 1.1},
+			{makes: counts{2: 1}, rate: both(0, 1)},
+			{uses: counts{2: 1}, k: 1.2},
 		},
 	}
 }

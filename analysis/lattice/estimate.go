@@ -47,14 +47,14 @@ type laid struct {
 func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 	p.report("counting states", 0)
 	limit := int(min(float64(p.memory())/bytesPerNode, math.MaxInt32-1))
+	if d, _ := p.depth(b); d > 3 {
+		limit = min(limit, smallLattice)
+	}
 	c, err := explore(ctx, p.Network, b, p.starts(), limit)
 	if errors.Is(err, errTooMany) {
 		return nil, p.tooMany(c, b)
 	}
 	if err != nil {
-		return nil, err
-	}
-	if err := p.tooDeep(c); err != nil {
 		return nil, err
 	}
 	r, err := findRegions(c, p.Cores)
@@ -69,14 +69,21 @@ func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 	return l, ctx.Err()
 }
 
-// tooMany refuses a lattice whose states alone do not fit.
-func (p *Problem) tooMany(c *chain, b Box) error {
-	ms, phases := moves(p.Network)
-	long := make([]bool, c.species)
+// depth is the number of independent directions of species whose ranges in the
+// box are long, which marks them.
+func (p *Problem) depth(b Box) (d int, long []bool) {
+	long = make([]bool, len(b.Low))
 	for s := range long {
-		long[s] = b.High[s]-b.Low[s] >= 4
+		long[s] = b.High[s]-b.Low[s] >= few
 	}
-	if d := dimensions(ms, phases, b, long); d > 3 {
+	ms, phases := moves(p.Network)
+	return dimensions(ms, phases, b, long), long
+}
+
+// tooMany refuses a lattice whose states alone do not fit. More than three
+// dimensions are served only where conserved totals leave few states.
+func (p *Problem) tooMany(c *chain, b Box) error {
+	if d, long := p.depth(b); d > 3 {
 		return &DimensionError{d, p.names(long)}
 	}
 	e := Estimate{States: c.states(), Nodes: c.nodes(), Box: b, Bytes: int64(c.nodes()) * bytesPerNode * 4}
@@ -87,15 +94,6 @@ func (p *Problem) tooMany(c *chain, b Box) error {
 
 // smallLattice is how many nodes are served in any number of dimensions.
 const smallLattice = 20000
-
-// tooDeep refuses more than three dimensions unless conserved totals leave few
-// states.
-func (p *Problem) tooDeep(c *chain) error {
-	if c.rank > 3 && c.nodes() > smallLattice {
-		return &DimensionError{c.rank, p.names(c.long())}
-	}
-	return nil
-}
 
 func (p *Problem) names(which []bool) []string {
 	var out []string

@@ -105,8 +105,10 @@ func TestProductLaw(t *testing.T) {
 	n := bind(t, draft{
 		species: []string{"a", "b"},
 		reactions: []draftReaction{
-			{makes: counts{0: 1}, k: 12}, {uses: counts{0: 1}, k: 1},
-			{makes: counts{1: 1}, k: 20}, {uses: counts{1: 1}, k: 2.5},
+			{makes: counts{0: 1}, k: 12},
+			{uses: counts{0: 1}, k: 1},
+			{makes: counts{1: 1}, k: 20},
+			{uses: counts{1: 1}, k: 2.5},
 		},
 	}, 1)
 	l := stationaryLaw(t, n, Problem{States: []Noise{{Center: []float64{12, 8}}}})
