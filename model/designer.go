@@ -16,7 +16,8 @@ type designer struct {
 	// unsure tells that species or constants may have been lost to a syntax
 	// error, so that an unknown name says nothing.
 	unsure    bool
-	speciesAt []int // where each species stands in the file
+	lost      map[string]bool // names that were lost, where they are known
+	speciesAt []int           // where each species stands in the file
 	reactions map[string]int
 	readoutAt int // where readout was set, −1 before
 }
@@ -24,7 +25,7 @@ type designer struct {
 func newDesigner(doc *tomlDoc) *designer {
 	return &designer{
 		reporter: doc.reporter, draft: &Draft{Copies: 1}, names: nameTable{},
-		unsure: doc.lostHeader, reactions: map[string]int{}, readoutAt: -1,
+		unsure: doc.lostHeader, lost: map[string]bool{}, reactions: map[string]int{}, readoutAt: -1,
 	}
 }
 
@@ -77,6 +78,17 @@ func (d *designer) top(e *tomlEntry) {
 	case "species", "constants", "reaction", "core":
 	default:
 		d.unknownKey(e, topKeys())
+	}
+}
+
+// isLost tells whether a name may have been lost to a syntax error.
+func (d *designer) isLost(name string) bool { return d.unsure || d.lost[name] }
+
+// damaged notes what may be missing from a table of names.
+func (d *designer) damaged(t *tomlTable) {
+	d.unsure = d.unsure || t.lostKeys
+	for _, name := range t.lost {
+		d.lost[name] = true
 	}
 }
 
@@ -192,7 +204,7 @@ const largestWhole = 1 << 53
 
 // declare enters a name, or reports why it cannot be one.
 func (d *designer) declare(e *tomlEntry, thing namedThing) {
-	thing.at = e.at
+	thing.at, thing.refused = e.at, true
 	switch old := d.names[e.key]; {
 	case !isIdentifier(e.key):
 		d.errorf(e.at, "a name has letters, digits and _, and does not begin with a digit", "%q cannot be the name of a %s", e.key, thing.kind)
@@ -203,6 +215,8 @@ func (d *designer) declare(e *tomlEntry, thing namedThing) {
 	case old != nil:
 		d.errorf(e.at, "choose another name", "%q is the name of a %s already, on line %d", e.key, old.kind, d.lineOf(old.at))
 		return
+	default:
+		thing.refused = false
 	}
 	d.names[e.key] = &thing
 }

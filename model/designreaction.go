@@ -173,7 +173,7 @@ func (d *designer) species(e *tomlEntry) *namedThing {
 		return thing
 	case thing != nil:
 		d.errorf(e.at, allowed(d.names.of(speciesName)), "%q is a constant, not a species", e.key)
-	case !d.unsure:
+	case !d.isLost(e.key):
 		d.errorf(e.at, nearHint(e.key, d.names.of(speciesName)), "no species is called %q", e.key)
 	}
 	return nil

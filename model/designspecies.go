@@ -12,11 +12,11 @@ func (d *designer) readSpecies(e *tomlEntry) {
 		d.unsure = true
 		return
 	}
-	d.unsure = d.unsure || t.damaged
+	d.damaged(t)
 	for i := range t.entries {
 		d.oneSpecies(&t.entries[i])
 	}
-	if len(t.entries) == 0 && !d.unsure {
+	if len(t.entries) == 0 && !t.damaged {
 		d.errorf(t.at, speciesHint, "the design has no species")
 	}
 }
@@ -92,7 +92,7 @@ func (d *designer) readConstants(e *tomlEntry) {
 		d.unsure = true
 		return
 	}
-	d.unsure = d.unsure || t.damaged
+	d.damaged(t)
 	for i := range t.entries {
 		c := &t.entries[i]
 		d.declare(c, namedThing{kind: constantName, index: len(d.draft.Constants)})
@@ -105,7 +105,7 @@ func (d *designer) readConstants(e *tomlEntry) {
 func (d *designer) noteUnused() {
 	for _, name := range d.names.all() {
 		thing := d.names[name]
-		if thing.used || d.unsure {
+		if thing.used {
 			continue
 		}
 		d.notef(thing.at, "leave it out, or is a name misspelt in a reaction?", "no reaction mentions the %s %s", thing.kind, name)

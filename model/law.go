@@ -18,22 +18,19 @@ type lawParser struct {
 	names nameTable
 	// constantsOnly refuses species.
 	constantsOnly bool
-	// unsure keeps quiet about unknown names, where names may have been lost to
-	// another error in the file.
-	unsure bool
+	// lost tells whether an unknown name may have been lost to another error in
+	// the file, and is not to be reported.
+	lost   func(name string) bool
 	errors []lawError
-	used   []*namedThing
 	at     func(rune int) int // byte offset in the file of a rune of the formula
 }
 
-// parse gives the tree, or nil with the errors in p.errors.
+// parse gives the tree, or nil with the errors in p.errors. The names are checked
+// even where the grammar is broken, so that all errors come in one go.
 func (p *lawParser) parse() *Node {
-	tokens, e := tokensOf(p.text)
-	if e == nil {
-		e = p.checkCalls(tokens)
-	}
-	if e != nil {
-		p.errors = append(p.errors, *e)
+	tokens, wrong := tokensOf(p.text)
+	p.errors = append(p.errors, wrong...)
+	if known := p.checkNames(tokens); !known || len(wrong) > 0 {
 		return nil
 	}
 	tree, err := parser.Parse(p.text)
@@ -48,26 +45,25 @@ func (p *lawParser) parse() *Node {
 	return node
 }
 
-// checkCalls sees that every name before a parenthesis is one of our functions,
-// and that names and groups do not stand side by side.
-func (p *lawParser) checkCalls(tokens []lexer.Token) *lawError {
+// checkNames resolves every name in the formula, and tells whether all the
+// functions are known.
+func (p *lawParser) checkNames(tokens []lexer.Token) bool {
+	known := true
 	for i, t := range tokens {
-		after := next(tokens, i)
-		closes := t.Kind == lexer.Identifier || t.Is(lexer.Bracket, ")")
-		if closes && (after.Kind == lexer.Identifier || after.Kind == lexer.Number) {
-			return &lawError{after.From, "an operator is missing here", "write * for a product"}
-		}
-		if !closes || !after.Is(lexer.Bracket, "(") {
+		if t.Kind != lexer.Identifier || foreignName(t.Value) {
 			continue
 		}
-		if t.Kind != lexer.Identifier {
-			return &lawError{after.From, "an operator is missing here", "write * for a product"}
+		call := next(tokens, i).Is(lexer.Bracket, "(")
+		check := p.checkName
+		if call {
+			check = p.checkFunction
 		}
-		if e := p.checkFunction(t); e != nil {
-			return e
+		if e := check(t); e != nil {
+			p.errors = append(p.errors, *e)
+			known = known && !call
 		}
 	}
-	return nil
+	return known
 }
 
 func (p *lawParser) checkFunction(t lexer.Token) *lawError {
@@ -75,9 +71,36 @@ func (p *lawParser) checkFunction(t lexer.Token) *lawError {
 		return nil
 	}
 	if thing := p.names[t.Value]; thing != nil {
+		thing.used = true
 		return &lawError{t.From, fmt.Sprintf("%q is a %s, not a function", t.Value, thing.kind), "write " + t.Value + "*(…) for a product"}
 	}
 	return &lawError{t.From, fmt.Sprintf("there is no function %q", t.Value), nearHint(t.Value, functionNames())}
+}
+
+func (p *lawParser) checkName(t lexer.Token) *lawError {
+	thing := p.names[t.Value]
+	switch {
+	case thing == nil:
+		return p.unknown(t)
+	case thing.kind == speciesName && p.constantsOnly:
+		thing.used = true
+		return &lawError{t.From, fmt.Sprintf("%q is a species; only constants can stand in this formula", t.Value), allowed(p.names.of(constantName))}
+	}
+	thing.used = true
+	return nil
+}
+
+func (p *lawParser) unknown(t lexer.Token) *lawError {
+	if op, ok := functions()[t.Value]; ok {
+		return &lawError{t.From, fmt.Sprintf("the function %q needs its arguments in parentheses", t.Value), "write " + signature(op)}
+	}
+	if p.lost != nil && p.lost(t.Value) {
+		return nil
+	}
+	if p.constantsOnly {
+		return &lawError{t.From, fmt.Sprintf("no constant is called %q", t.Value), nearHint(t.Value, p.names.of(constantName))}
+	}
+	return &lawError{t.From, fmt.Sprintf("no species or constant is called %q", t.Value), nearHint(t.Value, p.names.all())}
 }
 
 // grammarError words an error of the library's parser by the token it stopped at.
@@ -86,8 +109,9 @@ func (p *lawParser) grammarError(tokens []lexer.Token, err error) lawError {
 	if !errors.As(err, &place) {
 		return lawError{0, "this formula cannot be read", operatorHint}
 	}
+	atEnd := strings.Contains(place.Message, "EOF") || strings.Contains(place.Message, "end of expression")
 	for _, t := range tokens {
-		if t.From >= place.From && t.Kind != lexer.EOF {
+		if t.From >= place.From && t.Kind != lexer.EOF && !atEnd {
 			return lawError{t.From, fmt.Sprintf("%q cannot stand here", t.Value), "between two operands there is exactly one operator; a function's arguments are separated by commas"}
 		}
 	}
@@ -156,32 +180,17 @@ func (p *lawParser) binary(n *ast.BinaryNode) *Node {
 	return p.place(Call(op, left, right), n)
 }
 
+// name gives a leaf. A name that was lost to another error stands for 0; the file
+// has errors then, so the tree is not used.
 func (p *lawParser) name(n *ast.IdentifierNode) *Node {
 	thing := p.names[n.Value]
 	switch {
 	case thing == nil:
-		return p.unknown(n)
-	case thing.kind == constantName:
-		p.used = append(p.used, thing)
-		return p.place(ConstantRef(thing.index), n)
-	case p.constantsOnly:
-		return p.fail(n, join("only constants can stand in it.", allowed(p.names.of(constantName))), "%q is a species; this formula has to be the same at every count", n.Value)
-	}
-	p.used = append(p.used, thing)
-	return p.place(SpeciesRef(thing.index), n)
-}
-
-func (p *lawParser) unknown(n *ast.IdentifierNode) *Node {
-	if op, ok := functions()[n.Value]; ok {
-		return p.fail(n, "write "+signature(op), "the function %q needs its arguments in parentheses", n.Value)
-	}
-	if p.unsure {
 		return Number(0)
+	case thing.kind == constantName:
+		return p.place(ConstantRef(thing.index), n)
 	}
-	if p.constantsOnly {
-		return p.fail(n, nearHint(n.Value, p.names.of(constantName)), "no constant is called %q", n.Value)
-	}
-	return p.fail(n, nearHint(n.Value, p.names.all()), "no species or constant is called %q", n.Value)
+	return p.place(SpeciesRef(thing.index), n)
 }
 
 // call checks the number of arguments; min and max of several become a chain.

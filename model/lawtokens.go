@@ -4,7 +4,7 @@ import (
 	"errors"
 	"strconv"
 	"strings"
-	"unicode/utf8"
+	"unicode"
 
 	"github.com/expr-lang/expr/file"
 	"github.com/expr-lang/expr/parser/lexer"
@@ -27,69 +27,89 @@ type lawError struct {
 // operatorHint is what a rate law can be written with.
 const operatorHint = "a formula has numbers, species, constants, + - * / ^, parentheses and functions: exp, log, sqrt, min, max, abs, hill, hill_fall"
 
-// tokensOf splits a formula and refuses everything that is not arithmetic.
-func tokensOf(text string) ([]lexer.Token, *lawError) {
+// tokensOf splits a formula and lists everything in it that is not arithmetic.
+func tokensOf(text string) ([]lexer.Token, []lawError) {
 	if strings.TrimSpace(text) == "" {
-		return nil, &lawError{0, "the formula is empty", "write a number or a formula such as \"k*x/(half + x)\""}
+		return nil, []lawError{{0, "the formula is empty", "write a number or a formula such as \"k*x/(half + x)\""}}
 	}
 	if len(text) > longestFormula {
-		return nil, &lawError{0, "the formula is longer than " + strconv.Itoa(longestFormula) + " bytes", "split the reaction in several"}
+		return nil, []lawError{{0, "the formula is longer than " + strconv.Itoa(longestFormula) + " bytes", "split the reaction in several"}}
 	}
 	tokens, err := lexer.Lex(file.NewSource(text))
 	if err != nil {
-		return nil, lexError([]rune(text), err)
+		return nil, []lawError{lexError([]rune(text), err)}
 	}
 	if len(tokens) > mostTokens {
-		return nil, &lawError{0, "the formula has more than " + strconv.Itoa(mostTokens) + " parts", "split the reaction in several"}
+		return nil, []lawError{{0, "the formula has more than " + strconv.Itoa(mostTokens) + " parts", "split the reaction in several"}}
 	}
 	return tokens, checkTokens([]rune(text), tokens)
 }
 
 // lexError words an error of the tokenizer.
-func lexError(text []rune, err error) *lawError {
+func lexError(text []rune, err error) lawError {
 	var place *file.Error
 	if !errors.As(err, &place) {
-		return &lawError{0, "this formula cannot be read", operatorHint}
+		return lawError{0, "this formula cannot be read", operatorHint}
 	}
 	at := min(max(place.From, 0), max(len(text)-1, 0))
 	switch {
 	case strings.Contains(place.Message, "bad number"):
-		return &lawError{at, "a number runs into a name", "put an operator between them: 2*x"}
+		return lawError{at, "a number runs into a name", "put an operator between them: 2*x"}
 	case strings.Contains(place.Message, "unrecognized"):
-		return &lawError{at, "the character " + strconv.QuoteRune(text[at]) + " has no meaning in a formula", operatorHint}
+		return lawError{at, "the character " + strconv.QuoteRune(text[at]) + " has no meaning in a formula", operatorHint}
 	}
-	return &lawError{at, "this has no meaning in a formula", operatorHint}
+	return lawError{at, "this has no meaning in a formula", operatorHint}
 }
 
-// checkTokens refuses the first token that is not of our arithmetic.
-func checkTokens(text []rune, tokens []lexer.Token) *lawError {
+// checkTokens lists what is not of our arithmetic.
+func checkTokens(text []rune, tokens []lexer.Token) []lawError {
+	var out []lawError
 	depth, end := 0, 0
 	for i, t := range tokens {
-		if gap := strings.TrimSpace(string(text[end:min(max(t.From, end), len(text))])); gap != "" && t.Kind != lexer.EOF {
-			return &lawError{end + leadingBlanks(text[end:]), "comments cannot stand in a formula", "put the comment behind # outside the quotes"}
+		from := t.From
+		if t.Kind == lexer.EOF {
+			from = len(text)
+		}
+		if e := checkGap(text, end, from); e != nil {
+			out = append(out, *e)
+		}
+		if t.Kind == lexer.EOF {
+			break
+		}
+		end = t.To
+		depth += nesting(t)
+		if e := checkDepth(t, depth); e != nil {
+			return append(out, *e)
 		}
 		if e := checkToken(t, next(tokens, i)); e != nil {
-			return e
-		}
-		if t.Is(lexer.Bracket, "(") {
-			depth++
-		}
-		if t.Is(lexer.Bracket, ")") {
-			depth--
-		}
-		if e := checkDepth(t, depth); e != nil {
-			return e
-		}
-		if t.Kind != lexer.EOF {
-			end = t.To
+			out = append(out, *e)
 		}
 	}
-	return checkEnd(text, end, depth)
+	if depth > 0 {
+		out = append(out, lawError{end, "a parenthesis is not closed", "put ) where its group ends"})
+	}
+	return out
 }
 
-func leadingBlanks(text []rune) int {
-	s := string(text)
-	return utf8.RuneCountInString(s) - utf8.RuneCountInString(strings.TrimLeft(s, " \t\r\n"))
+// nesting is how many parentheses a token opens.
+func nesting(t lexer.Token) int {
+	switch {
+	case t.Is(lexer.Bracket, "("):
+		return 1
+	case t.Is(lexer.Bracket, ")"):
+		return -1
+	}
+	return 0
+}
+
+// checkGap refuses what the tokenizer passed over, which is blanks and comments.
+func checkGap(text []rune, from, to int) *lawError {
+	for i := from; i < min(to, len(text)); i++ {
+		if !unicode.IsSpace(text[i]) {
+			return &lawError{i, "comments cannot stand in a formula", "put the comment behind # outside the quotes"}
+		}
+	}
+	return nil
 }
 
 func next(tokens []lexer.Token, i int) lexer.Token {
@@ -109,29 +129,27 @@ func checkDepth(t lexer.Token, depth int) *lawError {
 	return nil
 }
 
-func checkEnd(text []rune, end, depth int) *lawError {
-	if strings.TrimSpace(string(text[end:])) != "" {
-		return &lawError{end + leadingBlanks(text[end:]), "comments cannot stand in a formula", "put the comment behind # outside the quotes"}
+// checkToken refuses a token that is not a number, a name, an operator of
+// arithmetic, a parenthesis or a comma, and one that follows an operand without
+// an operator. after is the token that follows.
+func checkToken(t, after lexer.Token) *lawError {
+	if e := checkOne(t, after); e != nil {
+		return e
 	}
-	if depth > 0 {
-		return &lawError{end, "a parenthesis is not closed", "put ) where its group ends"}
+	operand := t.Kind == lexer.Number || t.Kind == lexer.Identifier || t.Is(lexer.Bracket, ")")
+	begins := after.Kind == lexer.Number || after.Kind == lexer.Identifier || after.Is(lexer.Bracket, "(")
+	if !operand || !begins || t.Kind == lexer.Identifier && after.Is(lexer.Bracket, "(") {
+		return nil
 	}
-	return nil
+	return &lawError{after.From, "an operator is missing here", "write * for a product"}
 }
 
-// checkToken refuses a token that is not a number, a name, an operator of
-// arithmetic, a parenthesis or a comma. after is the token that follows.
-func checkToken(t, after lexer.Token) *lawError {
+func checkOne(t, after lexer.Token) *lawError {
 	switch t.Kind {
-	case lexer.EOF:
-		return nil
 	case lexer.Number:
-		return checkNumber(t, after)
+		return checkNumber(t)
 	case lexer.Identifier:
-		if strings.Contains(t.Value, "$") {
-			return &lawError{t.From, strconv.Quote(t.Value) + " is not a name", "a name has letters, digits and _ only"}
-		}
-		if t.Value == "true" || t.Value == "false" || t.Value == "nil" {
+		if foreignName(t.Value) {
 			return foreign(t)
 		}
 		return nil
@@ -158,7 +176,7 @@ func checkComma(t, after lexer.Token) *lawError {
 }
 
 // checkNumber takes plain decimal numbers only.
-func checkNumber(t, after lexer.Token) *lawError {
+func checkNumber(t lexer.Token) *lawError {
 	if strings.Trim(t.Value, "0123456789.eE+-") != "" {
 		return &lawError{t.From, "the number " + t.Value + " is not written plainly", "write it in decimal digits, such as 1000 or 1e3"}
 	}
@@ -170,10 +188,12 @@ func checkNumber(t, after lexer.Token) *lawError {
 			return &lawError{t.From, "the whole number " + t.Value + " is too long", "write it with an exponent, such as 1e20"}
 		}
 	}
-	if after.Kind == lexer.Identifier || after.Kind == lexer.Number || after.Is(lexer.Bracket, "(") {
-		return &lawError{after.From, "an operator is missing here", "write * for a product"}
-	}
 	return nil
+}
+
+// foreignName tells whether the grammar takes a name for a value of its own.
+func foreignName(name string) bool {
+	return name == "true" || name == "false" || name == "nil"
 }
 
 // foreign words the refusal of what the tokenizer knows and a rate law does not.

@@ -69,6 +69,9 @@ type namedThing struct {
 	index int
 	at    int
 	used  bool
+	// refused marks a name that cannot be one; it is known only so that its uses
+	// are not reported as well.
+	refused bool
 }
 
 // nameTable resolves the names of a design.
@@ -78,11 +81,14 @@ type nameTable map[string]*namedThing
 func (t nameTable) of(kind nameKind) []string {
 	var out []string
 	for _, name := range slices.Sorted(maps.Keys(t)) {
-		if t[name].kind == kind {
+		if t[name].kind == kind && !t[name].refused {
 			out = append(out, name)
 		}
 	}
 	return out
 }
 
-func (t nameTable) all() []string { return slices.Sorted(maps.Keys(t)) }
+// all lists the names of both kinds.
+func (t nameTable) all() []string {
+	return append(t.of(speciesName), t.of(constantName)...)
+}

@@ -47,15 +47,40 @@ func (d *tomlDoc) recover(err error) int {
 		at = d.base + offsetIn(d.data[d.base:], place.Highlight)
 		message = place.Message
 	}
-	d.errorf(at, syntaxHint(message), "this is not TOML: %s", message)
 	line, _ := d.src.position(at)
-	text := strings.TrimSpace(d.src.line(line))
-	if strings.HasPrefix(text, "[") {
+	d.syntaxError(at, message)
+	d.damage(at, strings.TrimSpace(d.src.line(line)))
+	return max(d.src.after(at), d.base+1)
+}
+
+// syntaxError words the library's message.
+func (d *tomlDoc) syntaxError(at int, message string) {
+	end := at >= len(d.data) || d.data[at] == '\n' || d.data[at] == '\r' || d.data[at] == '#'
+	switch {
+	case end && strings.Contains(message, "start of value"):
+		d.errorf(at, syntaxHint(message), "a value is missing here")
+	case strings.Contains(message, "cannot have new lines"):
+		d.errorf(at, syntaxHint(message), "the text in quotes is not closed")
+	default:
+		d.errorf(at, syntaxHint(message), "this is not TOML: %s", message)
+	}
+}
+
+// damage notes what a line that cannot be read may have held: a header, or a key
+// of the current table.
+func (d *tomlDoc) damage(at int, line string) {
+	if strings.HasPrefix(line, "[") {
 		d.lostHeader = true
 		d.current = newTable(at, headerTable)
 	}
 	d.current.damaged = true
-	return max(d.src.after(at), d.base+1)
+	key, _, found := strings.Cut(line, "=")
+	key = strings.Trim(strings.TrimSpace(key), `"'`)
+	if found && isIdentifier(key) {
+		d.current.lost = append(d.current.lost, key)
+		return
+	}
+	d.current.lostKeys = true
 }
 
 // offsetIn gives the offset of a sub-slice in data, or the end of data.

@@ -32,8 +32,10 @@ type tomlTable struct {
 	index   map[string]int
 	origin  tomlOrigin
 	// damaged tells that part of the table could not be read, so that what is
-	// missing from it says nothing.
-	damaged bool
+	// missing from it says nothing; lost are the keys of that part, where they
+	// could be made out, and lostKeys tells that some could not.
+	damaged, lostKeys bool
+	lost              []string
 }
 
 // tomlOrigin is how a table came to be, which decides what may be added to it.
