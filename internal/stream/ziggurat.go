@@ -2,11 +2,11 @@ package stream
 
 import "math"
 
-// A layer is one strip of a ziggurat: 53 random bits j make x = j·width, which
-// lies under the curve for sure where j < inside.
-type layer struct {
-	inside uint64
-	width  float64
+// A Strip is one layer of a ziggurat: 53 random bits j make x = j·Width, which
+// lies under the curve for sure where j < Inside.
+type Strip struct {
+	Inside uint64
+	Width  float64
 }
 
 // A ziggurat covers a falling density f on x ≥ 0, f(0) = 1, by 256 strips of the
@@ -15,7 +15,7 @@ type layer struct {
 // of different bits of a random number, as Doornik (Univ. of Oxford working
 // paper, 2005) has it, so that the law is exact to the last of the 53 bits.
 type ziggurat struct {
-	layers [256]layer
+	strips [256]Strip
 	edge   [257]float64 // right edges; edge[0] is the area over f(right), edge[256] is 0
 	height [257]float64 // f(edge), but 0 at 0: the base has the tail to itself
 }
@@ -30,8 +30,8 @@ func newZiggurat(f, inverse func(float64) float64, right, area float64) *ziggura
 		z.edge[i] = inverse(z.height[i])
 	}
 	z.height[256] = 1
-	for i := range z.layers {
-		z.layers[i] = layer{uint64(z.edge[i+1] / z.edge[i] * 0x1p53), z.edge[i] * 0x1p-53}
+	for i := range z.strips {
+		z.strips[i] = Strip{uint64(z.edge[i+1] / z.edge[i] * 0x1p53), z.edge[i] * 0x1p-53}
 	}
 	return z
 }
@@ -56,25 +56,31 @@ var (
 			math.Sqrt(math.Pi/2)*math.Erfc(normalRight/math.Sqrt2))
 )
 
+// ExpStrips gives the strips of Exp, for loops that have its common case in line:
+// with b of Uint64, j = b>>11 and the strip at b&255, the number is j·Width where
+// j < Inside, and otherwise what ExpEdge makes of b and j·Width. The strips must
+// not be changed.
+func ExpStrips() *[256]Strip { return &expZiggurat.strips }
+
 // Exp gives an exponential number of mean 1.
 func (s *Stream) Exp() float64 {
 	b := s.src.Uint64()
-	l := &expZiggurat.layers[b&255]
-	x := float64(int64(b>>11)) * l.width
-	if b>>11 < l.inside {
+	l := &expZiggurat.strips[b&255]
+	x := float64(int64(b>>11)) * l.Width
+	if b>>11 < l.Inside {
 		return x
 	}
-	return s.expEdge(b, x)
+	return s.ExpEdge(b, x)
 }
 
-// expEdge decides the one case in a hundred that is not inside its strip for
-// sure. Beyond the right edge an exponential law starts anew.
-func (s *Stream) expEdge(b uint64, x float64) float64 {
+// ExpEdge decides the one case in a hundred that is not inside its strip for
+// sure; see ExpStrips. Beyond the right edge an exponential law starts anew.
+func (s *Stream) ExpEdge(b uint64, x float64) float64 {
 	z, shift := expZiggurat, 0.0
 	for {
 		i, j := b&255, b>>11
 		switch {
-		case j < z.layers[i].inside:
+		case j < z.strips[i].Inside:
 			return shift + x
 		case i == 0:
 			shift += expRight
@@ -82,16 +88,16 @@ func (s *Stream) expEdge(b uint64, x float64) float64 {
 			return shift + x
 		}
 		b = s.src.Uint64()
-		x = float64(int64(b>>11)) * z.layers[b&255].width
+		x = float64(int64(b>>11)) * z.strips[b&255].Width
 	}
 }
 
 // Normal gives a number of the standard normal law.
 func (s *Stream) Normal() float64 {
 	b := s.src.Uint64()
-	l := &normalZiggurat.layers[b&255]
-	x := float64(int64(b>>11)) * l.width
-	if b>>11 >= l.inside {
+	l := &normalZiggurat.strips[b&255]
+	x := float64(int64(b>>11)) * l.Width
+	if b>>11 >= l.Inside {
 		x = s.normalEdge(b, x)
 	}
 	return signed(x, b)
@@ -102,9 +108,9 @@ func (s *Stream) Normal() float64 {
 func (s *Stream) FillNormal(dst []float64) {
 	for i := range dst {
 		b := s.src.Uint64()
-		l := &normalZiggurat.layers[b&255]
-		x := float64(int64(b>>11)) * l.width
-		if b>>11 >= l.inside {
+		l := &normalZiggurat.strips[b&255]
+		x := float64(int64(b>>11)) * l.Width
+		if b>>11 >= l.Inside {
 			x = s.normalEdge(b, x)
 		}
 		dst[i] = signed(x, b)
@@ -122,7 +128,7 @@ func (s *Stream) normalEdge(b uint64, x float64) float64 {
 	for {
 		i, j := b&255, b>>11
 		switch {
-		case j < z.layers[i].inside:
+		case j < z.strips[i].Inside:
 			return x
 		case i == 0:
 			return s.normalTail()
@@ -130,7 +136,7 @@ func (s *Stream) normalEdge(b uint64, x float64) float64 {
 			return x
 		}
 		b = s.src.Uint64()
-		x = float64(int64(b>>11)) * z.layers[b&255].width
+		x = float64(int64(b>>11)) * z.strips[b&255].Width
 	}
 }
 
