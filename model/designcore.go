@@ -60,9 +60,9 @@ func (d *designer) oneRange(e *tomlEntry) (Range, bool) {
 	for i := range t.entries {
 		switch f := &t.entries[i]; f.key {
 		case "min":
-			r.Min, _ = d.whole(f, notNegative)
+			r.Min, _ = d.whole(f)
 		case "max":
-			if v, ok := d.whole(f, notNegative); ok {
+			if v, ok := d.whole(f); ok {
 				r.Max = v
 			}
 		default:

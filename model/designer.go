@@ -18,6 +18,7 @@ type designer struct {
 	unsure    bool
 	lost      map[string]bool // names that were lost, where they are known
 	speciesAt []int           // where each species stands in the file
+	wrong     map[int]bool    // constants whose value was refused
 	reactions map[string]int
 	readoutAt int // where readout was set, −1 before
 }
@@ -25,7 +26,7 @@ type designer struct {
 func newDesigner(doc *tomlDoc) *designer {
 	return &designer{
 		reporter: doc.reporter, draft: &Draft{Copies: 1}, names: nameTable{},
-		unsure: doc.lostHeader, lost: map[string]bool{}, reactions: map[string]int{}, readoutAt: -1,
+		unsure: doc.lostHeader, lost: map[string]bool{}, wrong: map[int]bool{}, reactions: map[string]int{}, readoutAt: -1,
 	}
 }
 
@@ -152,6 +153,7 @@ type span struct {
 
 var (
 	positive    = span{"a finite number above 0", func(v float64) bool { return v > 0 }}
+	wholeCount  = span{"a whole number, not below 0", func(v float64) bool { return v >= 0 }}
 	notNegative = span{"a finite number, not below 0", func(v float64) bool { return v >= 0 }}
 )
 
@@ -186,9 +188,9 @@ func (d *designer) anyNumber(key string, v *tomlValue, want string) (float64, bo
 	return x, true
 }
 
-// whole gives the value of an entry that must be a whole number within s.
-func (d *designer) whole(e *tomlEntry, s span) (int64, bool) {
-	v, ok := d.number(e, s)
+// whole gives the value of an entry that must be a whole number, not below 0.
+func (d *designer) whole(e *tomlEntry) (int64, bool) {
+	v, ok := d.number(e, wholeCount)
 	if !ok {
 		return 0, false
 	}

@@ -2,6 +2,7 @@ package model
 
 import (
 	"math"
+	"slices"
 
 	"github.com/pelletier/go-toml/v2/unstable"
 )
@@ -18,7 +19,7 @@ func (d *designer) law(e *tomlEntry, constantsOnly bool) *Node {
 // constants of the file must be within s.
 func (d *designer) constantFormula(e *tomlEntry, s span) *Node {
 	tree := d.numberOrFormula(e, s, true)
-	if tree == nil || e.value.kind != unstable.String || len(d.problems) > 0 {
+	if tree == nil || e.value.kind != unstable.String || !d.isCertain(tree) {
 		return tree
 	}
 	values := make([]float64, len(d.draft.Constants))
@@ -30,6 +31,12 @@ func (d *designer) constantFormula(e *tomlEntry, s span) *Node {
 		return nil
 	}
 	return tree
+}
+
+// isCertain tells whether every constant of a tree has its true value.
+func (d *designer) isCertain(tree *Node) bool {
+	wrong := func(i int) bool { return d.wrong[i] }
+	return !d.unsure && len(d.lost) == 0 && !slices.ContainsFunc(tree.Constants(), wrong)
 }
 
 func (d *designer) numberOrFormula(e *tomlEntry, s span, constantsOnly bool) *Node {

@@ -53,6 +53,7 @@ func (d *designer) oneReaction(v *tomlValue) {
 			r.MassAction = d.law(e, true)
 		default:
 			d.unknownKey(e, reactionKeys())
+			t.damaged = true // it may have been meant for one that is missing
 		}
 	}
 	d.checkReaction(v, &r)

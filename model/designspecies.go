@@ -56,7 +56,7 @@ func plainStart(e *tomlEntry) string {
 
 func (d *designer) start(e *tomlEntry, fixed bool) float64 {
 	if fixed {
-		v, _ := d.whole(e, notNegative)
+		v, _ := d.whole(e)
 		return float64(v)
 	}
 	v, _ := d.number(e, notNegative)
@@ -96,7 +96,8 @@ func (d *designer) readConstants(e *tomlEntry) {
 	for i := range t.entries {
 		c := &t.entries[i]
 		d.declare(c, namedThing{kind: constantName, index: len(d.draft.Constants)})
-		v, _ := d.number(c, notNegative)
+		v, ok := d.number(c, notNegative)
+		d.wrong[len(d.draft.Constants)] = !ok
 		d.draft.Constants = append(d.draft.Constants, Constant{Name: c.key, Value: v})
 	}
 }

@@ -22,9 +22,15 @@ func didYouMean(typed string, names []string) string {
 	return fmt.Sprintf("did you mean %q?", best)
 }
 
-// nearEnough is how many letters may be wrong: one in a short name, a third of a
-// longer one.
-func nearEnough(typed string) int { return min(max(1, len([]rune(typed))/3), 4) }
+// nearEnough is how many letters may be wrong: none in a name of one letter (only
+// its case), one in a short name, a third of a longer one.
+func nearEnough(typed string) int {
+	n := len([]rune(typed))
+	if n < 2 {
+		return 0
+	}
+	return min(max(1, n/3), 4)
+}
 
 // editDistance is the restricted Damerau–Levenshtein distance; any number not
 // below limit may stand for all of those.

@@ -18,6 +18,7 @@ type tomlDoc struct {
 	current *tomlTable
 	// lostHeader tells that the header of a table could not be read.
 	lostHeader bool
+	read       int // the line on which the last entry that was read begins
 }
 
 // readTOML gives the file's tree; what is wrong with it goes to the reporter.
@@ -47,9 +48,12 @@ func (d *tomlDoc) recover(err error) int {
 		at = d.base + offsetIn(d.data[d.base:], place.Highlight)
 		message = place.Message
 	}
-	line, _ := d.src.position(at)
+	line, _ := d.src.position(min(at, len(d.src.text)-1))
 	d.syntaxError(at, message)
-	d.damage(at, strings.TrimSpace(d.src.line(line)))
+	for i := d.read + 1; i <= line; i++ {
+		d.damage(at, strings.TrimSpace(d.src.line(i)))
+	}
+	d.read = line
 	return max(d.src.after(at), d.base+1)
 }
 
@@ -69,6 +73,9 @@ func (d *tomlDoc) syntaxError(at int, message string) {
 // damage notes what a line that cannot be read may have held: a header, or a key
 // of the current table.
 func (d *tomlDoc) damage(at int, line string) {
+	if line == "" || line[0] == '#' {
+		return
+	}
 	if strings.HasPrefix(line, "[") {
 		d.lostHeader = true
 		d.current = newTable(at, headerTable)
@@ -118,13 +125,15 @@ func syntaxHint(message string) string {
 }
 
 func (d *tomlDoc) expression(n *unstable.Node) {
+	keys := d.keys(n.Key())
+	d.read = d.lineOf(keys[0].at)
 	switch n.Kind {
 	case unstable.KeyValue:
-		d.assign(d.current, d.keys(n.Key()), d.value(n))
+		d.assign(d.current, keys, d.value(n))
 	case unstable.Table:
-		d.openTable(d.keys(n.Key()))
+		d.openTable(keys)
 	case unstable.ArrayTable:
-		d.openItem(d.keys(n.Key()))
+		d.openItem(keys)
 	}
 }
 
