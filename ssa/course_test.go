@@ -55,7 +55,7 @@ func moments(x []int64) (mean, variance float64) {
 //
 // Y has unit variance for normal counts only: in general its variance is
 // (κ−1)/2, with κ the law's kurtosis. Birth–death at t = 25 and 50, where most
-// runs are extinct, has κ = 10 and 94, and the bare rule would fail there with a
+// runs are extinct, has κ = 10 and 96, and the bare rule would fail there with a
 // correct engine in every other seed at t = 50. So Y is taken over the root of
 // (κ−1)/2 where the law is known to be far from normal.
 func TestTimeCourses(t *testing.T) {

@@ -105,10 +105,10 @@ func (k *direct) choose(l *lane, u float64) int {
 	return k.reaction[p]
 }
 
-func (k *direct) advance(lanes []lane, events int) {
+func (k *direct) advance(lanes []lane) {
 	for i := range lanes {
 		l := &lanes[i]
-		for e := 0; e < events && l.run >= 0; e++ {
+		for e := 0; e < turn && l.run >= 0; e++ {
 			if !k.event(l) {
 				k.begin(l)
 			}
@@ -119,13 +119,13 @@ func (k *direct) advance(lanes []lane, events int) {
 // event advances a lane by one event and tells whether its run goes on.
 func (k *direct) event(l *lane) bool {
 	total := l.ends[len(l.ends)-1]
-	t := l.time + l.random.Exp()/total
-	u := l.random.Float64() * total
+	draw := l.random.Next()
+	t := l.time + draw.Exp/total
 	if t > l.next && !k.late(l, t) {
 		return false
 	}
 	l.time = t
-	r := k.choose(l, u)
+	r := k.choose(l, draw.Unit*total)
 	k.fire(l, r)
 	l.left--
 	for _, d := range k.dependents[r] {

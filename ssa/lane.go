@@ -8,17 +8,23 @@ import (
 
 // A lane is a run under way.
 type lane struct {
-	random stream.Stream
-	time   float64
+	at   position // see lookup
+	time float64
 	// next is the time that an event may not pass without note: of the next sample
 	// or of the horizon.
-	next float64
-	left int64 // events until the budget is spent
-	run  int   // −1: the lane has no run
-	// sample is the index of the next of Plan.Times.
-	sample int
+	next   float64
+	random stream.Draws  // two numbers an event
+	bursts stream.Stream // sizes of bursts
+	left   int64         // events until the budget is spent
+	run    int           // −1: the lane has no run
+	sample int           // index of the next of Plan.Times
 	counts []int64
-	bursts stream.Stream
+
+	// draws are those of a block; before is random as it was at step first of the
+	// block, when those from there on were made. See blocks.
+	draws  [blockSteps]stream.Draw
+	before stream.Draws
+	first  int
 
 	values, sums, ends []float64 // see direct
 	classes            *classes  // see sparse
@@ -29,9 +35,12 @@ type lane struct {
 // arithmetic of what is above it clear of underflow.
 const never = 0x1p-960
 
-// burstStream tells a run's burst sizes from its other random numbers; it is
-// above any group and replicate.
-const burstStream = 1 << 63
+// These bits of a replicate tell a run's further streams from its first; they are
+// above any group.
+const (
+	edgeStream  = 1 << 62
+	burstStream = 1 << 63
+)
 
 // reset puts a run at its start.
 func (s *system) reset(l *lane, run int) {
@@ -40,7 +49,8 @@ func (s *system) reset(l *lane, run int) {
 	if s.MaxEvents == 0 {
 		l.left = math.MaxInt64
 	}
-	l.random = stream.New(s.Seed, s.Point, replicate)
+	l.random.Main = stream.New(s.Seed, s.Point, replicate)
+	l.random.Edge = stream.New(s.Seed, s.Point, replicate|edgeStream)
 	l.bursts = stream.New(s.Seed, s.Point, replicate|burstStream)
 	l.counts = append(l.counts[:0], s.Start...)
 	s.setNext(l)
@@ -52,6 +62,26 @@ func (s *system) events(l *lane) int64 {
 		return math.MaxInt64 - l.left
 	}
 	return s.MaxEvents - l.left
+}
+
+// redraw makes the draws of a block from a step on.
+func (l *lane) redraw(step int) {
+	l.before, l.first = l.random, step
+	if step == 0 {
+		l.random.Fill(&l.draws)
+		return
+	}
+	for i := step; i < blockSteps; i++ {
+		l.draws[i] = l.random.Next()
+	}
+}
+
+// rewind takes back the draws for a step of a block and later ones.
+func (l *lane) rewind(step int) {
+	l.random = l.before
+	for range step - l.first {
+		l.random.Next()
+	}
 }
 
 func (s *system) setNext(l *lane) {
@@ -79,6 +109,11 @@ func (s *system) fire(l *lane, r int) {
 	for _, c := range s.changes[r] {
 		l.counts[c.species] += c.by
 	}
+	s.addBursts(l, r)
+}
+
+// addBursts changes counts by the geometric products of a firing of reaction r.
+func (s *system) addBursts(l *lane, r int) {
 	for _, b := range s.bursts[r] {
 		l.counts[b.species] += int64(min(l.bursts.Exp()*b.scale, maxCountLimit))
 	}

@@ -27,7 +27,7 @@ type Plan struct {
 	// FirstReplicate + i, so shards of a large job start at different replicates.
 	Runs           int
 	FirstReplicate uint64
-	// Seed, Point and Group (below 2²³) with the replicate (below 2⁴⁰) give each
+	// Seed, Point and Group (below 2²²) with the replicate (below 2⁴⁰) give each
 	// run its own random numbers. Group is the index of the state that the runs
 	// start in.
 	Seed, Point, Group uint64
@@ -149,8 +149,8 @@ func (p *Plan) checkNumbers() error {
 		return fmt.Errorf("runs is %d; it must not be negative", p.Runs)
 	case p.FirstReplicate >= 1<<40 || uint64(p.Runs) > 1<<40-p.FirstReplicate:
 		return fmt.Errorf("replicates %d and %d more; they must be below 2⁴⁰", p.FirstReplicate, p.Runs)
-	case p.Group >= 1<<23:
-		return fmt.Errorf("group is %d; it must be below 2²³", p.Group)
+	case p.Group >= 1<<22:
+		return fmt.Errorf("group is %d; it must be below 2²²", p.Group)
 	case !(p.Until >= 0) || math.IsInf(p.Until, 1):
 		return fmt.Errorf("until is %v; it must be finite and not negative (0: no horizon)", p.Until)
 	case p.MaxEvents < 0:

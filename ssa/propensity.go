@@ -103,5 +103,10 @@ func (p *propensity) product(counts []int64) float64 {
 	return a
 }
 
-// bad tells whether a is not a propensity: negative or not finite.
-func bad(a float64) bool { return !(a >= 0 && a <= math.MaxFloat64) }
+// most is the largest propensity. It is a thousandth of the largest number, so
+// that the sums of a few do not overflow.
+const most = math.MaxFloat64 / 1024
+
+// bad tells whether a is not a propensity: negative, or not finite for all that
+// matters.
+func bad(a float64) bool { return !(a >= 0 && a <= most) }

@@ -11,6 +11,7 @@ import (
 // A job is the work of one Run: a queue of runs and their outcomes.
 type job struct {
 	*system
+	kernel   func(*worker) kernel
 	outcomes []Outcome
 	queue    atomic.Int64 // runs taken
 	stopped  atomic.Bool
@@ -42,7 +43,7 @@ func Run(ctx context.Context, p Plan) (Result, error) {
 
 // newJob lays out outcomes that say that no run has begun.
 func newJob(s *system) *job {
-	j := &job{system: s, outcomes: make([]Outcome, s.Runs)}
+	j := &job{system: s, kernel: newKernel, outcomes: make([]Outcome, s.Runs)}
 	n := len(s.Start)
 	counts := make([]int64, s.Runs*n)
 	for i := range j.outcomes {

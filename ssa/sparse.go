@@ -141,10 +141,10 @@ func (c *classes) lowest() (r int32, w float64) {
 	return 0, math.Inf(1) // never tried: total is positive
 }
 
-func (k *sparse) advance(lanes []lane, events int) {
+func (k *sparse) advance(lanes []lane) {
 	for i := range lanes {
 		l := &lanes[i]
-		for e := 0; e < events && l.run >= 0; e++ {
+		for e := 0; e < turn && l.run >= 0; e++ {
 			if !k.try(l) {
 				k.begin(l)
 			}
@@ -156,13 +156,14 @@ func (k *sparse) advance(lanes []lane, events int) {
 // tells whether the run goes on.
 func (k *sparse) try(l *lane) bool {
 	c := l.classes
-	t := l.time + l.random.Exp()/c.total
+	draw := l.random.Next()
+	t := l.time + draw.Exp/c.total
 	if t > l.next && !k.late(l, t) {
 		return false
 	}
 	l.time = t
-	r, w := c.choose(l.random.Float64() * c.total)
-	if l.random.Float64()*w >= c.values[r] {
+	r, w := c.choose(draw.Unit * c.total)
+	if l.random.Main.Float64()*w >= c.values[r] {
 		return true
 	}
 	return k.fired(l, int(r))

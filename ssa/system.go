@@ -130,3 +130,13 @@ func (t *target) holds(counts []int64) bool {
 	}
 	return t.core.Contains(counts)
 }
+
+// maybe tells whether the bounds of some species hold.
+func (t *target) maybe(species []int, counts []int64) bool {
+	for _, i := range species {
+		if counts[i] < t.core.Low[i] || counts[i] > t.core.High[i] {
+			return false
+		}
+	}
+	return true
+}

@@ -19,20 +19,25 @@ type kernel interface {
 	enter(l *lane) bool
 	// leave brings a lane's counts up to date.
 	leave(l *lane)
-	// advance gives each lane that has a run about that many events. It records
-	// runs that end, and goes on with the runs that begin then.
-	advance(lanes []lane, events int)
+	// advance gives each lane, all of which have runs, some tens to thousands of
+	// events. It records runs that end, and goes on with those that begin then.
+	advance(lanes []lane)
 }
 
-// pollEvents is the number of events between two looks at the context.
-const pollEvents = 2048
+// turn is the number of events that a kernel gives to one lane before it goes to
+// the next.
+const turn = 512
 
 func newWorker(j *job, lanes int) *worker {
 	w := &worker{job: j, lanes: make([]lane, lanes)}
 	for r := range j.Network.Reactions {
 		w.props = append(w.props, newPropensity(j.Network, r))
 	}
-	w.kernel = newKernel(w)
+	for i := range w.lanes {
+		w.lanes[i].run = -1
+		w.lanes[i].counts = make([]int64, len(j.Start))
+	}
+	w.kernel = j.kernel(w)
 	return w
 }
 
@@ -46,7 +51,7 @@ func (w *worker) work() {
 			w.cancel()
 			return
 		}
-		w.kernel.advance(w.lanes, pollEvents)
+		w.kernel.advance(w.lanes)
 		w.count()
 		w.tell()
 	}
@@ -120,7 +125,7 @@ func (w *worker) settle(l *lane, total float64) bool {
 	switch {
 	case w.runaway(l.counts):
 		w.record(l, RanAway, -1, nil)
-	case bad(total):
+	case !(total <= math.MaxFloat64):
 		w.record(l, BadRate, -1, w.badRate(l.counts))
 	case total < never:
 		w.pass(l, math.Inf(1))

@@ -1,0 +1,32 @@
+package ssa
+
+import "math"
+
+// rushPair is the rush of two rows of at most two reactions each, the shape of a
+// gene with its transcript or of two genes.
+func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
+	a, b := k.rows[0].entries, k.rows[1].entries
+	shifts := [4]uint64{k.shifts[groupWidth+1][0], k.shifts[groupWidth][0], k.shifts[1][0], k.shifts[0][0]}
+	for ; step < blockSteps; step++ {
+		for ; i < len(lanes); i++ {
+			l := &lanes[i]
+			at := l.at[0]
+			x, y, draw := &a[uint32(at)], &b[at>>32], &l.draws[step]
+			total := x.total + y.total
+			t := l.time + draw.Exp/total
+			if x.cores&y.cores != 0 || !(total >= never) || !(t <= l.next) {
+				return step, i
+			}
+			u := math.Float64bits(draw.Unit * total)
+			r := above(x.sums[0], u) + above(x.total, u) + above(x.total+y.sums[0], u)
+			l.time = t
+			l.at[0] = at + shifts[r&3]
+		}
+		i = 0
+	}
+	return step, 0
+}
+
+// above is 1 where sum is above the number with bits u, neither of them negative,
+// and else 0, without a branch: bits are in the order of the numbers.
+func above(sum float64, u uint64) uint64 { return (u - math.Float64bits(sum)) >> 63 }
