@@ -1,0 +1,51 @@
+package hold
+
+import "math"
+
+const (
+	// pilotShare of a state's events goes into its pilot, whose runs serve only to
+	// plan the ones that count and are then forgotten: a plan drawn from the runs it
+	// governs would favour short dwells.
+	pilotShare = 0.05
+	pilotRuns  = 32
+	// pilotFlips is how many flips of the pilot make its mean good enough (to
+	// about a third) to plan with.
+	pilotFlips = 8
+	// capDwells is the length, in mean dwells as the pilot saw them, at which a run
+	// of a planned job is cut off all the same: so far out that it cuts next to none.
+	capDwells = 30
+	// spareEvents is the shortest run worth making, in events, where flips are
+	// not in reach: it must outlast the relaxation from its start many times.
+	spareEvents = 1_000_000
+)
+
+// An allowance is what the runs of one state may spend.
+type allowance struct {
+	runs   int
+	events int64 // most events of one run; 0: no limit
+}
+
+// pilotAllowance is the pilot of a state with so many events to spend.
+func pilotAllowance(events int64) allowance {
+	return allowance{pilotRuns, max(1, int64(pilotShare*float64(events))/pilotRuns)}
+}
+
+// plan gives the runs that count. flips is what the precision takes; events is
+// what the state may spend; seenFlips and seenEvents are the pilot's.
+//
+// Where the pilot saw flips enough, every run goes on to its flip, as many runs
+// as the precision takes or the budget pays: the number of flips is then fixed
+// beforehand, and 2·flips·mean/θ is χ² with 2·flips degrees of freedom. Where it
+// did not, a few long runs share the budget, and flips are counted in a time
+// fixed beforehand but for chance. Neither depends on threads, nor on the runs
+// themselves.
+func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
+	left := float64(events) * (1 - pilotShare)
+	if seenFlips >= pilotFlips {
+		perDwell := float64(seenEvents) / float64(seenFlips)
+		runs := min(float64(flips), math.Max(1, math.Floor(left/perDwell)))
+		return allowance{int(runs), int64(math.Ceil(perDwell * capDwells))}
+	}
+	runs := min(max(left/spareEvents, 1), pilotRuns)
+	return allowance{int(runs), max(1, int64(left/math.Floor(runs)))}
+}

@@ -1,0 +1,136 @@
+package hold
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"holdfast/analysis/dwell"
+	"holdfast/model"
+)
+
+// The routes.
+const (
+	routeRuns      = "runs"
+	routeAbsorbing = "absorbing" // nothing to estimate: no reaction leads out
+)
+
+// holdGenerations are the numbers of generations that chances of holding are
+// given for.
+func holdGenerations() []float64 { return []float64{10, 100, 1000} }
+
+// anyState stands in reports for leaving a state by whichever way; absorbed for
+// an absorbing state that is none of the resting states.
+const (
+	anyState = "any"
+	absorbed = "absorbed"
+)
+
+// estimate turns the dwells seen in one state into rows of the report.
+func (j *job) estimate(r *stateRuns) error {
+	from := j.survey.Stable()[r.state].Name
+	if r.interrupted {
+		j.report.Interrupted = true
+		j.warn("%s: stopped before its runs were done; the numbers are from the %d runs begun by then", from, len(r.seen))
+	}
+	summary, err := dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{From: r.state, Generation: j.network.Generation, Holds: holdGenerations()})
+	if errors.Is(err, dwell.ErrNoExposure) {
+		j.warn("%s: nothing was seen of it", from)
+		return nil
+	}
+	if err != nil {
+		return err
+	}
+	for _, w := range summary.Warnings {
+		j.warn("%s: %s", from, w)
+	}
+	if len(summary.To) > 1 {
+		j.addRow(from, &summary, summary.Any)
+	}
+	for _, e := range summary.To {
+		j.addRow(from, &summary, e)
+	}
+	j.checkPrecision(from, r, summary.Any)
+	return nil
+}
+
+func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
+	row := DwellReport{
+		From: from, To: j.targetName(e.To), Route: routeRuns, Sampled: true,
+		Mean: Value(e.Mean), Low: Value(e.Low), High: Value(e.High), Flips: int64(e.Flips), Exposure: Value(e.Exposure),
+		PerGeneration: Value(e.PerGeneration.Value), PerGenerationLow: Value(e.PerGeneration.Low), PerGenerationHigh: Value(e.PerGeneration.High),
+	}
+	if e.Flips == 0 {
+		row.Mean, row.Note = Value(math.NaN()), "no flip seen: a lower limit only"
+	}
+	for _, h := range e.Hold {
+		row.Holds = append(row.Holds, HoldChance{h.Generations, Value(h.Value), Value(h.Low), Value(h.High)})
+	}
+	j.add(row)
+	j.rates = append(j.rates, rateOf(summary, e))
+}
+
+// add puts a row into the report, with the same times in generations.
+func (j *job) add(row DwellReport) {
+	g := Value(j.network.Generation)
+	if g == 0 {
+		g = Value(math.NaN())
+	}
+	row.Generations, row.GenerationsLow, row.GenerationsHigh = row.Mean/g, row.Low/g, row.High/g
+	j.report.Dwells = append(j.report.Dwells, row)
+}
+
+// neverLeft reports an absorbing state.
+func (j *job) neverLeft(s int) {
+	from, inf := j.survey.Stable()[s].Name, Value(math.Inf(1))
+	for t, to := range j.survey.Stable() {
+		if t == s {
+			continue
+		}
+		row := DwellReport{From: from, To: to.Name, Route: routeAbsorbing, Mean: inf, Low: inf, High: inf, Never: true, Note: "never returns"}
+		if j.network.Generation > 0 {
+			for _, g := range holdGenerations() {
+				row.Holds = append(row.Holds, HoldChance{g, 1, 1, 1})
+			}
+		} else {
+			nan := Value(math.NaN())
+			row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = nan, nan, nan
+		}
+		j.add(row)
+		j.rates = append(j.rates, neverRate(s, t, row))
+	}
+	j.warn("%s is absorbing: no reaction leads out of it, so a cell that has fallen into it never returns by itself", from)
+}
+
+func (j *job) targetName(to int) string {
+	switch to {
+	case dwell.Any:
+		return anyState
+	case dwell.Elsewhere:
+		return absorbed
+	}
+	return j.survey.Stable()[to].Name
+}
+
+// checkPrecision warns where the interval is wider than asked.
+func (j *job) checkPrecision(from string, r *stateRuns, e dwell.Estimate) {
+	if j.options.Runs > 0 || j.options.Until > 0 || r.interrupted || e.Flips == 0 {
+		return
+	}
+	if half := math.Max(e.High/e.Mean-1, 1-e.Low/e.Mean); half > j.options.Precision*(1+1e-9) {
+		j.warn("%s: the interval reaches %.2g %% from the mean, wider than the %.2g %% asked; more events (--events) narrow it",
+			from, 100*half, 100*j.options.Precision)
+	}
+}
+
+func (j *job) warn(format string, a ...any) {
+	j.report.Warnings = append(j.report.Warnings, fmt.Sprintf(format, a...))
+}
+
+func speciesNames(n *model.Network) []string {
+	names := make([]string, len(n.Species))
+	for i, s := range n.Species {
+		names[i] = s.Name
+	}
+	return names
+}

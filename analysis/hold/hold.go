@@ -1,0 +1,82 @@
+package hold
+
+import (
+	"context"
+	"time"
+
+	"holdfast/analysis/records"
+	"holdfast/deterministic"
+	"holdfast/model"
+)
+
+// A job is one hold job at work.
+type job struct {
+	network *model.Network
+	options Options
+	survey  *deterministic.Map
+	sink    *sink // nil: nothing is recorded
+	report  *Report
+	rates   []records.Rate // the same rows as the report's, for the records
+}
+
+// Run surveys the network, estimates how long each resting state holds, and
+// writes the records if a folder is given.
+//
+// Errors are an *OptionError, those of deterministic.Survey, of the engine (a
+// rate that is negative or not finite, counts that run away) and of the records.
+// If ctx is done before the job is, the report says what was seen by then and
+// has Interrupted set; there is no error then.
+func Run(ctx context.Context, network *model.Network, options Options) (*Report, error) {
+	begun := time.Now()
+	options, err := options.complete()
+	if err != nil {
+		return nil, err
+	}
+	survey, err := deterministic.Survey(ctx, network, deterministic.Options{})
+	if err != nil {
+		return nil, err
+	}
+	j := &job{network: network, options: options, survey: survey}
+	j.newReport()
+	j.report.Route = "runs: exact stochastic runs, each from a state to its first flip"
+	if err := j.openSink(); err != nil {
+		return nil, err
+	}
+	defer j.sink.abandon()
+	if err := j.holdTimes(ctx); err != nil {
+		return nil, err
+	}
+	j.report.Work.Seconds = time.Since(begun).Seconds()
+	return j.report, j.closeSink()
+}
+
+// holdTimes estimates the hold time of every state in turn.
+func (j *job) holdTimes(ctx context.Context) error {
+	states := len(j.survey.Stable())
+	left := j.options.Events
+	for s, state := range j.survey.Stable() {
+		if state.Absorbing {
+			j.neverLeft(s)
+			continue
+		}
+		r, err := j.runState(ctx, s, perRun(left, states-s))
+		if err != nil {
+			return err
+		}
+		j.report.Work.Events += r.events
+		left = remaining(left, r.events)
+		if err := j.estimate(r); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// remaining takes what was spent from a budget, of which 0 is no limit; a budget
+// that is used up keeps a last event for each state to come.
+func remaining(budget, spent int64) int64 {
+	if budget == 0 {
+		return 0
+	}
+	return max(budget-spent, 1)
+}

@@ -1,0 +1,88 @@
+package hold
+
+import (
+	"fmt"
+	"math"
+	"runtime"
+)
+
+const (
+	defaultPrecision = 0.1
+	// defaultEvents is what two cores do in a few seconds on a small network.
+	defaultEvents = 600_000_000
+)
+
+// Options say how a hold job is done. The zero value is a job of the default
+// precision and budget.
+type Options struct {
+	// Precision is the relative half-width asked of each 95 % interval; 0: 0.1.
+	Precision float64
+	// Runs is the number of runs of each state, each to its first flip; 0: as many
+	// as Precision takes, or as the budget allows.
+	Runs int64
+	// Events is the most reaction events of all runs together; 0: 600 million, or
+	// no limit where Runs or Until is given.
+	Events int64
+	// Until is the longest time that one run lasts, in the design's unit; 0: no limit.
+	Until float64
+
+	// Seed chooses the random numbers: the same seed gives the same answer,
+	// whatever Threads and Lanes are.
+	Seed uint64
+	// Threads is the number of goroutines; 0: one a processor. Lanes is the number
+	// of runs that one of them advances in turn; 0: chosen by the engine.
+	Threads, Lanes int
+
+	// Folder, if not empty, receives the records. Command is what they carry as
+	// the command that made them.
+	Folder, Command string
+
+	// Progress, if not nil, is told now and then how far the job is; never twice
+	// at once.
+	Progress func(Progress)
+}
+
+// Progress tells how far a job is.
+type Progress struct {
+	Stage  string  // what is being done, in a few words
+	Share  float64 // done, from 0 to 1
+	Events int64   // of all runs so far
+}
+
+// An OptionError is an option out of its range.
+type OptionError struct {
+	Name    string
+	Value   any
+	Allowed string
+}
+
+// Error states the option, its value and what is allowed.
+func (e *OptionError) Error() string {
+	return fmt.Sprintf("%s is %v; it must be %s", e.Name, e.Value, e.Allowed)
+}
+
+// complete gives the options with zeros replaced, or an *OptionError.
+func (o Options) complete() (Options, error) {
+	switch {
+	case o.Precision != 0 && !(o.Precision >= 0.001 && o.Precision < 1):
+		return o, &OptionError{"precision", o.Precision, "from 0.001 to below 1"}
+	case o.Runs < 0 || o.Runs > 1<<31:
+		return o, &OptionError{"runs", o.Runs, "from 1 to 2³¹"}
+	case o.Events < 0:
+		return o, &OptionError{"events", o.Events, "at least 1"}
+	case !(o.Until >= 0) || math.IsInf(o.Until, 0):
+		return o, &OptionError{"until", o.Until, "a finite time above 0"}
+	case o.Threads < 0 || o.Threads > 4096:
+		return o, &OptionError{"threads", o.Threads, "from 1 to 4096"}
+	}
+	if o.Precision == 0 {
+		o.Precision = defaultPrecision
+	}
+	if o.Threads == 0 {
+		o.Threads = runtime.GOMAXPROCS(0)
+	}
+	if o.Events == 0 && o.Runs == 0 && o.Until == 0 {
+		o.Events = defaultEvents
+	}
+	return o, nil
+}

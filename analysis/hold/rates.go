@@ -1,0 +1,45 @@
+package hold
+
+import (
+	"math"
+
+	"holdfast/analysis/dwell"
+	"holdfast/analysis/records"
+)
+
+// rateOf is the row of the table rates for one estimate from runs.
+func rateOf(s *dwell.Summary, e dwell.Estimate) records.Rate {
+	row := records.Rate{
+		From: s.From, To: recordTarget(e.To), Route: routeRuns, Interval: e.Method.String(),
+		Mean: e.Mean, Low: e.Low, High: e.High, StandardError: e.StandardError,
+		Flips: int64(e.Flips), Dwells: int64(s.Dwells), Exposure: e.Exposure, PerGeneration: records.Range(e.PerGeneration),
+	}
+	for _, h := range e.Hold {
+		row.Hold = append(row.Hold, records.HoldChance{Generations: h.Generations, Range: records.Range(h.Range), Source: h.Source.String()})
+	}
+	return row
+}
+
+// recordTarget gives the records' index of a target of package dwell.
+func recordTarget(to int) int {
+	switch to {
+	case dwell.Any:
+		return records.Any
+	case dwell.Elsewhere:
+		return records.Elsewhere
+	}
+	return to
+}
+
+// neverRate is the row of the table rates for a state that is never left.
+func neverRate(from, to int, report DwellReport) records.Rate {
+	row := records.Rate{
+		From: from, To: to, Route: routeAbsorbing, Interval: "no reaction leads out", Never: true,
+		Mean: math.Inf(1), Low: math.Inf(1), High: math.Inf(1), StandardError: math.NaN(),
+		Flips: -1, Dwells: -1, Exposure: math.NaN(), PerGeneration: records.Range{},
+	}
+	for _, h := range report.Holds {
+		row.Hold = append(row.Hold, records.HoldChance{Generations: h.Generations, Range: records.Range{Value: 1, Low: 1, High: 1}, Source: "no reaction leads out"})
+	}
+	return row
+}

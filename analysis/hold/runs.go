@@ -1,0 +1,173 @@
+package hold
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"strings"
+
+	"holdfast/analysis/dwell"
+	"holdfast/model"
+	"holdfast/ssa"
+)
+
+const (
+	// block is the most runs that are in memory at once.
+	block = 1 << 16
+	// pilotReplicate is the first replicate of pilots: no run that counts has it.
+	pilotReplicate = 1 << 39
+)
+
+// stateRuns are the runs of one state and what was seen in them.
+type stateRuns struct {
+	state       int
+	seen        []dwell.Observation
+	events      int64
+	interrupted bool
+}
+
+// runState makes the runs of state s, at a cost of at most events (0: no limit).
+func (j *job) runState(ctx context.Context, s int, events int64) (*stateRuns, error) {
+	r := &stateRuns{state: s}
+	allowed, err := j.allow(ctx, r, events)
+	if err != nil {
+		return r, err
+	}
+	for done := 0; done < allowed.runs && !r.interrupted; done += block {
+		p := j.runPlan(s, uint64(done), min(block, allowed.runs-done), allowed.events)
+		p.Progress = j.progressOf(s, done, allowed.runs)
+		if err := j.count(ctx, r, p); err != nil {
+			return r, err
+		}
+	}
+	return r, nil
+}
+
+// allow plans the runs of a state, by a pilot where the number is not given.
+func (j *job) allow(ctx context.Context, r *stateRuns, events int64) (allowance, error) {
+	if j.options.Runs > 0 {
+		return allowance{int(j.options.Runs), perRun(events, int(j.options.Runs))}, nil
+	}
+	flips := dwell.FlipsFor(j.options.Precision)
+	if events == 0 {
+		return allowance{flips, 0}, nil
+	}
+	pilot := pilotAllowance(events)
+	result, err := ssa.Run(ctx, j.runPlan(r.state, pilotReplicate, pilot.runs, pilot.events))
+	r.events += result.Events
+	if errors.Is(err, context.Canceled) {
+		r.interrupted = true
+		return allowance{}, nil
+	}
+	if err != nil {
+		return allowance{}, err
+	}
+	seen := 0
+	for i := range result.Outcomes {
+		o := &result.Outcomes[i]
+		if o.Ending == ssa.BadRate || o.Ending == ssa.RanAway {
+			return allowance{}, Explain(j.network, o.Err())
+		}
+		if o.Ending == ssa.Flipped || o.Ending == ssa.Absorbed {
+			seen++
+		}
+	}
+	return plan(flips, events, seen, result.Events), nil
+}
+
+// mostMolecules is the count at which a run has run away: far above the box of all
+// resting states and the start.
+func (j *job) mostMolecules() int64 {
+	most := 0.0
+	for i, high := range j.survey.High {
+		most = math.Max(most, high*j.network.Unit(i))
+	}
+	for _, n := range j.network.StartCounts() {
+		most = math.Max(most, float64(n))
+	}
+	return int64(math.Min(math.Max(100*most, leastRunaway), 1e12))
+}
+
+// leastRunaway is the smallest count that is called running away.
+const leastRunaway = 100_000
+
+// perRun shares events among runs; 0 stays no limit.
+func perRun(events int64, runs int) int64 {
+	if events == 0 {
+		return 0
+	}
+	return max(1, events/int64(runs))
+}
+
+func (j *job) runPlan(s int, first uint64, runs int, events int64) ssa.Plan {
+	return ssa.Plan{
+		Network: j.network, Start: j.survey.Cores[s].Start, Cores: j.survey.Cores, From: s,
+		Runs: runs, FirstReplicate: first, Seed: j.options.Seed, Group: uint64(s),
+		Until: j.options.Until, MaxEvents: events, MaxCount: j.mostMolecules(), Threads: j.options.Threads, Lanes: j.options.Lanes,
+	}
+}
+
+// count makes the runs of p, takes their dwells into r and records them.
+func (j *job) count(ctx context.Context, r *stateRuns, p ssa.Plan) error {
+	result, err := ssa.Run(ctx, p)
+	r.events += result.Events
+	if err != nil && !errors.Is(err, context.Canceled) {
+		return Explain(j.network, err)
+	}
+	for i := range result.Outcomes {
+		if err := j.take(r, &result.Outcomes[i]); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// take adds one outcome to what was seen.
+func (j *job) take(r *stateRuns, o *ssa.Outcome) error {
+	if o.Ending == ssa.Cancelled {
+		r.interrupted = true
+		if o.Events == 0 {
+			return nil
+		}
+	} else if err := o.Err(); err != nil {
+		return Explain(j.network, err)
+	}
+	seen := j.observation(o)
+	r.seen = append(r.seen, seen)
+	return j.record(r.state, o, seen)
+}
+
+// observation is what an outcome says about the dwell.
+func (j *job) observation(o *ssa.Outcome) dwell.Observation {
+	switch o.Ending {
+	case ssa.Flipped:
+		return dwell.Observation{To: o.Core, Absorbed: j.survey.Stable()[o.Core].Absorbing, Time: o.Time}
+	case ssa.Absorbed:
+		return dwell.Observation{To: dwell.Elsewhere, Absorbed: true, Time: o.Time}
+	}
+	return dwell.Observation{To: dwell.Censored, Time: o.Time}
+}
+
+// Explain adds to an engine's error, on a network, what to do about it.
+func Explain(n *model.Network, err error) error {
+	var rate *ssa.RateError
+	var away *ssa.RunawayError
+	switch {
+	case errors.As(err, &rate):
+		return fmt.Errorf("reaction %q has the rate %v at %s; a rate must be finite and not below 0: mend its law, with max(0, …) say",
+			rate.Name, rate.Value, countsText(n, rate.Counts))
+	case errors.As(err, &away):
+		return fmt.Errorf("counts run away: %s reached %d molecules at time %.4g %s, far beyond its resting states; is a loss missing, or a production without bound?",
+			n.Species[away.Species].Name, away.Counts[away.Species], away.Time, n.TimeUnit)
+	}
+	return err
+}
+
+func countsText(n *model.Network, counts []int64) string {
+	parts := make([]string, len(counts))
+	for i, k := range counts {
+		parts[i] = fmt.Sprintf("%s = %d", n.Species[i].Name, k)
+	}
+	return strings.Join(parts, ", ")
+}

@@ -1,0 +1,124 @@
+package hold
+
+import (
+	"holdfast/analysis/dwell"
+	"holdfast/analysis/records"
+	"holdfast/deterministic"
+	"holdfast/internal/version"
+	"holdfast/model"
+	"holdfast/ssa"
+)
+
+// Provenance says what the records of a job on network were made from.
+func Provenance(network *model.Network, seed uint64, command string) records.Provenance {
+	return records.Provenance{
+		Title: network.Title, Design: network.Text, Seed: seed, Version: version.Number, Command: command,
+		TimeUnit: network.TimeUnit, Generation: network.Generation, Copies: network.Copies,
+	}
+}
+
+// WriteStates writes the table states of a survey.
+func WriteStates(folder *records.Folder, survey *deterministic.Map) error {
+	states := make([]records.State, len(survey.States))
+	for i := range survey.States {
+		s := &survey.States[i]
+		states[i] = records.State{
+			Name: s.Name, Type: s.Kind.String(), Absorbing: s.Absorbing,
+			Amounts: s.Amounts, Molecules: s.Molecules, Deviation: deviations(s), Eigenvalue: leading(s),
+		}
+	}
+	return records.WriteStates(folder, speciesNames(survey.Network), states)
+}
+
+// A sink writes the records of a job. A nil sink takes everything and keeps nothing.
+type sink struct {
+	folder  *records.Folder
+	dwells  *records.Dwells
+	endings map[string]int64
+}
+
+// endings lists the ways in which a recorded run can end, by ssa.Ending.
+func endings() []string {
+	var names []string
+	for e := ssa.Flipped; e <= ssa.BadRate; e++ {
+		names = append(names, e.String())
+	}
+	return names
+}
+
+func (j *job) openSink() error {
+	if j.options.Folder == "" {
+		return nil
+	}
+	folder, err := records.Create(j.options.Folder, Provenance(j.network, j.options.Seed, j.options.Command))
+	if err != nil {
+		return err
+	}
+	j.sink = &sink{folder: folder, endings: map[string]int64{}}
+	if err := WriteStates(folder, j.survey); err != nil {
+		return err
+	}
+	j.sink.dwells, err = records.NewDwells(folder, j.stateNames(), endings())
+	return err
+}
+
+// record keeps one dwell.
+func (j *job) record(from int, o *ssa.Outcome, seen dwell.Observation) error {
+	if j.sink == nil {
+		return nil
+	}
+	j.sink.endings[o.Ending.String()]++
+	return j.sink.dwells.Append(records.Dwell{
+		From: from, To: seen.To, Ending: int(o.Ending), Replicate: o.Replicate, Time: o.Time, Events: o.Events,
+	})
+}
+
+// closeSink writes the rates and puts everything in place.
+func (j *job) closeSink() error {
+	if j.sink == nil {
+		return nil
+	}
+	if err := records.WriteRates(j.sink.folder, j.stateNames(), j.rates); err != nil {
+		return err
+	}
+	o := records.Outcome{
+		Endings: j.sink.endings, Events: j.report.Work.Events, Warnings: j.report.Warnings, CutShort: j.report.Interrupted,
+	}
+	if o.CutShort {
+		o.Reason = "interrupted"
+	}
+	return j.sink.folder.Finish(o)
+}
+
+// abandon drops what has not been put in place.
+func (s *sink) abandon() {
+	if s != nil {
+		s.folder.Abandon()
+	}
+}
+
+func (j *job) stateNames() []string {
+	var names []string
+	for _, s := range j.survey.Stable() {
+		names = append(names, s.Name)
+	}
+	return names
+}
+
+func deviations(s *deterministic.State) []float64 {
+	if s.Covariance == nil {
+		return nil
+	}
+	out := make([]float64, len(s.Molecules))
+	for i := range out {
+		out[i] = s.SD(i)
+	}
+	return out
+}
+
+func leading(s *deterministic.State) complex128 {
+	if len(s.Eigenvalues) == 0 {
+		return 0
+	}
+	return s.Eigenvalues[0]
+}

@@ -1,0 +1,117 @@
+package trace
+
+import (
+	"context"
+	"errors"
+
+	"holdfast/analysis/hold"
+	"holdfast/analysis/records"
+	"holdfast/deterministic"
+	"holdfast/model"
+)
+
+// Output says where paths are written to.
+type Output struct {
+	// Folder receives the records; empty: nothing is written. Command is what they
+	// carry as the command that made them.
+	Folder, Command string
+}
+
+// A Summary is what Run gives back beside the records.
+type Summary struct {
+	Paths    *Paths
+	Sketch   *Sketch // of the first path
+	Rows     int64
+	Warnings []string
+}
+
+// Run makes sample paths of the network and writes them to the table paths, beside
+// the table states. A design with one resting state or none is traced too; that
+// it is no switch is then a warning.
+func Run(ctx context.Context, network *model.Network, o Options, out Output) (*Summary, error) {
+	survey, err := deterministic.Survey(ctx, network, deterministic.Options{})
+	s := &Summary{}
+	if err != nil {
+		if ctx.Err() != nil {
+			return nil, err
+		}
+		s.Warnings = append(s.Warnings, err.Error())
+	}
+	if survey == nil {
+		survey = &deterministic.Map{Network: network}
+	}
+	if s.Paths, err = New(network, survey, o); err != nil {
+		return nil, err
+	}
+	s.Sketch = NewSketch(s.Paths)
+	w, err := newWriter(s.Paths, out)
+	if err != nil {
+		return nil, err
+	}
+	defer w.abandon()
+	err = s.Paths.Make(ctx, func(r Row) error {
+		s.Rows++
+		if r.Run == 0 {
+			s.Sketch.Add(r)
+		}
+		return w.add(r)
+	})
+	if err != nil {
+		return nil, hold.Explain(network, err)
+	}
+	return s, w.finish(s)
+}
+
+// A writer puts rows into the records; a nil one keeps nothing.
+type writer struct {
+	folder *records.Folder
+	paths  *records.Paths
+}
+
+func newWriter(p *Paths, out Output) (*writer, error) {
+	if out.Folder == "" {
+		return nil, nil
+	}
+	folder, err := records.Create(out.Folder, hold.Provenance(p.Network, p.options.Seed, out.Command))
+	if err != nil {
+		return nil, err
+	}
+	w := &writer{folder: folder}
+	var species, states []string
+	for _, s := range p.Network.Species {
+		species = append(species, s.Name)
+	}
+	for _, s := range p.Survey.Stable() {
+		states = append(states, s.Name)
+	}
+	if len(p.Survey.States) > 0 {
+		err = hold.WriteStates(folder, p.Survey)
+	}
+	var failed error
+	w.paths, failed = records.NewPaths(folder, species, states)
+	if err = errors.Join(err, failed); err != nil {
+		folder.Abandon()
+		return nil, err
+	}
+	return w, nil
+}
+
+func (w *writer) add(r Row) error {
+	if w == nil {
+		return nil
+	}
+	return w.paths.Append(int64(r.Run), r.Time, r.State, r.Counts)
+}
+
+func (w *writer) finish(s *Summary) error {
+	if w == nil {
+		return nil
+	}
+	return w.folder.Finish(records.Outcome{Events: s.Paths.Events, Warnings: s.Warnings})
+}
+
+func (w *writer) abandon() {
+	if w != nil {
+		w.folder.Abandon()
+	}
+}

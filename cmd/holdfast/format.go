@@ -1,0 +1,75 @@
+package main
+
+import (
+	"fmt"
+	"io"
+	"math"
+	"strconv"
+	"strings"
+	"unicode/utf8"
+)
+
+// number writes v with four significant digits, plainly from 0.001 to a million.
+func number(v float64) string {
+	size := math.Abs(v)
+	switch {
+	case math.IsNaN(v):
+		return "–"
+	case math.IsInf(v, 1):
+		return "∞"
+	case v == 0:
+		return "0"
+	case size >= 0.001 && size < 999950:
+		return strconv.FormatFloat(roundTo4(v), 'f', -1, 64)
+	}
+	mantissa, exponent, _ := strings.Cut(strconv.FormatFloat(v, 'e', 3, 64), "e")
+	mantissa = strings.TrimRight(strings.TrimRight(mantissa, "0"), ".")
+	exponent = strings.TrimPrefix(exponent, "+")
+	if sign := strings.HasPrefix(exponent, "-"); sign {
+		return mantissa + "e-" + strings.TrimLeft(exponent[1:], "0")
+	}
+	return mantissa + "e" + strings.TrimLeft(exponent, "0")
+}
+
+func roundTo4(v float64) float64 {
+	r, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 4, 64), 64)
+	return r
+}
+
+// chance writes a probability so that what is near to 1 does not read as 1.
+func chance(p float64) string {
+	if p > 0.9995 && p < 1 {
+		return "1 − " + number(1-p)
+	}
+	return number(p)
+}
+
+// A table is rows of cells under a heading, set in columns.
+type table struct {
+	rows [][]string
+}
+
+func (t *table) add(cells ...string) { t.rows = append(t.rows, cells) }
+
+// write prints the rows two spaces in, the columns two spaces apart.
+func (t *table) write(w io.Writer) error {
+	var width []int
+	for _, row := range t.rows {
+		for i, c := range row {
+			if i == len(width) {
+				width = append(width, 0)
+			}
+			width[i] = max(width[i], utf8.RuneCountInString(c))
+		}
+	}
+	for _, row := range t.rows {
+		var b strings.Builder
+		for i, c := range row {
+			b.WriteString("  " + c + strings.Repeat(" ", width[i]-utf8.RuneCountInString(c)))
+		}
+		if _, err := fmt.Fprintln(w, strings.TrimRight(b.String(), " ")); err != nil {
+			return err
+		}
+	}
+	return nil
+}

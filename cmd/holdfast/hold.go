@@ -1,0 +1,193 @@
+package main
+
+import (
+	"context"
+	"encoding/json"
+	"errors"
+	"fmt"
+	"io"
+
+	"github.com/spf13/pflag"
+
+	"holdfast/analysis/hold"
+)
+
+const holdAbout = `Tells how long each resting state of the design holds: the mean dwell time of every
+ordered pair of states with a 95 % interval, flips per generation, and the chance of
+holding for 10, 100 and 1000 generations.
+
+A dwell starts at the state's resting point and ends when the path first enters the
+core of another state; recrossings of the ridge between them do not count. Runs go
+on until the interval is as narrow as --precision asks or the budget is spent. The
+same seed gives the same numbers and the same records, whatever --threads is.`
+
+func holdCommand() command {
+	return command{name: "hold", args: "FILE", summary: "how long each state holds, with an interval (the main job)", about: holdAbout, setup: setupHold}
+}
+
+func setupHold(f *pflag.FlagSet) work {
+	design := designFlags(f)
+	var o hold.Options
+	var asJSON, quiet bool
+	var threads int64
+	positiveFlag(f, &o.Precision, "precision", "relative half-width of the 95 % interval to reach (0.1 if not given)")
+	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
+	countFlag(f, &o.Events, "events", "most reaction events in all (6e8 if no limit is given)")
+	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
+	f.Uint64Var(&o.Seed, "seed", 1, "`number` that chooses the random numbers")
+	countFlag(f, &threads, "threads", "goroutines (one a processor if not given)")
+	f.StringVar(&o.Folder, "out", "", "`folder` to write Arrow tables and manifest.json to")
+	f.BoolVar(&asJSON, "json", false, "print one JSON object instead of tables")
+	f.BoolVar(&quiet, "quiet", false, "no progress bar")
+	return func(ctx context.Context, t terminal, args []string) error {
+		path, err := oneFile("hold", args)
+		if err != nil {
+			return err
+		}
+		o.Threads = int(threads)
+		o.Command = canonical("hold", path, f)
+		return runHold(ctx, t, path, design, o, asJSON, quiet)
+	}
+}
+
+func runHold(ctx context.Context, t terminal, path string, design *designChoice, o hold.Options, asJSON, quiet bool) error {
+	network, err := design.load(path)
+	if err != nil {
+		return err
+	}
+	bar := newBar(t.err, quiet)
+	o.Progress = bar.holdProgress
+	report, err := hold.Run(ctx, network, o)
+	bar.close()
+	if err != nil {
+		return err
+	}
+	if asJSON {
+		err = writeJSON(t.out, report)
+	} else {
+		err = writeHold(t.out, report)
+	}
+	if err != nil {
+		return err
+	}
+	if o.Folder != "" {
+		fmt.Fprintln(t.err, "records are in", o.Folder)
+	}
+	if report.Interrupted {
+		return errors.New("stopped before it was done; the numbers above are from what had been seen by then")
+	}
+	return nil
+}
+
+func writeJSON(w io.Writer, report any) error {
+	e := json.NewEncoder(w)
+	e.SetIndent("", "  ")
+	e.SetEscapeHTML(false)
+	return e.Encode(report)
+}
+
+func writeHold(w io.Writer, r *hold.Report) error {
+	fmt.Fprintf(w, "%s: copies %s, time in %s%s, seed %d\n", r.Design, number(r.Copies), r.TimeUnit, generationText(r), r.Seed)
+	fmt.Fprintf(w, "route: %s\n\nStates\n", r.Route)
+	if err := stateTable(r).write(w); err != nil {
+		return err
+	}
+	fmt.Fprintf(w, "\nHold times, with 95 %% intervals\n")
+	if err := dwellTable(r).write(w); err != nil {
+		return err
+	}
+	if t := holdsTable(r); len(t.rows) > 1 {
+		fmt.Fprintf(w, "\nChance of holding, with 95 %% intervals\n")
+		if err := t.write(w); err != nil {
+			return err
+		}
+	}
+	fmt.Fprintf(w, "\n%s events in %s s on %d threads\n", number(float64(r.Work.Events)), number(r.Work.Seconds), r.Work.Threads)
+	writeWarnings(w, r.Warnings)
+	_, err := fmt.Fprintln(w, "These are a model's estimates; a strain must be tested ('holdfast help').")
+	return err
+}
+
+func generationText(r *hold.Report) string {
+	if g := float64(r.Generation); g > 0 {
+		return fmt.Sprintf(", generation %s %s", number(g), r.TimeUnit)
+	}
+	return ""
+}
+
+func stateTable(r *hold.Report) *table {
+	t := &table{}
+	head := []string{"state", "type"}
+	for _, s := range r.Species {
+		head = append(head, s+" (molecules)")
+	}
+	t.add(head...)
+	for _, s := range r.States {
+		row := []string{s.Name, s.Kind}
+		for _, name := range r.Species {
+			row = append(row, fmt.Sprintf("%s (%s)", number(float64(s.Amounts[name])), number(float64(s.Molecules[name]))))
+		}
+		t.add(row...)
+	}
+	return t
+}
+
+func dwellTable(r *hold.Report) *table {
+	t := &table{}
+	generations := float64(r.Generation) > 0
+	head := []string{"from", "to", "mean dwell, " + r.TimeUnit}
+	if generations {
+		head = append(head, "generations", "flips per generation")
+	}
+	t.add(append(head, "flips", "route")...)
+	for _, d := range r.Dwells {
+		row := []string{d.From, d.To, estimate(d, d.Mean, d.Low, d.High)}
+		if generations {
+			row = append(row, estimate(d, d.Generations, d.GenerationsLow, d.GenerationsHigh),
+				interval(d.PerGeneration, d.PerGenerationLow, d.PerGenerationHigh))
+		}
+		t.add(append(row, fmt.Sprint(d.Flips), d.Route)...)
+	}
+	return t
+}
+
+func holdsTable(r *hold.Report) *table {
+	t := &table{}
+	for _, d := range r.Dwells {
+		head, row := []string{"from", "to"}, []string{d.From, d.To}
+		for _, h := range d.Holds {
+			head = append(head, number(h.Generations)+" generations")
+			row = append(row, chanceInterval(h))
+		}
+		if len(d.Holds) == 0 {
+			continue
+		}
+		if len(t.rows) == 0 {
+			t.add(head...)
+		}
+		t.add(row...)
+	}
+	return t
+}
+
+// estimate writes a mean with its limits, or the note that stands for it.
+func estimate(d hold.DwellReport, mean, low, high hold.Value) string {
+	switch {
+	case d.Never:
+		return "never returns"
+	case d.Flips == 0 && d.Sampled:
+		return "above " + number(float64(low))
+	}
+	return interval(mean, low, high)
+}
+
+func interval(v, low, high hold.Value) string {
+	return fmt.Sprintf("%s [%s, %s]", number(float64(v)), number(float64(low)), number(float64(high)))
+}
+
+func chanceInterval(h hold.HoldChance) string {
+	if h.Low == h.High {
+		return chance(float64(h.Chance))
+	}
+	return fmt.Sprintf("%s [%s, %s]", chance(float64(h.Chance)), chance(float64(h.Low)), chance(float64(h.High)))
+}
