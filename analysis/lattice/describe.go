@@ -1,7 +1,5 @@
 package lattice
 
-import "math"
-
 // describe fills in the laws on the lattice.
 func (s *solver) describe(out *Solution) error {
 	out.Counts = s.stateCounts()
@@ -141,66 +139,4 @@ func weights(law []float64, committor [][]float64) []float64 {
 		}
 	}
 	return out
-}
-
-// quasi finds the quasi-stationary laws and escape rates by inverse iteration
-// with the same factors: x ← x M⁻¹, on the nodes outside the other regions, has
-// only positive numbers. It starts from the expected times of a dwell, which for
-// a rare flip is the law already.
-func (s *solver) quasi(out *Solution) {
-	n := len(s.origin)
-	out.Quasi, out.Escape = make([][]float64, n), make([]float64, n)
-	for a, o := range s.origin {
-		if o.time == nil || o.trap {
-			continue
-		}
-		x, rate := s.iterate(o)
-		out.Quasi[a], out.Escape[a] = s.onStates(x), rate
-	}
-}
-
-const (
-	mostIterations = 400
-	settled        = 1e-13
-)
-
-func (s *solver) iterate(o *origin) (law []float64, rate float64) {
-	x := columns{append([]float64(nil), o.stay[0]...)}
-	s.timeless(x[0])
-	scale(x[0], 1/total(x[0]))
-	for range mostIterations {
-		y := columns{append([]float64(nil), x[0]...)}
-		s.apply(o.chain, y)
-		s.timeless(y[0])
-		mass := total(y[0])
-		scale(y[0], 1/mass)
-		gap := distance(x[0], y[0])
-		x, rate = y, 1/mass
-		if gap < settled || s.ctx.Err() != nil {
-			break
-		}
-	}
-	return x[0], rate
-}
-
-func distance(x, y []float64) float64 {
-	d := 0.0
-	for i, v := range x {
-		d += math.Abs(v - y[i])
-	}
-	return d
-}
-
-// apply replaces y by y M⁻¹, M being the generator restricted to the chain's
-// inside nodes and all eliminated ones.
-func (s *solver) apply(r *restricted, y columns) {
-	s.forwardLeft(y)
-	values := make([]float64, len(s.kept.exit))
-	for v := range y {
-		x := r.gather(y[v][s.ordering.kept:])
-		r.left(x)
-		r.spread(values, x, 0)
-		copy(y[v][s.ordering.kept:], values)
-	}
-	s.backwardLeft(y)
 }

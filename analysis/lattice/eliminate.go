@@ -129,17 +129,6 @@ func (e *panelElimination) invert(a matrix) {
 	}
 }
 
-// addMultiple sets x += f·y.
-func addMultiple(x []float64, f float64, y []float64) {
-	if f == 0 {
-		return
-	}
-	y = y[:len(x)]
-	for i := range x {
-		x[i] += f * y[i]
-	}
-}
-
 // fromLeft sets m = lower·m.
 func (e *panelElimination) fromLeft(m, lower matrix) {
 	if m.columns > 0 {
@@ -172,12 +161,5 @@ func (e *panelElimination) copyOut(m matrix) matrix {
 
 // passExits adds to the exits of later rows what they inherit from the panel's.
 func (e *panelElimination) passExits(l matrix, exit []float64) {
-	from := e.exit[e.low:e.high]
-	for i := range l.rows {
-		sum := exit[i]
-		for k, v := range l.row(i) {
-			sum += v * from[k]
-		}
-		exit[i] = sum
-	}
+	e.team[0].addRight(exit, l, e.exit[e.low:e.high])
 }

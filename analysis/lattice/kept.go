@@ -28,6 +28,7 @@ func (f *factors) keptChain() *keptChain {
 // from the box being where it ends.
 type restricted struct {
 	*keptChain
+	team   team
 	inside []int // kept nodes, ascending
 	place  []int // place of each kept node among them, −1 for none
 	stuck  []int // kept nodes that no end can be reached from; an end too
@@ -38,7 +39,7 @@ type restricted struct {
 // leaves false, leaving the box does not count: a path that would is back at the
 // kept node it came from.
 func (k *keptChain) restrict(t team, leaves bool, inside func(i int) bool) *restricted {
-	r := &restricted{keptChain: k, place: make([]int, len(k.exit))}
+	r := &restricted{keptChain: k, team: t, place: make([]int, len(k.exit))}
 	r.choose(leaves, inside)
 	n := len(r.inside)
 	r.system = system{diagonal: dense(n, n, make([]float64, n*n)), exit: make([]float64, n)}
@@ -96,25 +97,14 @@ func (r *restricted) choose(leaves bool, inside func(i int) bool) {
 
 // right solves M x = b for values on the inside nodes, in place.
 func (r *restricted) right(x []float64) {
-	m := r.system.diagonal
-	for i := range x {
-		x[i] += dot(m.row(i)[:i], x[:i])
-	}
-	for i := len(x) - 1; i >= 0; i-- {
-		x[i] = (x[i] + dot(m.row(i)[i+1:], x[i+1:])) / m.row(i)[i]
-	}
+	r.team[0].lowerRight(r.system.diagonal, x)
+	r.team[0].upperRight(r.system.diagonal, x)
 }
 
 // left solves y M = b for values on the inside nodes, in place.
 func (r *restricted) left(y []float64) {
-	m := r.system.diagonal
-	for i := range y {
-		y[i] /= m.row(i)[i]
-		addMultiple(y[i+1:], y[i], m.row(i)[i+1:])
-	}
-	for i := len(y) - 1; i > 0; i-- {
-		addMultiple(y[:i], y[i], m.row(i)[:i])
-	}
+	r.team[0].upperLeft(r.system.diagonal, y)
+	r.team[0].lowerLeft(r.system.diagonal, y)
 }
 
 // gather picks the inside nodes' values from those of all kept nodes.

@@ -5,6 +5,16 @@ package lattice
 //go:noescape
 func panel(blocks, k int, a, b, c *float64, ldc int)
 
+// rowSums adds a·x to y; see kernel_amd64.s.
+//
+//go:noescape
+func rowSums(rows, columns int, a *float64, stride int, x, y *float64)
+
+// columnSums adds x·a to y; see kernel_amd64.s.
+//
+//go:noescape
+func columnSums(rows, columns int, a *float64, stride int, x, y *float64)
+
 //go:noescape
 func identify(leaf, part uint32) (a, b, c, d uint32)
 

@@ -3,6 +3,7 @@ package lattice
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 	"testing"
 
 	"gonum.org/v1/gonum/blas"
@@ -38,6 +39,30 @@ func TestMultiplyAgainstGonum(t *testing.T) {
 		for i, v := range want.data {
 			if math.Abs(c.data[i]-v) > tolerance*v || math.Abs(plain.data[i]-v) > tolerance*v {
 				t.Fatalf("%v: entry %d is %v and %v, want %v", size, i, c.data[i], plain.data[i], v)
+			}
+		}
+	}
+}
+
+// Products with vectors, against the plain loops.
+func TestVectorSums(t *testing.T) {
+	r := rand.New(rand.NewPCG(3, 4))
+	fast, slow := newWorker(), newWorker()
+	slow.fast = false
+	for rows := range 12 {
+		for columns := range 14 {
+			m := randomMatrix(r, rows, columns+3).part(0, rows, 1, columns+1)
+			x, y := randomMatrix(r, 1, columns).data, randomMatrix(r, 1, rows).data
+			right, left := randomMatrix(r, 1, rows).data, randomMatrix(r, 1, columns).data
+			right2, left2 := slices.Clone(right), slices.Clone(left)
+			fast.addRight(right, m, x)
+			slow.addRight(right2, m, x)
+			fast.addLeft(left, y, m)
+			slow.addLeft(left2, y, m)
+			for i, v := range slices.Concat(right2, left2) {
+				if got := slices.Concat(right, left)[i]; math.Abs(got-v) > 32*0x1p-52*v {
+					t.Fatalf("%d × %d: entry %d is %v, want %v", rows, columns, i, got, v)
+				}
 			}
 		}
 	}

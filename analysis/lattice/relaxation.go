@@ -4,7 +4,8 @@ import "math"
 
 // relaxation is 1 over the smallest non-zero eigenvalue of the generator.
 //
-// Inverse iteration on signed measures of total mass 0: y = x M⁻¹ with M made
+// Inverse iteration, sped up by a Krylov space, on signed measures of total mass
+// 0: y = x M⁻¹ with M made
 // regular by killing paths at the start of the heaviest state, then as much of
 // the stationary law added as makes the mass 0 again. There is no cancellation
 // that grows with the dwell times: the killed chain acts on the measure of each
@@ -14,8 +15,7 @@ import "math"
 // when none does.
 func (s *solver) relaxation(law []float64, out *Solution) float64 {
 	pin := s.heaviest(law)
-	k := s.kept
-	chain := k.restrict(s.team, false, func(i int) bool { return i != pin })
+	chain := s.kept.restrict(s.team, false, func(i int) bool { return i != pin })
 	if len(chain.stuck) > 0 {
 		return math.NaN()
 	}
@@ -23,28 +23,25 @@ func (s *solver) relaxation(law []float64, out *Solution) float64 {
 	if x == nil {
 		return math.NaN()
 	}
-	before := 0.0
-	for range mostIterations {
+	k := krylov{apply: func(x []float64) []float64 {
 		y := columns{append([]float64(nil), x...)}
-		s.apply(chain, y)
+		s.apply([]*restricted{chain}, y)
 		s.timeless(y[0])
 		balance(y[0], law)
-		size := 0.0
-		for _, v := range y[0] {
-			size += math.Abs(v)
-		}
-		scale(y[0], 1/size)
-		gap := min(distance(x, y[0]), math.Abs(before-size)/size*10)
-		x, before = y[0], size
-		if gap < 1e-12 {
-			return size
-		}
 		if s.ctx.Err() != nil {
-			break
+			return nil
 		}
+		return y[0]
+	}}
+	if _, ok := k.run(x, relaxed); !ok {
+		return math.NaN()
 	}
-	return math.NaN()
+	return (real(k.slowest)*real(k.slowest) + imag(k.slowest)*imag(k.slowest)) / real(k.slowest)
 }
+
+// relaxed is how small the residual of the slowest mode must be, relative to its
+// eigenvalue.
+const relaxed = 1e-11
 
 // heaviest is the kept node at which paths are killed: the start of the state of
 // the largest weight, or any kept node of the closed class.
@@ -79,11 +76,6 @@ func (s *solver) firstMode(law []float64, out *Solution) []float64 {
 		}
 	}
 	balance(x, law)
-	size := 0.0
-	for _, v := range x {
-		size += math.Abs(v)
-	}
-	scale(x, 1/size)
 	return x
 }
 
