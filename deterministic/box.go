@@ -3,6 +3,8 @@ package deterministic
 import (
 	"fmt"
 	"math"
+
+	"holdfast/model"
 )
 
 // Basis says why no resting state has more of a species than the box's upper end.
@@ -36,6 +38,8 @@ func (b Basis) String() string {
 type box struct {
 	low, high []float64
 	basis     []Basis
+	encloser  *encloser
+	balance   []balance // by species
 }
 
 // margin widens bounds from the linear programs beyond their rounding.
@@ -51,6 +55,7 @@ const boxRounds = 6
 // beyond its reaction's bound. Ends that stay unbounded are +Inf.
 func findBox(s *system, c *class) *box {
 	b := &box{low: make([]float64, s.n), high: make([]float64, s.n), basis: make([]Basis, s.n)}
+	b.encloser, b.balance = newEncloser(), balances(s)
 	b.byTotals(c)
 	for range boxRounds {
 		if !b.tighten(s, c) {
@@ -82,6 +87,7 @@ func (b *box) tighten(s *system, c *class) bool {
 	balanceRates(s, c, rates)
 	gained := false
 	for i := range s.n {
+		gained = b.lowerByBalance(s, i) || gained
 		for r := range s.changes {
 			if reads(s.reads[r], i) {
 				gained = b.lower(s, r, i, rates[r].hi) || gained
@@ -114,7 +120,7 @@ func (b *box) rates(s *system) []interval {
 	over := b.intervals()
 	out := make([]interval, len(s.changes))
 	for r := range out {
-		out[r] = enclose(s.net.Reactions[r].Law, over).meet(interval{0, math.Inf(1)})
+		out[r] = b.encloser.enclose(s.net.Reactions[r].Law, over).meet(interval{0, math.Inf(1)})
 	}
 	return out
 }
@@ -125,16 +131,34 @@ func (b *box) lower(s *system, r, i int, most float64) bool {
 	if math.IsInf(most, 1) {
 		return false
 	}
+	return b.lowerWhere(s, i, func(over []interval) bool {
+		return b.encloser.enclose(s.net.Reactions[r].Law, over).lo > most
+	})
+}
+
+// lowerByBalance moves the upper end of species i down to where some of it is taken
+// away, and less is made, whatever the other species do.
+func (b *box) lowerByBalance(s *system, i int) bool {
+	q := b.balance[i]
+	return q.ratio != nil && b.lowerWhere(s, i, func(over []interval) bool {
+		return b.encloser.enclose(q.lost, over).lo > 0 && q.ratio.enclose(b.encloser, over).hi < 1
+	})
+}
+
+// lowerWhere moves the upper end of species i down to the least amount from which
+// on out holds: that no resting state is there. out must hold for any part of an
+// interval that it holds for. It is true where that gained a tenth.
+func (b *box) lowerWhere(s *system, i int, out func([]interval) bool) bool {
 	over := b.intervals()
 	exceeds := func(u float64) bool {
 		over[i] = interval{u, max(u, b.high[i])}
-		return enclose(s.net.Reactions[r].Law, over).lo > most
+		return out(over)
 	}
 	top := min(b.high[i], huge)
 	if !exceeds(top * 0.9) {
 		return false
 	}
-	bottom := max(b.low[i], tiny)
+	bottom := min(max(b.low[i], least/s.unit[i]), top)
 	for top > 1.01*bottom {
 		if mid := math.Sqrt(top) * math.Sqrt(bottom); exceeds(mid) {
 			top = mid
@@ -147,15 +171,15 @@ func (b *box) lower(s *system, r, i int, most float64) bool {
 }
 
 // raise moves the lower end of species i up to where reaction r's law is below
-// least in any case.
-func (b *box) raise(s *system, r, i int, least float64) bool {
-	if !(least > 0) || math.IsInf(b.high[i], 1) {
+// atLeast in any case.
+func (b *box) raise(s *system, r, i int, atLeast float64) bool {
+	if !(atLeast > 0) || math.IsInf(b.high[i], 1) {
 		return false
 	}
 	over := b.intervals()
 	misses := func(u float64) bool {
 		over[i] = interval{b.low[i], u}
-		return enclose(s.net.Reactions[r].Law, over).hi < least
+		return b.encloser.enclose(s.net.Reactions[r].Law, over).hi < atLeast
 	}
 	bottom := max(b.low[i], tiny)
 	if !misses(bottom * 1.1) {
@@ -173,10 +197,50 @@ func (b *box) raise(s *system, r, i int, least float64) bool {
 	return true
 }
 
-// huge and tiny are the ends of the amounts looked at.
+// balance is the rate at which a species is taken away, and the rate at which it is
+// made over that; nil where they cannot be taken apart.
+type balance struct {
+	lost  *model.Node
+	ratio *ratio
+}
+
+// balances sums the laws that make and take away each species, each times its
+// change.
+func balances(s *system) []balance {
+	made, lost := make([]*model.Node, s.n), make([]*model.Node, s.n)
+	for r, list := range s.changes {
+		law := s.net.Reactions[r].Law
+		for _, c := range list {
+			sum := &made[c.species]
+			if c.amount < 0 {
+				sum = &lost[c.species]
+			}
+			term := model.Call(model.OpMul, model.Number(abs(c.amount)), law)
+			if *sum == nil {
+				*sum = term
+			} else {
+				*sum = model.Call(model.OpAdd, *sum, term)
+			}
+		}
+	}
+	out := make([]balance, s.n)
+	for i := range out {
+		if made[i] == nil {
+			made[i] = model.Number(0)
+		}
+		if lost[i] != nil {
+			out[i] = balance{lost[i], newRatio(made[i], lost[i])}
+		}
+	}
+	return out
+}
+
+// huge and tiny are the ends of the amounts looked at; upper ends are not looked
+// for below least, in molecules.
 const (
-	huge = 1e30
-	tiny = 1e-30
+	huge  = 1e30
+	tiny  = 1e-30
+	least = 1e-3
 )
 
 // mostPrograms is the largest number of reactions whose rates are all tightened

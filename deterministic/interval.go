@@ -1,10 +1,6 @@
 package deterministic
 
-import (
-	"math"
-
-	"holdfast/model"
-)
+import "math"
 
 // interval is the numbers from lo to hi, both included; ends may be infinite.
 // Every operation rounds outwards, so that its result holds all true values
@@ -129,97 +125,4 @@ func (a interval) magnitude() interval {
 
 func (a interval) meet(b interval) interval {
 	return interval{max(a.lo, b.lo), min(a.hi, b.hi)}
-}
-
-// enclose gives an interval that holds every value of a bound law over the box,
-// one interval a species.
-func enclose(n *model.Node, box []interval) interval {
-	switch n.Op {
-	case model.OpNumber:
-		if math.IsNaN(n.Value) {
-			return everything
-		}
-		return exactly(n.Value)
-	case model.OpSpecies:
-		return box[n.Index]
-	}
-	var a [3]interval
-	for i, arg := range n.Args {
-		a[i] = enclose(arg, box)
-	}
-	out := encloseOp(n.Op, a[0], a[1], a[2])
-	if n.Op == model.OpDiv {
-		out = out.meet(encloseRatio(n, box))
-	}
-	return out
-}
-
-func encloseOp(op model.Op, a, b, c interval) interval {
-	switch op {
-	case model.OpAdd:
-		return a.add(b)
-	case model.OpSub:
-		return a.add(b.neg())
-	case model.OpMul:
-		return a.mul(b)
-	case model.OpDiv:
-		return a.mul(b.inverse())
-	case model.OpNeg:
-		return a.neg()
-	case model.OpPow:
-		return enclosePower(a, b)
-	case model.OpMin:
-		return interval{min(a.lo, b.lo), min(a.hi, b.hi)}
-	case model.OpMax:
-		return interval{max(a.lo, b.lo), max(a.hi, b.hi)}
-	case model.OpAbs:
-		return a.magnitude()
-	case model.OpHill:
-		return encloseHill(a, b, c)
-	case model.OpHillFall:
-		return encloseHill(b, a, c)
-	}
-	return encloseFunction(op, a)
-}
-
-func encloseFunction(op model.Op, a interval) interval {
-	switch op {
-	case model.OpExp:
-		out := a.monotone(math.Exp)
-		return interval{max(out.lo, 0), out.hi}
-	case model.OpLog:
-		if a.lo < 0 {
-			return everything
-		}
-		return a.monotone(math.Log)
-	case model.OpSqrt:
-		if a.lo < 0 {
-			return everything
-		}
-		out := a.monotone(math.Sqrt)
-		return interval{max(out.lo, 0), out.hi}
-	}
-	return everything
-}
-
-// enclosePower is a^b: directly for a fixed exponent, else as exp(b log a).
-func enclosePower(a, b interval) interval {
-	if b.lo == b.hi {
-		return a.power(b.lo)
-	}
-	if a.lo < 0 {
-		return everything
-	}
-	corners := [4]float64{math.Pow(a.lo, b.lo), math.Pow(a.lo, b.hi), math.Pow(a.hi, b.lo), math.Pow(a.hi, b.hi)}
-	out := outward(min(corners[0], corners[1], corners[2], corners[3]), max(corners[0], corners[1], corners[2], corners[3]), 4)
-	return interval{max(out.lo, 0), out.hi} // b log a is extreme at corners
-}
-
-// encloseHill is xⁿ/(kⁿ+xⁿ) = 1/(1+(k/x)ⁿ).
-func encloseHill(x, k, n interval) interval {
-	if x.lo < 0 || k.lo < 0 || n.lo < 0 {
-		return everything
-	}
-	out := exactly(1).add(enclosePower(k.mul(x.inverse()), n)).inverse()
-	return out.meet(interval{0, 1})
 }

@@ -3,127 +3,209 @@ package deterministic
 import (
 	"math"
 	"slices"
+	"strconv"
 	"strings"
 
 	"holdfast/model"
 )
 
-// encloseRatio encloses a quotient of sums of products better than the quotient
-// of the two intervals, which forgets that both read the same amounts. Each term
-// c·m of the numerator whose product m stands in the denominator as d·m gives
-// c/(d + rest/m), with the rest of the denominator taken on its own; and the
-// whole lies between the least and the largest c/d.
-func encloseRatio(n *model.Node, box []interval) interval {
-	top, okTop := expand(n.Args[0], box)
-	bottom, okBottom := expand(n.Args[1], box)
-	if !okTop || !okBottom || len(bottom) < 2 {
-		return everything
-	}
-	sum := exactly(0)
-	least, most := 0.0, 0.0
-	if len(top) == len(bottom) {
-		least = math.Inf(1)
-	}
-	for _, t := range top {
-		k := slices.IndexFunc(bottom, func(b monomial) bool { return b.key == t.key })
-		if k < 0 {
-			most = math.Inf(1)
-			least = 0
-			sum = sum.add(encloseTerm(t, -1, bottom))
-			continue
-		}
-		q := outward(t.coefficient/bottom[k].coefficient, t.coefficient/bottom[k].coefficient, 1)
-		least, most = min(least, q.lo), max(most, q.hi)
-		sum = sum.add(encloseTerm(t, k, bottom))
-	}
-	return sum.meet(interval{max(least, 0), most})
-}
+// ratio is a quotient of two sums of products, taken apart so that the same
+// amount above and below is not counted as two.
+type ratio struct{ top, bottom []monomial }
 
-// encloseTerm is t over the sum of bottom, where bottom[k] has the same product.
-func encloseTerm(t monomial, k int, bottom []monomial) interval {
-	rest := exactly(0)
-	for j, b := range bottom {
-		if j != k {
-			rest = rest.add(exactly(b.coefficient).mul(b.value))
-		}
-	}
-	over := rest.mul(t.value.inverse())
-	if k >= 0 {
-		over = over.add(exactly(bottom[k].coefficient))
-	}
-	out := exactly(t.coefficient).mul(over.inverse())
-	return interval{max(out.lo, 0), out.hi}
-}
-
-// monomial is a positive coefficient times a product of factors, none negative
-// over the box; key tells products apart.
+// monomial is a positive coefficient times a product of powers of factors.
 type monomial struct {
 	coefficient float64
-	factors     []string
+	factors     []factor // by key
 	key         string
-	value       interval
+}
+
+// factor is a sub-tree that is not itself a sum or product, to a power.
+type factor struct {
+	node     *model.Node
+	key      string
+	exponent float64
 }
 
 // maxTerms bounds the number of terms of an expanded sum.
 const maxTerms = 64
 
-// expand writes a tree as a sum of monomials; false where it has a term that may
-// be negative, or too many terms.
-func expand(n *model.Node, box []interval) ([]monomial, bool) {
-	switch n.Op {
-	case model.OpNumber:
-		if !(n.Value >= 0) || math.IsInf(n.Value, 0) {
-			return nil, false
-		}
-		if n.Value == 0 {
-			return nil, true
-		}
-		return []monomial{{coefficient: n.Value, value: exactly(1)}}, true
-	case model.OpAdd:
-		a, ok := expand(n.Args[0], box)
-		b, okB := expand(n.Args[1], box)
-		return collect(append(slices.Clone(a), b...)), ok && okB
-	case model.OpMul:
-		return expandProduct(n, box)
-	case model.OpDiv:
-		if n.Args[1].Op == model.OpNumber && n.Args[1].Value > 0 {
-			a, ok := expand(n.Args[0], box)
-			return scaled(a, 1/n.Args[1].Value), ok
-		}
+// newRatio takes a quotient of two trees apart; nil where that does not help.
+func newRatio(top, bottom *model.Node) *ratio {
+	a, ok := expand(top)
+	b, okB := expand(bottom)
+	if !ok || !okB || len(b) == 0 {
+		return nil
 	}
-	value := enclose(n, box)
-	if !(value.lo >= 0) {
-		return nil, false
-	}
-	key := n.Format(speciesKeys(len(box)), nil)
-	return []monomial{{1, []string{key}, key, value}}, true
+	return &ratio{a, b}
 }
 
-func expandProduct(n *model.Node, box []interval) ([]monomial, bool) {
-	a, ok := expand(n.Args[0], box)
-	b, okB := expand(n.Args[1], box)
-	if !ok || !okB || len(a)*len(b) > maxTerms {
+// enclose encloses the ratio over a box. Each term of the top is 1 over the sum
+// of the bottom's terms each divided by it, in which powers of the same factor
+// cancel; and where every term of the top has its like below, the whole lies
+// between the least and the largest quotient of coefficients.
+func (q *ratio) enclose(e *encloser, over []interval) interval {
+	for _, list := range [][]monomial{q.top, q.bottom} {
+		for _, m := range list {
+			for _, f := range m.factors {
+				if !(e.enclose(f.node, over).lo >= 0) {
+					return everything
+				}
+			}
+		}
+	}
+	sum := exactly(0)
+	for _, t := range q.top {
+		inverse := exactly(0)
+		for _, b := range q.bottom {
+			inverse = inverse.add(e.quotient(b, t, over))
+		}
+		sum = sum.add(positive(inverse.inverse()))
+	}
+	return positive(sum).meet(q.coefficients())
+}
+
+func positive(a interval) interval { return interval{max(a.lo, 0), a.hi} }
+
+// coefficients bounds the ratio by the quotients of like terms' coefficients.
+func (q *ratio) coefficients() interval {
+	out := interval{math.Inf(1), 0}
+	matched := 0
+	for _, t := range q.top {
+		k := slices.IndexFunc(q.bottom, func(b monomial) bool { return b.key == t.key })
+		if k < 0 {
+			out.hi = math.Inf(1)
+			continue
+		}
+		matched++
+		v := t.coefficient / q.bottom[k].coefficient
+		out = interval{min(out.lo, v*(1-4*epsilon)), max(out.hi, v*(1+4*epsilon))}
+	}
+	if matched < len(q.bottom) {
+		out.lo = 0
+	}
+	return out
+}
+
+// quotient encloses a/b.
+func (e *encloser) quotient(a, b monomial, over []interval) interval {
+	c := a.coefficient / b.coefficient
+	out := outward(c, c, 1)
+	for _, f := range multiply(a.factors, b.factors, -1) {
+		out = out.mul(e.enclose(f.node, over).power(f.exponent))
+	}
+	return positive(out)
+}
+
+// multiply gives the factors of a times b^sign.
+func multiply(a, b []factor, sign float64) []factor {
+	out := slices.Clone(a)
+	for _, f := range b {
+		k := slices.IndexFunc(out, func(o factor) bool { return o.key == f.key })
+		if k < 0 {
+			out = append(out, factor{f.node, f.key, sign * f.exponent})
+			continue
+		}
+		out[k].exponent += sign * f.exponent
+	}
+	out = slices.DeleteFunc(out, func(f factor) bool { return f.exponent == 0 })
+	slices.SortFunc(out, func(p, q factor) int { return strings.Compare(p.key, q.key) })
+	return out
+}
+
+func newMonomial(coefficient float64, factors []factor) monomial {
+	m := monomial{coefficient: coefficient, factors: factors}
+	for _, f := range factors {
+		m.key += f.key + "^" + strconv.FormatFloat(f.exponent, 'g', -1, 64) + "*"
+	}
+	return m
+}
+
+// expand writes a tree as a sum of monomials; false where it has a negative
+// number, or too many terms.
+func expand(n *model.Node) ([]monomial, bool) {
+	switch n.Op {
+	case model.OpNumber:
+		switch {
+		case !(n.Value >= 0) || math.IsInf(n.Value, 0):
+			return nil, false
+		case n.Value == 0:
+			return nil, true
+		}
+		return []monomial{newMonomial(n.Value, nil)}, true
+	case model.OpAdd:
+		a, ok := expand(n.Args[0])
+		b, okB := expand(n.Args[1])
+		return collect(append(slices.Clone(a), b...)), ok && okB
+	case model.OpMul:
+		a, ok := expand(n.Args[0])
+		b, okB := expand(n.Args[1])
+		return product(a, b, 1), ok && okB && len(a)*len(b) <= maxTerms
+	case model.OpDiv:
+		a, ok := expand(n.Args[0])
+		b, okB := expand(n.Args[1])
+		if ok && okB && len(b) == 1 {
+			return product(a, b, -1), true
+		}
+	case model.OpPow:
+		if m, ok := expandPower(n); ok {
+			return m, true
+		}
+	}
+	key := treeKey(n)
+	return []monomial{newMonomial(1, []factor{{n, key, 1}})}, true
+}
+
+// expandPower expands a fixed power of one term, and of a sum if it is a small
+// whole number.
+func expandPower(n *model.Node) ([]monomial, bool) {
+	p := n.Args[1]
+	base, ok := expand(n.Args[0])
+	if !ok || p.Op != model.OpNumber {
 		return nil, false
 	}
+	if len(base) == 1 {
+		factors := slices.Clone(base[0].factors)
+		for i := range factors {
+			factors[i].exponent *= p.Value
+		}
+		return []monomial{newMonomial(math.Pow(base[0].coefficient, p.Value), factors)}, true
+	}
+	whole := int(p.Value)
+	if float64(whole) != p.Value || whole < 2 || whole > 4 || math.Pow(float64(len(base)), p.Value) > maxTerms {
+		return nil, false
+	}
+	out := base
+	for range whole - 1 {
+		out = product(out, base, 1)
+	}
+	return out, true
+}
+
+func product(a, b []monomial, sign float64) []monomial {
 	var out []monomial
 	for _, p := range a {
 		for _, q := range b {
-			factors := append(slices.Clone(p.factors), q.factors...)
-			slices.Sort(factors)
-			out = append(out, monomial{
-				p.coefficient * q.coefficient, factors, strings.Join(factors, "*"), p.value.mul(q.value),
-			})
+			c := p.coefficient * math.Pow(q.coefficient, sign)
+			out = append(out, newMonomial(c, multiply(p.factors, q.factors, sign)))
 		}
 	}
-	return collect(out), true
+	return collect(out)
 }
 
-func scaled(a []monomial, by float64) []monomial {
-	out := slices.Clone(a)
-	for i := range out {
-		out[i].coefficient *= by
+// treeKey tells trees apart by their structure.
+func treeKey(n *model.Node) string {
+	switch n.Op {
+	case model.OpNumber:
+		return strconv.FormatFloat(n.Value, 'g', -1, 64)
+	case model.OpSpecies:
+		return "x" + strconv.Itoa(n.Index)
 	}
-	return out
+	key := strconv.Itoa(int(n.Op)) + "("
+	for _, a := range n.Args {
+		key += treeKey(a) + ","
+	}
+	return key + ")"
 }
 
 // collect adds up the terms that have the same product.
@@ -136,14 +218,6 @@ func collect(terms []monomial) []monomial {
 			continue
 		}
 		out[k].coefficient += t.coefficient
-	}
-	return out
-}
-
-func speciesKeys(n int) []string {
-	out := make([]string, n)
-	for i := range out {
-		out[i] = "x" + string(rune('A'+i%26)) + strings.Repeat("'", i/26)
 	}
 	return out
 }

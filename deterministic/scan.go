@@ -9,11 +9,7 @@ type line struct {
 	from, to float64
 }
 
-// scanPoints is the number of points of a scan's even and each of its two
-// logarithmic grids.
-const scanPoints = 600
-
-func newLine(c *class, high []float64) *line {
+func newLine(c *class, low, high []float64) *line {
 	l := &line{c: c, base: make([]float64, c.n), from: 0, to: math.Inf(1)}
 	for k, d := range c.dependent {
 		l.base[d] = c.total[k]
@@ -21,10 +17,10 @@ func newLine(c *class, high []float64) *line {
 	for i, v := range c.link {
 		switch {
 		case v > 0:
-			l.from = max(l.from, -l.base[i]/v)
+			l.from = max(l.from, (low[i]-l.base[i])/v)
 			l.to = min(l.to, (high[i]-l.base[i])/v)
 		case v < 0:
-			l.to = min(l.to, -l.base[i]/v)
+			l.to = min(l.to, (low[i]-l.base[i])/v)
 			l.from = max(l.from, (high[i]-l.base[i])/v)
 		}
 	}
@@ -38,23 +34,11 @@ func (l *line) at(t float64, x []float64) []float64 {
 	return x
 }
 
-// grid lists points inside the line in ascending order: evenly spread, and with
-// evenly spread logarithms of the distance from either end.
-func (l *line) grid() []float64 {
-	width := l.to - l.from
-	var out []float64
-	for k := range scanPoints {
-		q := (float64(k) + 0.5) / scanPoints
-		small := width * math.Pow(10, -15*q)
-		out = append(out, l.from+width*q, l.from+small, l.to-small)
-	}
-	return sortUnique(out, l.from, l.to)
-}
-
-// scanLine finds the resting states inside a class of dimension 1: sign changes
-// of the rate along it, and points between where it touches zero or nearly so.
+// scanLine finds the resting states inside a class of dimension 1: the stretches
+// of the line where the rate along it may vanish, by interval arithmetic, and the
+// states on each.
 func (f *finder) scanLine(c *class) {
-	l := newLine(c, f.high)
+	l := newLine(c, f.low, f.high)
 	if !(l.to > l.from) {
 		return
 	}
@@ -67,27 +51,23 @@ func (f *finder) scanLine(c *class) {
 		}
 		return f.w.f[i] / f.w.gross[i]
 	}
-	t := l.grid()
-	v := make([]float64, len(t))
-	for k := range t {
-		v[k] = rate(t[k])
-	}
-	f.starts += len(t)
-	for k := range t {
+	v := &vanisher{s: f.w.sys, l: l, e: newEncloser()}
+	v.run()
+	f.starts += v.boxes
+	f.scanned = f.scanned && !v.spent
+	for _, p := range v.pieces {
+		a, b := rate(p.from), rate(p.to)
 		switch {
-		case v[k] == 0:
-			f.tryRoot(c, l.at(t[k], x))
-		case k > 0 && v[k-1]*v[k] < 0:
-			f.bracketed(l, rate, t[k-1], t[k])
-		case k > 1 && dips(v[k-2], v[k-1], v[k]):
-			f.touching(l, rate, t[k-2], t[k])
+		case a == 0:
+			f.tryRoot(c, l.at(p.from, x))
+		case b == 0:
+			f.tryRoot(c, l.at(p.to, x))
+		case a*b < 0:
+			f.bracketed(l, rate, p.from, p.to)
+		case !p.monotone:
+			f.touching(l, rate, p.from, p.to)
 		}
 	}
-}
-
-// dips tells whether three values of one sign come nearest to 0 in the middle.
-func dips(a, b, c float64) bool {
-	return a*b > 0 && b*c > 0 && abs(b) <= abs(a) && abs(b) <= abs(c)
 }
 
 // bracketed finds the state between two points where the rate changes sign, by

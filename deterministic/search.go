@@ -21,6 +21,7 @@ type finder struct {
 	flows      int
 	ranAway    []int // species, by flow that ran away
 	unsettled  int
+	scanned    bool // every line was searched without a gap
 }
 
 // candidate is a resting state with its type.
@@ -33,7 +34,11 @@ type candidate struct {
 }
 
 func (f *finder) classify(r *root) *candidate {
-	values, slack, ok := f.w.spectrum(f.whole, r.x, r.scale)
+	scale := slices.Clone(f.resolution)
+	for i, v := range r.x {
+		scale[i] = max(scale[i], v)
+	}
+	values, slack, ok := f.w.spectrum(f.whole, r.x, scale)
 	c := &candidate{root: r, values: values}
 	c.kind, c.unstable = kindOf(values, slack)
 	if !ok || !r.simple() {
@@ -58,6 +63,9 @@ func (f *finder) take(c *class, x []float64) *candidate {
 			return nil
 		}
 	}
+	if known := f.known(x); known != nil {
+		return known
+	}
 	r := f.w.examine(c, x, f.floor)
 	for k, known := range f.found {
 		if !known.same(r) {
@@ -72,6 +80,20 @@ func (f *finder) take(c *class, x []float64) *candidate {
 	}
 	f.found = append(f.found, f.classify(r))
 	return f.found[len(f.found)-1]
+}
+
+// known gives the simple state that x is to within its own error bound, or nil.
+func (f *finder) known(x []float64) *candidate {
+	for _, k := range f.found {
+		same := k.simple()
+		for i, v := range x {
+			same = same && abs(v-k.x[i]) <= 2*k.quality.Error[i]+4*epsilon*v
+		}
+		if same {
+			return k
+		}
+	}
+	return nil
 }
 
 // searchFace finds the resting states with every species present that the face
@@ -173,23 +195,32 @@ const searchTolerance = 1e-3
 // searchSteps bounds each of them.
 const searchSteps = 3000
 
-// flowToRest follows the flow from x until a Newton step from it is short and
-// leads to a stable state; it gives the state or nil.
+// atStandstill is the relative change in one step, the steps growing sixfold,
+// below which a flow is at rest: on a saddle, on a degenerate state, or where some
+// species is vanishing.
+const atStandstill = 1e-7
+
+// flowToRest follows the flow from x, in place, until a Newton step from it is
+// short and leads to a stable state, or it stands still; it gives the state or nil.
 func (f *finder) flowToRest(c *class, x []float64) *candidate {
 	f.flows++
 	g := newIntegrator(f.w, searchTolerance, f.resolution)
 	var at *candidate
-	quiet := 0
+	quiet, still := 0, 0
 	end, species := g.follow(f.ctx, x, f.limit, searchSteps, func(moved float64) bool {
 		if moved > 0.1 {
 			quiet = 0
 			return false
 		}
-		if quiet++; quiet%4 != 0 {
+		if moved > atStandstill {
+			still = 0
+		}
+		still++
+		if quiet++; quiet%4 != 0 && still < 20 {
 			return false
 		}
 		at = f.nearRest(c, x)
-		return at != nil && (at.kind.Stable() || at.kind == Degenerate && moved < 1e-6)
+		return still >= 20 || at != nil && (at.kind.Stable() || f.atop(at, x))
 	})
 	switch end {
 	case flowSettled:
@@ -200,6 +231,17 @@ func (f *finder) flowToRest(c *class, x []float64) *candidate {
 		f.unsettled++
 	}
 	return nil
+}
+
+// atop tells whether x is a state to within a thousandth of its amounts: a flow
+// that comes so near a saddle is not followed on.
+func (f *finder) atop(r *candidate, x []float64) bool {
+	for i, v := range x {
+		if !(abs(v-r.x[i]) <= 1e-3*(r.x[i]+f.resolution[i])) {
+			return false
+		}
+	}
+	return true
 }
 
 // nearRest gives the resting state within a short Newton step of x, or nil.

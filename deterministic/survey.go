@@ -13,7 +13,7 @@ import (
 // search finds the box and the resting states in it.
 func (m *Map) search(ctx context.Context, o Options) (*finder, error) {
 	s := m.sys
-	f := &finder{ctx: ctx, w: newWorkspace(s), options: o, whole: m.class}
+	f := &finder{ctx: ctx, w: newWorkspace(s), options: o, whole: m.class, scanned: true}
 	b := findBox(s, m.class)
 	f.setBox(b)
 	if err := f.openEnds(b); err != nil {
@@ -66,7 +66,7 @@ func (m *Map) states(f *finder) {
 	m.nameStates()
 	sum, ok := f.indexSum()
 	m.Search = Search{
-		Starts: f.starts, Flows: f.flows, Checked: ok, Balanced: ok && sum == 1, Scanned: m.class.dim() == 1,
+		Starts: f.starts, Flows: f.flows, Checked: ok, Balanced: ok && sum == 1, Scanned: m.class.dim() == 1 && f.scanned,
 	}
 }
 

@@ -6,7 +6,7 @@ import (
 	"holdfast/deterministic/proof/interval"
 )
 
-// Interval is short for the intervals that everything here is worked out in.
+// iv is short for the intervals that everything here is worked out in.
 type iv = interval.Interval
 
 // kind is the kind of a node of a graph.
@@ -74,13 +74,21 @@ func newBuilder(constants []float64, absent []bool) *builder {
 
 // intern gives the number of a node equal to n, a new one if there is none.
 func (b *builder) intern(n node) int {
-	key := fmt.Sprint(n.kind, n.args, n.coef, n.c, n.scale, n.n)
-	if i, ok := b.seen[key]; ok {
+	k := key(n)
+	if i, ok := b.seen[k]; ok {
 		return i
 	}
 	b.nodes = append(b.nodes, n)
-	b.seen[key] = len(b.nodes) - 1
+	b.seen[k] = len(b.nodes) - 1
 	return len(b.nodes) - 1
+}
+
+func key(n node) string { return fmt.Sprint(n.kind, n.args, n.coef, n.c, n.scale, n.n) }
+
+// find gives the number of the node equal to n, if it has been made.
+func (b *builder) find(n node) (id int, ok bool) {
+	id, ok = b.seen[key(n)]
+	return id, ok
 }
 
 func (b *builder) species(i int) scaled {

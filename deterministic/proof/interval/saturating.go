@@ -105,5 +105,14 @@ func slopeAt(z float64, n Interval) Interval {
 		return Interval{0, math.Inf(1)}
 	}
 	p := Point(z)
-	return n.Mul(p.Hill(n)).Mul(p.Fall(n)).Div(p)
+	q := p.Pow(n)
+	one := Point(1)
+	if q.Lo > 1 { // zⁿ⁻¹ may be beyond all numbers
+		return n.Mul(p.Hill(n)).Mul(p.Fall(n)).Div(p)
+	}
+	lower := q.Div(p) // zⁿ⁻¹
+	if q.Lo < tiny {
+		lower = p.Pow(n.Sub(one))
+	}
+	return n.Mul(lower).Div(one.Add(q).PowInt(2))
 }

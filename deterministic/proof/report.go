@@ -1,0 +1,43 @@
+package proof
+
+import (
+	"cmp"
+	"slices"
+
+	"holdfast/deterministic/proof/interval"
+)
+
+// result states the outcome in amounts.
+func (o *outcome) result(low, high []float64, all bool) *Result {
+	r := &Result{Low: low, High: high, All: all, Boxes: o.boxes, Ending: o.ending}
+	s := o.task.system
+	for _, f := range o.known {
+		root := Root{Box: s.amounts(f.box), Kink: f.kink, Edge: !f.box.in(o.task.bounds)}
+		for _, a := range root.Box {
+			root.Point = append(root.Point, a.Mid())
+		}
+		r.Roots = append(r.Roots, root)
+	}
+	slices.SortFunc(r.Roots, func(a, b Root) int { return slices.CompareFunc(a.Point, b.Point, cmp.Compare) })
+	rest := slices.Concat(o.stuck, o.left)
+	for _, c := range clusters(rest, o.task.bounds) {
+		n := 0
+		for _, b := range rest {
+			if b.in(c) {
+				n++
+			}
+		}
+		r.Unresolved = append(r.Unresolved, Unresolved{Box: s.amounts(c), Boxes: n})
+	}
+	r.Complete = len(rest) == 0 && o.ending == Finished
+	return r
+}
+
+// unposed is the result where the equations do not determine isolated states.
+func unposed(low, high []float64) *Result {
+	u := Unresolved{Boxes: 1}
+	for i := range low {
+		u.Box = append(u.Box, interval.Interval{Lo: low[i], Hi: high[i]})
+	}
+	return &Result{Low: low, High: high, Unresolved: []Unresolved{u}, Ending: Unposed}
+}
