@@ -213,13 +213,13 @@ func (d *description) absorbing() {
 }
 
 func (a Absorber) text(n *Network) string {
-	names := n.names(a.Empty)
-	text := "without " + names + " nothing can happen any more: the state is never left"
+	left := "no " + strings.Join(n.names(a.Empty), " and no ")
+	text := "with " + left + " left, nothing can happen any more: this state is never left"
 	if !a.Frozen {
-		text = "without " + names + " none of it is ever made again; the rest goes on"
+		text = "with " + left + " left, none is ever made again; the rest goes on"
 	}
 	if a.AtStart {
-		text += " (the start is such a state)"
+		text += " (the design starts so)"
 	}
 	return text
 }

@@ -51,7 +51,7 @@ func checkProblems(t *testing.T, err error, size int) {
 		t.Fatalf("the error is not Problems: %v", err)
 	}
 	for _, p := range problems {
-		if p.Line < 1 || p.Column < 1 || p.Line > size+1 || p.Column > len([]rune(p.SourceLine))+2 {
+		if p.Line < 1 || p.Column < 1 || p.Line > size+1 || p.Column > len([]rune(p.SourceLine))+1 {
 			t.Fatalf("the place is outside the file: %+v", p)
 		}
 	}

@@ -27,6 +27,9 @@ func newSource(name, text string) *source {
 // position gives the line and column, from 1, of a byte offset.
 func (s *source) position(offset int) (line, column int) {
 	offset = min(max(offset, 0), len(s.text))
+	for offset > 0 && offset < len(s.text) && !utf8.RuneStart(s.text[offset]) {
+		offset-- // to the beginning of the character
+	}
 	line = sort.SearchInts(s.lines, offset+1)
 	return line, utf8.RuneCountInString(s.text[s.lines[line-1]:offset]) + 1
 }
@@ -68,8 +71,10 @@ func (r *reporter) notef(offset int, hint, format string, args ...any) {
 
 func (r *reporter) problem(offset int, hint, format string, args ...any) Problem {
 	line, column := r.src.position(offset)
+	text := r.src.line(line)
 	return Problem{
-		File: r.src.name, Line: line, Column: column, SourceLine: r.src.line(line),
+		File: r.src.name, Line: line, SourceLine: text,
+		Column:  min(column, utf8.RuneCountInString(text)+1), // not behind the line's end
 		Message: fmt.Sprintf(format, args...), Hint: hint,
 	}
 }

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"strings"
 )
 
 // manyFixed is the number of copies from which a fixed count looks like a mistake:
@@ -41,7 +40,7 @@ func (n *Network) scaleWarnings() []string {
 	for i, s := range n.Species {
 		k := s.Start * n.Unit(i)
 		if whole := math.Round(k); math.Abs(k-whole) > 1e-9*max(1, k) {
-			out = append(out, fmt.Sprintf("%s starts with %g molecules; %g are taken, the nearest whole number", s.Name, k, whole))
+			out = append(out, fmt.Sprintf("%s starts with %s molecules; %s are taken, the nearest whole number", s.Name, number(k), number(whole)))
 		}
 		if s.Fixed && s.Start > manyFixed {
 			out = append(out, fmt.Sprintf("%s has a fixed count of %g: is it really meant not to scale with copies?", s.Name, s.Start))
@@ -85,7 +84,7 @@ func (n *Network) lawWarnings(r int) []string {
 	var out []string
 	for _, t := range re.Uses {
 		if empty := n.marked(t.Species); !re.Law.vanishes(empty) {
-			out = append(out, fmt.Sprintf("%s: its law is not 0 without %s, which it uses; below %d molecules it is taken not to happen", n.title(r), n.Species[t.Species].Name, t.Count))
+			out = append(out, fmt.Sprintf("%s: its law is not 0 without %s, which it uses; below %d %s it is taken not to happen", n.title(r), n.Species[t.Species].Name, t.Count, plural(int64(t.Count), "molecule")))
 		}
 	}
 	for _, t := range re.Needs {
@@ -134,9 +133,9 @@ func (n *Network) startWarnings() []string {
 		a := n.Propensity(r, start)
 		switch {
 		case math.IsNaN(a) || math.IsInf(a, 0):
-			out = append(out, fmt.Sprintf("%s: its propensity at the start is %v, not a finite number", n.title(r), a))
+			out = append(out, fmt.Sprintf("%s: its propensity at the start is %s, not a finite number", n.title(r), number(a)))
 		case a < 0:
-			out = append(out, fmt.Sprintf("%s: its propensity at the start is %g, below 0", n.title(r), a))
+			out = append(out, fmt.Sprintf("%s: its propensity at the start is %s, below 0", n.title(r), number(a)))
 		}
 	}
 	return out
@@ -156,11 +155,11 @@ func (n *Network) marked(species int) []bool {
 	return out
 }
 
-// names joins the names of species.
-func (n *Network) names(species []int) string {
+// names lists the names of species.
+func (n *Network) names(species []int) []string {
 	out := make([]string, len(species))
 	for i, s := range species {
 		out[i] = n.Species[s].Name
 	}
-	return strings.Join(out, ", ")
+	return out
 }
