@@ -44,8 +44,7 @@ func addUp(a, b float64) float64 {
 	return next(s)
 }
 
-func subDown(a, b float64) float64 { return addDown(a, -b) }
-func subUp(a, b float64) float64   { return addUp(a, -b) }
+func subUp(a, b float64) float64 { return addUp(a, -b) }
 
 // tiny is the size below which the error of a product may itself underflow: it
 // is a multiple of 2⁻¹⁰⁷⁴, and of the last place of the product squared, 2⁻¹⁰⁶
