@@ -19,20 +19,22 @@ func rejections(l law, seed uint64, n, repeats int, horizon float64) (rejected i
 }
 
 // Memoryless samples are rejected at the stated level, cut off or not: of 4,000 at
-// 0.01, binomial with mean 40; beyond 76 or below 13 with probability 5e-7 each.
+// 0.01, binomial with mean 40; below 13 with probability 5e-7. On 40,000 samples of
+// another seed the share was 0.0102 to 0.0111, largest where many were cut off: with
+// that, beyond 84 with probability 5e-8.
 func TestMemoryLevel(t *testing.T) {
 	for _, c := range []struct {
 		n       int
 		horizon float64
 	}{{10, 0}, {50, 0}, {444, 0}, {60, 0.5}, {60, 1}, {100, 2}} {
-		if got := rejections(exponential(), 21, c.n, 4000, c.horizon); got < 13 || got > 76 {
+		if got := rejections(exponential(), 21, c.n, 4000, c.horizon); got < 13 || got > 84 {
 			t.Errorf("%d dwells cut off at %v: %d of 4000 memoryless samples rejected at 0.01", c.n, c.horizon, got)
 		}
 	}
 }
 
-// Power, as measured on 4,000 other seeds: two stages 0.98 and the mixture 0.97 at
-// 100 dwells. Of 1,000, below 930 with probability below 1e-6.
+// Power at 100 dwells, as measured on 20,000 samples of 1,000 other seeds: two stages
+// 0.986 and the mixture 0.9996. Of 1,000, below 930 with probability below 1e-15.
 func TestMemoryPower(t *testing.T) {
 	for _, l := range []law{erlang(), mixture()} {
 		if got := rejections(l, 22, 100, 1000, 0); got < 930 {
