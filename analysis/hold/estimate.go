@@ -4,15 +4,11 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"holdfast/analysis/dwell"
+	"holdfast/analysis/records"
 	"holdfast/model"
-)
-
-// The routes.
-const (
-	routeRuns      = "runs"
-	routeAbsorbing = "absorbing" // nothing to estimate: no reaction leads out
 )
 
 // holdGenerations are the numbers of generations that chances of holding are
@@ -56,8 +52,8 @@ func (j *job) estimate(r *stateRuns) error {
 
 func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
 	row := DwellReport{
-		From: from, To: j.targetName(e.To), Route: routeRuns, Sampled: true,
-		Mean: Value(e.Mean), Low: Value(e.Low), High: Value(e.High), Flips: int64(e.Flips), Exposure: Value(e.Exposure),
+		From: from, To: j.targetName(e.To), Route: Runs, Sampled: true,
+		StandardError: Value(e.StandardError), Mean: Value(e.Mean), Low: Value(e.Low), High: Value(e.High), Flips: int64(e.Flips), Exposure: Value(e.Exposure),
 		PerGeneration: Value(e.PerGeneration.Value), PerGenerationLow: Value(e.PerGeneration.Low), PerGenerationHigh: Value(e.PerGeneration.High),
 	}
 	if e.Flips == 0 {
@@ -82,12 +78,15 @@ func (j *job) add(row DwellReport) {
 
 // neverLeft reports an absorbing state.
 func (j *job) neverLeft(s int) {
+	if slices.ContainsFunc(j.rates, func(r records.Rate) bool { return r.From == s && r.Route == absorbing }) {
+		return // said already by the first route
+	}
 	from, inf := j.survey.Stable()[s].Name, Value(math.Inf(1))
 	for t, to := range j.survey.Stable() {
 		if t == s {
 			continue
 		}
-		row := DwellReport{From: from, To: to.Name, Route: routeAbsorbing, Mean: inf, Low: inf, High: inf, Never: true, Note: "never returns"}
+		row := DwellReport{From: from, To: to.Name, Route: absorbing, Mean: inf, Low: inf, High: inf, Never: true, Note: "never returns"}
 		if j.network.Generation > 0 {
 			for _, g := range holdGenerations() {
 				row.Holds = append(row.Holds, HoldChance{g, 1, 1, 1})

@@ -38,38 +38,15 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	}
 	j := &job{network: network, options: options, survey: survey}
 	j.newReport()
-	j.report.Route = "runs: exact stochastic runs, each from a state to its first flip"
 	if err := j.openSink(); err != nil {
 		return nil, err
 	}
 	defer j.sink.abandon()
-	if err := j.holdTimes(ctx); err != nil {
+	if err := j.takeRoutes(ctx); err != nil {
 		return nil, err
 	}
 	j.report.Work.Seconds = time.Since(begun).Seconds()
 	return j.report, j.closeSink()
-}
-
-// holdTimes estimates the hold time of every state in turn.
-func (j *job) holdTimes(ctx context.Context) error {
-	states := len(j.survey.Stable())
-	left := j.options.Events
-	for s, state := range j.survey.Stable() {
-		if state.Absorbing {
-			j.neverLeft(s)
-			continue
-		}
-		r, err := j.runState(ctx, s, perRun(left, states-s))
-		if err != nil {
-			return err
-		}
-		j.report.Work.Events += r.events
-		left = remaining(left, r.events)
-		if err := j.estimate(r); err != nil {
-			return err
-		}
-	}
-	return nil
 }
 
 // remaining takes what was spent from a budget, of which 0 is no limit; a budget

@@ -15,6 +15,9 @@ const (
 // Options say how a hold job is done. The zero value is a job of the default
 // precision and budget.
 type Options struct {
+	// Route is how hold times are found, one of Routes; empty: Auto. Second, if not
+	// empty, is a second route to hold against the first.
+	Route, Second string
 	// Precision is the relative half-width asked of each 95 % interval; 0: 0.1.
 	Precision float64
 	// Runs is the number of runs of each state, each to its first flip; 0: as many
@@ -33,6 +36,9 @@ type Options struct {
 	// of runs that one of them advances in turn; 0: chosen by the engine.
 	Threads, Lanes int
 
+	// Memory is the most bytes that the lattice may take; 0: 4 GiB.
+	Memory int64
+
 	// Folder, if not empty, receives the records. Command is what they carry as
 	// the command that made them.
 	Folder, Command string
@@ -40,6 +46,8 @@ type Options struct {
 	// Progress, if not nil, is told now and then how far the job is; never twice
 	// at once.
 	Progress func(Progress)
+
+	sampled bool // an option was given that only runs understand
 }
 
 // Progress tells how far a job is.
@@ -72,9 +80,23 @@ func (o Options) complete() (Options, error) {
 		return o, &OptionError{"events", o.Events, "at least 1"}
 	case !(o.Until >= 0) || math.IsInf(o.Until, 0):
 		return o, &OptionError{"until", o.Until, "a finite time above 0"}
+	case o.Memory < 0:
+		return o, &OptionError{"memory", o.Memory, "a number of bytes above 0"}
 	case o.Threads < 0 || o.Threads > 4096:
 		return o, &OptionError{"threads", o.Threads, "from 1 to 4096"}
 	}
+	if o.Route == "" {
+		o.Route = Auto
+	}
+	if err := checkRoute("route", o.Route); err != nil {
+		return o, err
+	}
+	if o.Second != "" {
+		if err := checkRoute("second", o.Second); err != nil {
+			return o, err
+		}
+	}
+	o.sampled = o.Precision != 0 || o.Runs != 0 || o.Events != 0 || o.Until != 0
 	if o.Precision == 0 {
 		o.Precision = defaultPrecision
 	}

@@ -10,7 +10,7 @@ import (
 // rateOf is the row of the table rates for one estimate from runs.
 func rateOf(s *dwell.Summary, e dwell.Estimate) records.Rate {
 	row := records.Rate{
-		From: s.From, To: recordTarget(e.To), Route: routeRuns, Interval: e.Method.String(),
+		From: s.From, To: recordTarget(e.To), Route: Runs, Interval: e.Method.String(),
 		Mean: e.Mean, Low: e.Low, High: e.High, StandardError: e.StandardError,
 		Flips: int64(e.Flips), Dwells: int64(s.Dwells), Exposure: e.Exposure, PerGeneration: records.Range(e.PerGeneration),
 	}
@@ -34,7 +34,7 @@ func recordTarget(to int) int {
 // neverRate is the row of the table rates for a state that is never left.
 func neverRate(from, to int, report DwellReport) records.Rate {
 	row := records.Rate{
-		From: from, To: to, Route: routeAbsorbing, Interval: "no reaction leads out", Never: true,
+		From: from, To: to, Route: absorbing, Interval: "no reaction leads out", Never: true,
 		Mean: math.Inf(1), Low: math.Inf(1), High: math.Inf(1), StandardError: math.NaN(),
 		Flips: -1, Dwells: -1, Exposure: math.NaN(), PerGeneration: records.Range{},
 	}

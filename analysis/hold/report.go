@@ -30,6 +30,10 @@ type Report struct {
 	Dwells     []DwellReport `json:"dwells"`
 	Work       Work          `json:"work"`
 	Warnings   []string      `json:"warnings"`
+	// Verdicts hold the two routes of a job with a second one against each other.
+	Verdicts []Verdict `json:"verdicts,omitempty"`
+	// Lattice describes the lattice route, where it was taken.
+	Lattice *LatticeReport `json:"lattice,omitempty"`
 
 	// Species are the names of the species, in the design's order.
 	Species []string `json:"-"`
@@ -71,6 +75,9 @@ type DwellReport struct {
 	// Never tells that the state is never left; Sampled that the numbers come
 	// from sampled flips.
 	Never, Sampled bool `json:"-"`
+	// StandardError of Mean, for sampled rows; Bound on the relative error of Mean,
+	// for the others.
+	StandardError, Bound Value `json:"-"`
 	// The same mean and limits in generations, and the limits of PerGeneration.
 	Generations, GenerationsLow, GenerationsHigh Value `json:"-"`
 	PerGenerationLow, PerGenerationHigh          Value `json:"-"`
@@ -83,6 +90,17 @@ type DwellReport struct {
 type HoldChance struct {
 	Generations       float64
 	Chance, Low, High Value
+}
+
+// A LatticeReport tells how the master equation was solved.
+type LatticeReport struct {
+	States     int     `json:"states"`
+	Box        string  `json:"box"`        // of counts
+	Truncation Value   `json:"truncation"` // bound on the relative error of the means
+	Relaxation Value   `json:"relaxation"` // slowest relaxation time of the whole network
+	Weights    []Value `json:"weights"`    // stationary probability of each state
+	Seconds    float64 `json:"seconds"`
+	Bytes      int64   `json:"bytes"`
 }
 
 // Work is what the answer cost.

@@ -27,6 +27,28 @@ type stateRuns struct {
 	interrupted bool
 }
 
+// byRuns estimates the hold time of every state in turn by exact runs.
+func (j *job) byRuns(ctx context.Context) error {
+	states := len(j.survey.Stable())
+	left := j.options.Events
+	for s, state := range j.survey.Stable() {
+		if state.Absorbing {
+			j.neverLeft(s)
+			continue
+		}
+		r, err := j.runState(ctx, s, perRun(left, states-s))
+		if err != nil {
+			return err
+		}
+		j.report.Work.Events += r.events
+		left = remaining(left, r.events)
+		if err := j.estimate(r); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
 // runState makes the runs of state s, at a cost of at most events (0: no limit).
 func (j *job) runState(ctx context.Context, s int, events int64) (*stateRuns, error) {
 	r := &stateRuns{state: s}
@@ -116,15 +138,15 @@ func (j *job) count(ctx context.Context, r *stateRuns, p ssa.Plan) error {
 		return Explain(j.network, err)
 	}
 	for i := range result.Outcomes {
-		if err := j.take(r, &result.Outcomes[i]); err != nil {
+		if err := j.observe(r, &result.Outcomes[i]); err != nil {
 			return err
 		}
 	}
 	return nil
 }
 
-// take adds one outcome to what was seen.
-func (j *job) take(r *stateRuns, o *ssa.Outcome) error {
+// observe adds one outcome to what was seen.
+func (j *job) observe(r *stateRuns, o *ssa.Outcome) error {
 	if o.Ending == ssa.Cancelled {
 		r.interrupted = true
 		if o.Events == 0 {

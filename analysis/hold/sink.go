@@ -1,7 +1,11 @@
 package hold
 
 import (
+	"fmt"
+	"math"
+
 	"holdfast/analysis/dwell"
+	"holdfast/analysis/lattice"
 	"holdfast/analysis/records"
 	"holdfast/deterministic"
 	"holdfast/internal/version"
@@ -121,4 +125,68 @@ func leading(s *deterministic.State) complex128 {
 		return 0
 	}
 	return s.Eigenvalues[0]
+}
+
+// recordLattice writes the tables committor and weights: a row for each lattice
+// state, with the counts of the species and a column for each resting state.
+func (j *job) recordLattice(s *lattice.Solution) error {
+	if j.sink == nil {
+		return nil
+	}
+	committor := j.latticeTable("committor", s.Names, "1", "probability that the core of %s is the first to be entered")
+	err := committor.write(j.sink.folder, s, func(a, i int) float64 { return s.Committor[a][i] })
+	if err != nil {
+		return err
+	}
+	weights := j.latticeTable("weights", append([]string{stationary}, s.Names...), "1", "probability under the law of %s: stationary, or quasi-stationary of the state")
+	return weights.write(j.sink.folder, s, func(a, i int) float64 {
+		switch {
+		case a > 0 && s.Quasi[a-1] != nil:
+			return s.Quasi[a-1][i]
+		case a == 0 && s.Stationary != nil:
+			return s.Stationary[i]
+		}
+		return math.NaN()
+	})
+}
+
+// stationary names the column of the stationary law beside those of the states.
+const stationary = "stationary"
+
+// A latticeTable is a table of numbers on the lattice.
+type latticeTable struct {
+	*records.Table
+	counts []records.IntColumn
+	values []records.FloatColumn
+}
+
+func (j *job) latticeTable(name string, columns []string, unit, note string) *latticeTable {
+	t := &latticeTable{Table: records.NewTable(name)}
+	for _, s := range speciesNames(j.network) {
+		t.counts = append(t.counts, t.AddInt("count_"+s, "molecules", "count of "+s))
+	}
+	for _, c := range columns {
+		t.values = append(t.values, t.AddFloat("of_"+c, unit, fmt.Sprintf(note, c)))
+		t.Optional()
+	}
+	return t
+}
+
+func (t *latticeTable) write(folder *records.Folder, s *lattice.Solution, value func(column, state int) float64) error {
+	w, err := folder.Table(t.Table)
+	if err != nil {
+		return err
+	}
+	for i := range s.States {
+		for k, c := range t.counts {
+			w.Int(c, int64(s.Point(i)[k]))
+		}
+		for a, c := range t.values {
+			w.Float(c, value(a, i))
+		}
+		if err := w.Next(); err != nil {
+			return err
+		}
+	}
+	return w.Close()
 }

@@ -10,7 +10,10 @@ import (
 )
 
 // number writes v with four significant digits, plainly from 0.001 to a million.
-func number(v float64) string {
+func number(v float64) string { return digits(v, 4) }
+
+// digits writes v with so many significant digits, plainly from 0.001 to a million.
+func digits(v float64, significant int) string {
 	size := math.Abs(v)
 	switch {
 	case math.IsNaN(v):
@@ -20,20 +23,15 @@ func number(v float64) string {
 	case v == 0:
 		return "0"
 	case size >= 0.001 && size < 999950:
-		return strconv.FormatFloat(roundTo4(v), 'f', -1, 64)
+		rounded, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', significant, 64), 64)
+		return strconv.FormatFloat(rounded, 'f', -1, 64)
 	}
-	mantissa, exponent, _ := strings.Cut(strconv.FormatFloat(v, 'e', 3, 64), "e")
-	mantissa = strings.TrimRight(strings.TrimRight(mantissa, "0"), ".")
-	exponent = strings.TrimPrefix(exponent, "+")
-	if sign := strings.HasPrefix(exponent, "-"); sign {
-		return mantissa + "e-" + strings.TrimLeft(exponent[1:], "0")
+	mantissa, exponent, _ := strings.Cut(strconv.FormatFloat(v, 'e', significant-1, 64), "e")
+	if strings.Contains(mantissa, ".") {
+		mantissa = strings.TrimRight(strings.TrimRight(mantissa, "0"), ".")
 	}
-	return mantissa + "e" + strings.TrimLeft(exponent, "0")
-}
-
-func roundTo4(v float64) float64 {
-	r, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 4, 64), 64)
-	return r
+	sign := strings.TrimLeft(exponent[:1], "+")
+	return mantissa + "e" + sign + strings.TrimLeft(exponent[1:], "0")
 }
 
 // chance writes a probability so that what is near to 1 does not read as 1.

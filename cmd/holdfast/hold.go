@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"strings"
 
 	"github.com/spf13/pflag"
 
@@ -30,6 +31,10 @@ func setupHold(f *pflag.FlagSet) work {
 	var o hold.Options
 	var asJSON, quiet bool
 	var threads int64
+	var memory float64
+	f.StringVar(&o.Route, "route", hold.Auto, "`route` to the hold times: "+strings.Join(hold.Routes(), ", "))
+	f.StringVar(&o.Second, "second", "", "a second `route`, held against the first")
+	positiveFlag(f, &memory, "memory", "most GiB that the lattice may take (4 if not given)")
 	positiveFlag(f, &o.Precision, "precision", "relative half-width of the 95 % interval to reach (0.1 if not given)")
 	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
 	countFlag(f, &o.Events, "events", "most reaction events in all (6e8 if no limit is given)")
@@ -44,7 +49,7 @@ func setupHold(f *pflag.FlagSet) work {
 		if err != nil {
 			return err
 		}
-		o.Threads = int(threads)
+		o.Threads, o.Memory = int(threads), bytesOf(memory)
 		o.Command = canonical("hold", path, f)
 		return runHold(ctx, t, path, design, o, asJSON, quiet)
 	}
@@ -102,10 +107,34 @@ func writeHold(w io.Writer, r *hold.Report) error {
 			return err
 		}
 	}
+	writeVerdicts(w, r)
+	writeLattice(w, r)
 	fmt.Fprintf(w, "\n%s events in %s s on %d threads\n", number(float64(r.Work.Events)), number(r.Work.Seconds), r.Work.Threads)
 	writeWarnings(w, r.Warnings)
 	_, err := fmt.Fprintln(w, "These are a model's estimates; a strain must be tested ('holdfast help').")
 	return err
+}
+
+func writeVerdicts(w io.Writer, r *hold.Report) {
+	if len(r.Verdicts) == 0 {
+		return
+	}
+	fmt.Fprintf(w, "\nTwo routes\n")
+	t := &table{}
+	t.add("from", "to", "routes", "ratio", "verdict")
+	for _, v := range r.Verdicts {
+		t.add(v.From, v.To, v.Routes[0]+" / "+v.Routes[1], value(v.Ratio), v.Text)
+	}
+	_ = t.write(w) // the caller's next write tells
+}
+
+func writeLattice(w io.Writer, r *hold.Report) {
+	l := r.Lattice
+	if l == nil {
+		return
+	}
+	fmt.Fprintf(w, "\nLattice: %d states in %s, truncation error at most %s of each mean, relaxation time %s %s\n",
+		l.States, l.Box, value(l.Truncation), value(l.Relaxation), r.TimeUnit)
 }
 
 func generationText(r *hold.Report) string {
@@ -115,17 +144,19 @@ func generationText(r *hold.Report) string {
 	return ""
 }
 
+// stateTable has a column for each state, whatever the number of species.
 func stateTable(r *hold.Report) *table {
 	t := &table{}
-	head := []string{"state", "type"}
-	for _, s := range r.Species {
-		head = append(head, s+" (molecules)")
-	}
-	t.add(head...)
+	names, kinds := []string{"amount (molecules)"}, []string{""}
 	for _, s := range r.States {
-		row := []string{s.Name, s.Kind}
-		for _, name := range r.Species {
-			row = append(row, fmt.Sprintf("%s (%s)", number(float64(s.Amounts[name])), number(float64(s.Molecules[name]))))
+		names, kinds = append(names, s.Name), append(kinds, s.Kind)
+	}
+	t.add(names...)
+	t.add(kinds...)
+	for _, species := range r.Species {
+		row := []string{species}
+		for _, s := range r.States {
+			row = append(row, fmt.Sprintf("%s (%s)", value(s.Amounts[species]), value(s.Molecules[species])))
 		}
 		t.add(row...)
 	}
@@ -144,9 +175,9 @@ func dwellTable(r *hold.Report) *table {
 		row := []string{d.From, d.To, estimate(d, d.Mean, d.Low, d.High)}
 		if generations {
 			row = append(row, estimate(d, d.Generations, d.GenerationsLow, d.GenerationsHigh),
-				interval(d.PerGeneration, d.PerGenerationLow, d.PerGenerationHigh))
+				ranged(d, d.PerGeneration, d.PerGenerationLow, d.PerGenerationHigh))
 		}
-		t.add(append(row, fmt.Sprint(d.Flips), d.Route)...)
+		t.add(append(row, flips(d), d.Route)...)
 	}
 	return t
 }
@@ -174,11 +205,28 @@ func holdsTable(r *hold.Report) *table {
 func estimate(d hold.DwellReport, mean, low, high hold.Value) string {
 	switch {
 	case d.Never:
-		return "never returns"
+		return d.Note
 	case d.Flips == 0 && d.Sampled:
 		return "above " + number(float64(low))
 	}
-	return interval(mean, low, high)
+	return ranged(d, mean, low, high)
+}
+
+// ranged writes a value with its limits, or, if it is not sampled, with the bound of
+// its error.
+func ranged(d hold.DwellReport, v, low, high hold.Value) string {
+	if d.Sampled || d.Never {
+		return interval(v, low, high)
+	}
+	return fmt.Sprintf("%s ± %s", digits(float64(v), 7), digits(float64(d.Bound*v), 1))
+}
+
+// flips writes the flips that were seen, where the route sees any.
+func flips(d hold.DwellReport) string {
+	if !d.Sampled {
+		return "–"
+	}
+	return fmt.Sprint(d.Flips)
 }
 
 func interval(v, low, high hold.Value) string {

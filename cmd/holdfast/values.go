@@ -101,3 +101,6 @@ func (s settings) words() []string {
 	}
 	return out
 }
+
+// bytesOf turns a number of GiB into bytes.
+func bytesOf(gib float64) int64 { return int64(gib * (1 << 30)) }

@@ -1,0 +1,112 @@
+package hold
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"slices"
+	"strings"
+
+	"holdfast/analysis/lattice"
+)
+
+// The routes that can be asked for.
+const (
+	// Auto takes the cheapest route that is valid for the design.
+	Auto = "auto"
+	// Runs makes exact stochastic runs.
+	Runs = "runs"
+	// Lattice solves the master equation on its lattice.
+	Lattice = "lattice"
+
+	// absorbing marks what needs no route: no reaction leads out of the state.
+	absorbing = "absorbing"
+)
+
+// Routes lists the routes that can be asked for.
+func Routes() []string { return []string{Auto, Runs, Lattice} }
+
+// patience is the longest that auto lets the lattice take, in seconds by its own
+// estimate, before it turns to runs.
+const patience = 60
+
+func checkRoute(name, route string) error {
+	if !slices.Contains(Routes(), route) {
+		return &OptionError{name, fmt.Sprintf("%q", route), "one of " + strings.Join(Routes(), ", ")}
+	}
+	return nil
+}
+
+// takeRoutes estimates the hold times by the route asked for and, if a second one
+// is asked for, by that as well, and holds the two against each other.
+func (j *job) takeRoutes(ctx context.Context) error {
+	first, reason, err := j.choose(ctx)
+	if err != nil {
+		return err
+	}
+	j.report.Route = first + ": " + reason
+	if err := j.take(ctx, first); err != nil || j.options.Second == "" {
+		return err
+	}
+	second := j.options.Second
+	if second == Auto {
+		second = other(first)
+	}
+	if second == first {
+		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first"}
+	}
+	if err := j.take(ctx, second); err != nil {
+		return err
+	}
+	j.report.Verdicts = verdicts(j.report.Dwells, first, second)
+	return nil
+}
+
+func other(route string) string {
+	if route == Lattice {
+		return Runs
+	}
+	return Lattice
+}
+
+// choose gives the route to take first and why.
+func (j *job) choose(ctx context.Context) (route, reason string, err error) {
+	switch o := j.options; {
+	case o.Route != Auto:
+		return o.Route, "as asked for", nil
+	case o.sampled:
+		return Runs, "exact stochastic runs, since a precision, a number of runs or a budget was given", nil
+	}
+	e, err := j.problem().Estimate(ctx)
+	if ctx.Err() != nil {
+		return "", "", context.Cause(ctx)
+	}
+	if err != nil {
+		return Runs, "exact stochastic runs; " + why(err), nil
+	}
+	if e.Seconds > patience {
+		return Runs, fmt.Sprintf("exact stochastic runs; the lattice of %d states would take about %.0f s", e.States, e.Seconds), nil
+	}
+	return Lattice, fmt.Sprintf("the master equation itself, the cheapest here: %d lattice states, about %.1g s", e.States, e.Seconds), nil
+}
+
+// why says in a few words why the lattice cannot serve.
+func why(err error) string {
+	var dimensions *lattice.DimensionError
+	var large *lattice.TooLargeError
+	switch {
+	case errors.As(err, &dimensions):
+		return fmt.Sprintf("the lattice serves three independent species at most, and this design has %d", dimensions.Dimensions)
+	case errors.As(err, &large):
+		return fmt.Sprintf("the lattice would need about %.1f GiB", float64(large.Estimate.Bytes)/(1<<30))
+	}
+	return "the lattice cannot serve: " + err.Error()
+}
+
+// take estimates the hold times by one route.
+func (j *job) take(ctx context.Context, route string) error {
+	if route == Lattice {
+		return j.byLattice(ctx)
+	}
+	return j.byRuns(ctx)
+}
