@@ -80,9 +80,8 @@ func newBuilder(ctx context.Context, n *model.Network, k Knob, samples []sample,
 	if o.High != nil {
 		high = o.High
 	}
-	t := &tracer{ctx: ctx, f: f, knob: k, high: high, kinks: f.kinks()}
-	t.follower = follower{corrector: newCorrector(f), ruler: newRuler(floor, []Knob{k}), turns: []int{f.n}, most: o.Steps}
-	return &builder{tracer: t}
+	line := follower{corrector: newCorrector(f), ruler: newRuler(floor, []Knob{k}), turns: []int{f.n}, most: o.Steps}
+	return &builder{tracer: &tracer{frame: frame{line, f, []Knob{k}, high}, ctx: ctx, knob: k, kinks: f.kinks()}}
 }
 
 // build traces the branches of all states, then those that cross them.
@@ -207,35 +206,6 @@ func (b *builder) covered(u []float64) (anchor, bool) {
 	}
 	return anchor{}, false
 }
-
-// passes tells whether the branch between its points p and q goes through u: the
-// point of the branch in the plane through u across the chord is compared with it.
-func (b *builder) passes(p, q, u []float64) bool {
-	weight := b.ruler.weights(u)
-	chord := distance(p, q, weight)
-	if chord == 0 || distance(p, u, weight) > 1.2*chord {
-		return distance(p, u, weight) < closeBy
-	}
-	row := make([]float64, len(u))
-	share := 0.0
-	for j := range row {
-		row[j] = (q[j] - p[j]) / weight[j] / chord
-		share += row[j] * (u[j] - p[j]) / weight[j] / chord
-	}
-	if share < -0.05 || share > 1.05 {
-		return false
-	}
-	v := make([]float64, len(u))
-	for j := range v {
-		v[j] = p[j] + share*(q[j]-p[j])
-	}
-	guess := slices.Clone(v)
-	_, ok := b.correct(v, weight, row)
-	return ok && distance(v, guess, weight) <= sagitta*chord+closeBy && distance(u, v, weight) < closeBy
-}
-
-// sagitta bounds how far a branch bends away from the chord of a step.
-const sagitta = 0.2
 
 // branchOff traces the branches through a crossing that are not known yet.
 func (b *builder) branchOff(c *crossing) error {

@@ -64,3 +64,10 @@ func (e *NoStateError) Error() string {
 
 // Unwrap gives what the last survey said.
 func (e *NoStateError) Unwrap() error { return e.Last }
+
+// A SharedKnobError says that two knobs turn the same thing.
+type SharedKnobError struct{ First, Second string }
+
+func (e *SharedKnobError) Error() string {
+	return fmt.Sprintf("%s and %s turn the same thing; give two knobs that have nothing in common", e.First, e.Second)
+}

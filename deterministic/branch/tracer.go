@@ -18,11 +18,9 @@ type spot struct {
 
 // tracer traces branches in one knob.
 type tracer struct {
-	follower
+	frame
 	ctx   context.Context
-	f     *field
 	knob  Knob
-	high  []float64
 	kinks []kink
 }
 
@@ -105,7 +103,7 @@ func (p *path) visit(g segment) bool {
 		p.closed = true
 		return true
 	}
-	end := t.boundary(&g)
+	end := t.cut(&g)
 	to := t.spotAt(g.to.u, g.to.weight)
 	to.mark = end
 	for _, s := range t.events(g, p.last.values, to.values) {
@@ -115,95 +113,27 @@ func (p *path) visit(g segment) bool {
 		}
 		p.push(s)
 	}
+	if end != nil && end.Kind == Emptied && to.meeting == nil {
+		if c, ok := locateCrossing(t.f, to.u, to.weight); ok && distance(c.u, to.u, to.weight) < nearEnd {
+			to = *t.meetingSpot(g, c)
+		}
+	}
 	p.push(to)
 	return end != nil
 }
 
-// closeBy is the distance, in the ruler's units, of what counts as one point.
-const closeBy = 1e-6
+// nearEnd is how near to the point where an amount reaches 0 a crossing counts as
+// that point, which by itself is only found to the root of rounding there.
+const nearEnd = 1e-5
 
-// returns tells whether the segment comes back to the start.
-func (t *tracer) returns(g segment, start *place) bool {
-	s := g.share(start.u)
-	if s <= 0 || s > 1 || distance(start.u, g.from.u, g.from.weight) > 1.5*g.length {
-		return false
-	}
-	p, ok := t.within(g, s)
-	return ok && distance(p.u, start.u, p.weight) < closeBy && floats.Dot(start.tangentIn(p.weight), p.tangent) > 0
-}
-
-// edge is a limit that a step has crossed.
-type edge struct {
-	unknown int
-	value   float64
-	kind    Kind
-	share   float64
-}
-
-// boundary cuts the segment where it first leaves the knob's range or the box, and
-// gives the mark of that end; nil where it does not leave.
-func (t *tracer) boundary(g *segment) *Mark {
-	first := t.firstEdge(g)
-	if first == nil {
+// cut ends the segment where it leaves the frame and gives the mark of that end;
+// nil where it does not leave.
+func (t *tracer) cut(g *segment) *Mark {
+	e := t.boundary(g)
+	if e == nil {
 		return nil
 	}
-	species := ""
-	if first.unknown < t.f.n {
-		species = t.f.net.Species[first.unknown].Name
-	}
-	if q, ok := t.edgePlace(*g, first); ok {
-		*g = segment{g.from, q, g.length * min(max(g.share(q.u), 0), 1)}
-	}
-	return t.endMark(g.to.u, first.kind, species)
-}
-
-func (t *tracer) firstEdge(g *segment) *edge {
-	var first *edge
-	n := t.f.n
-	check := func(j int, value, beyond float64, kind Kind) {
-		if beyond <= 0 {
-			return
-		}
-		share := 0.0
-		if d := g.to.u[j] - g.from.u[j]; d != 0 {
-			share = (value - g.from.u[j]) / d
-		}
-		if first == nil || share < first.share {
-			first = &edge{j, value, kind, share}
-		}
-	}
-	check(n, t.knob.Low, t.knob.Low-g.to.u[n], RangeEnd)
-	check(n, t.knob.High, g.to.u[n]-t.knob.High, RangeEnd)
-	for i := range n {
-		check(i, 0, -g.to.u[i]-1e-9*t.ruler.floor[i], Emptied)
-		check(i, t.high[i], g.to.u[i]-t.high[i], BoxEdge)
-	}
-	return first
-}
-
-// edgePlace gives the place where the segment meets the edge.
-func (t *tracer) edgePlace(g segment, e *edge) (*place, bool) {
-	u := g.from.step(e.share * g.length)
-	if q, ok := t.within(g, e.share); ok {
-		u = q.u
-	}
-	for i := range t.f.n {
-		u[i] = max(u[i], 0)
-	}
-	if t.hold(u, g.from.weight, e.unknown, e.value) && g.holds(u) {
-		weight := t.ruler.weights(u)
-		if q, ok := t.at(u, weight, g.from.tangentIn(weight)); ok {
-			return q, true
-		}
-		return &place{u: u, weight: weight, tangent: g.from.tangentIn(weight), sign: g.from.sign}, true
-	}
-	q, ok := t.zero(g, g.from.u[e.unknown]-e.value, g.to.u[e.unknown]-e.value, func(p *place) float64 {
-		return p.u[e.unknown] - e.value
-	})
-	if ok {
-		q.u[e.unknown] = e.value
-	}
-	return q, ok
+	return t.endMark(g.to.u, e.kind, t.species(e))
 }
 
 // corner is a sharp turn of the branch at a kink.

@@ -1,0 +1,144 @@
+package branch
+
+import (
+	"context"
+	"fmt"
+	"slices"
+
+	"holdfast/model"
+)
+
+// A FoldPoint is a point of a fold curve: values of the two knobs at which a
+// resting state is a fold, and that state.
+type FoldPoint struct {
+	First, Second float64
+	Amounts       []float64
+	// Cusp tells that two fold curves meet here in a point: beyond it there is no
+	// fold.
+	Cusp bool
+}
+
+// A FoldCurve is a curve of folds in two knobs, in the order in which it runs. A
+// cusp is a point inside, where both knobs turn back.
+type FoldCurve struct {
+	Points []FoldPoint
+	// Ends says why the curve ends, at its first and its last point: the range of a
+	// knob, the box, an amount that reaches 0; Closed for a loop.
+	Ends [2]CurveEnd
+}
+
+// A CurveEnd says why a fold curve ends.
+type CurveEnd struct {
+	Kind Kind
+	// Knob is the knob whose range ends, Species the one that meets the box or 0;
+	// empty for other kinds. Text says why a curve was lost.
+	Knob, Species, Text string
+}
+
+func (e CurveEnd) String() string {
+	switch e.Kind {
+	case RangeEnd:
+		return fmt.Sprintf("%v of %s", e.Kind, e.Knob)
+	case BoxEdge:
+		return fmt.Sprintf("%s at the %v", e.Species, e.Kind)
+	case Emptied:
+		return e.Species + " reaches 0"
+	case Lost:
+		return fmt.Sprintf("%v: %s", e.Kind, e.Text)
+	}
+	return e.Kind.String()
+}
+
+// Cusps lists the cusps of the curve.
+func (c *FoldCurve) Cusps() []FoldPoint {
+	var out []FoldPoint
+	for _, p := range c.Points {
+		if p.Cusp {
+			out = append(out, p)
+		}
+	}
+	return out
+}
+
+// A FoldDiagram is the fold curves in two knobs.
+type FoldDiagram struct {
+	First, Second Knob
+	Today         [2]float64
+	Curves        []FoldCurve
+	Warnings      []string
+}
+
+// FoldCurves gives the curves of folds in two knobs, within both ranges: those that
+// hold a fold of the first knob at one of the samples of the second. The curve is
+// followed by the equations of a fold with both knobs free (Moore and Spence, SIAM
+// J. Numer. Anal. 17 (1980) 567).
+//
+// Errors are *SharedKnobError, *OutsideError, *NoStateError and ctx's. No fold at
+// all is no error: Curves is then empty.
+func FoldCurves(ctx context.Context, n *model.Network, first, second Knob, o Options) (*FoldDiagram, error) {
+	o = o.withDefaults()
+	if first.shares(second) {
+		return nil, &SharedKnobError{first.Name, second.Name}
+	}
+	d := &FoldDiagram{First: first, Second: second, Today: [2]float64{first.Today(n), second.Today(n)}}
+	for i, k := range []Knob{first, second} {
+		if d.Today[i] < k.Low || d.Today[i] > k.High {
+			return nil, &OutsideError{k.Name, d.Today[i], k.Low, k.High}
+		}
+	}
+	folds, high, floor, err := foldsOver(ctx, n, first, second, o)
+	if err != nil {
+		return nil, err
+	}
+	if o.High != nil {
+		high = o.High
+	}
+	return d, newFoldTracer(ctx, n, d, high, floor, o).traceAll(folds)
+}
+
+// foldsOver finds the folds of the first knob at the samples of the second, as
+// points with both knobs, and the box and floors for all.
+func foldsOver(ctx context.Context, n *model.Network, first, second Knob, o Options) (folds [][]float64, high, floor []float64, err error) {
+	var all []sample
+	var none error
+	for _, v := range settings(second, second.Today(n), o.Samples) {
+		turned, ok := rebind(n, second, v)
+		if !ok {
+			continue
+		}
+		samples, err := surveyAll(ctx, turned, first, settings(first, first.Today(n), o.Samples))
+		if ctx.Err() != nil {
+			return nil, nil, nil, ctx.Err()
+		}
+		if err != nil {
+			none = err
+			continue
+		}
+		all = append(all, samples...)
+		b := newBuilder(ctx, turned, first, samples, o)
+		if err := b.build(samples); err != nil {
+			return nil, nil, nil, err
+		}
+		for _, u := range b.folds() {
+			folds = append(folds, append(u, second.Today(turned)))
+		}
+	}
+	if len(all) == 0 {
+		return nil, nil, nil, none
+	}
+	high, floor = boxOf(all, len(n.Species))
+	return folds, high, floor, nil
+}
+
+// folds lists the folds of the branches, amounts and knob.
+func (b *builder) folds() [][]float64 {
+	var out [][]float64
+	for _, t := range b.branches {
+		for _, s := range t.spots {
+			if s.mark != nil && s.mark.Kind == Fold {
+				out = append(out, slices.Clone(s.u))
+			}
+		}
+	}
+	return out
+}
