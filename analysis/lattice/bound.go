@@ -63,17 +63,10 @@ func (s *solver) visits() []visit {
 // out as far as the decay of the occupied times near it says is needed.
 func (s *solver) grown(visits []visit) Box {
 	b := s.box.clone()
-	faces := 2 * s.species
-	need := make([]float64, faces) // natural logarithm of the reduction needed
-	for _, v := range visits {
-		for f, flow := range s.flows(v.times) {
-			need[f] = max(need[f], math.Log(flow)+math.Log(v.scale)+math.Log(2*float64(faces)/s.problem.truncation()))
-		}
-	}
 	moved := false
-	for f, n := range need {
-		if n > 0 {
-			moved = s.move(b, f, n, visits) || moved
+	for face := range 2 * s.species {
+		if step := s.step(face, visits); step > 0 {
+			moved = b.move(face, step) || moved
 		}
 	}
 	if !moved {
@@ -82,6 +75,18 @@ func (s *solver) grown(visits []visit) Box {
 		}
 	}
 	return b
+}
+
+// move shifts one face outwards, not below 0, and tells whether it moved.
+func (b Box) move(face int, step int64) bool {
+	sp := face / 2
+	if face%2 == 1 {
+		b.High[sp] += step
+		return true
+	}
+	before := b.Low[sp]
+	b.Low[sp] = max(0, before-step)
+	return b.Low[sp] != before
 }
 
 // flows gives the rate of leaving by each face.
@@ -93,44 +98,57 @@ func (s *solver) flows(times []float64) []float64 {
 	return out
 }
 
-// move shifts one face by what a fall of exp(−need) takes, and at most by the
-// box's width.
-func (s *solver) move(b Box, face int, need float64, visits []visit) bool {
-	sp, up := face/2, face%2 == 1
-	width := b.High[sp] - b.Low[sp] + 1
-	step := width
-	if slope := s.slope(sp, up, visits); slope > 0 {
-		step = int64(min(float64(width), 1.02*need/slope+2))
+// step is how far a face must move for every visit, at most the box's width.
+func (s *solver) step(face int, visits []visit) int64 {
+	faces := float64(2 * s.species)
+	furthest := 0.0
+	for _, v := range visits {
+		// the natural logarithm of the reduction needed
+		need := math.Log(s.flows(v.times)[face]) + math.Log(v.scale) + math.Log(2*faces/s.problem.truncation())
+		if need > 0 {
+			furthest = max(furthest, s.reach(face, v, need))
+		}
 	}
-	if up {
-		b.High[sp] += step
-		return true
-	}
-	before := b.Low[sp]
-	b.Low[sp] = max(0, before-step)
-	return b.Low[sp] != before
+	sp := face / 2
+	return int64(math.Ceil(min(furthest, float64(s.box.High[sp]-s.box.Low[sp]+1))))
 }
 
-// slope is how fast the occupied time falls towards a face, per molecule: the
-// slowest of the visits. Laws fall faster the further out, so it is taken near
-// the face, though not where the cut itself bends it.
-func (s *solver) slope(sp int, up bool, visits []visit) float64 {
-	low, high := s.box.Low[sp], s.box.High[sp]
-	width := high - low + 1
+// reach is how many molecules beyond a face the occupied time has fallen by
+// exp(−need): its logarithm is continued as a parabola, since laws fall faster the
+// further out.
+func (s *solver) reach(face int, v visit, need float64) float64 {
+	width := int(s.box.High[face/2] - s.box.Low[face/2] + 1)
 	near, far := width/40+1, width/12+2
-	if far >= width {
-		return 0
+	end := 2*far - near
+	if end >= width {
+		return float64(width)
 	}
-	if up {
-		near, far = width-1-near, width-1-far
+	m := s.profile(face, v)
+	gap := float64(far - near)
+	slope, inner := math.Log(m[far]/m[near])/gap, math.Log(m[end]/m[far])/gap
+	if !(slope > 0) {
+		return float64(width)
 	}
-	least := math.Inf(1)
-	for _, v := range visits {
-		m := make([]float64, width)
-		for i, node := range s.node {
-			m[int64(s.point(int(node))[sp])-low] += v.times[i]
+	bend := max(slope-inner, 0) / gap
+	slope += bend * (gap/2 + float64(near)) // at the face
+	if bend == 0 {
+		return 1 + 1.05*need/slope
+	}
+	return 1 + 1.05*(math.Sqrt(slope*slope+2*bend*need)-slope)/bend
+}
+
+// profile is the occupied time by distance from a face.
+func (s *solver) profile(face int, v visit) []float64 {
+	sp := face / 2
+	low, high := s.box.Low[sp], s.box.High[sp]
+	m := make([]float64, high-low+1)
+	for i, node := range s.node {
+		k := int64(s.point(int(node))[sp])
+		if face%2 == 1 {
+			m[high-k] += v.times[i]
+		} else {
+			m[k-low] += v.times[i]
 		}
-		least = min(least, math.Log(m[far]/m[near])/math.Abs(float64(far-near)))
 	}
-	return least
+	return m
 }

@@ -26,7 +26,7 @@ type system struct {
 func (s system) eliminate(t team) {
 	p := s.diagonal.rows
 	for k := 0; k < p; k += block {
-		e := panelElimination{system: s, team: t, low: k, high: min(k+block, p)}
+		e := panelElimination{s, t, k, min(k+block, p), t[0].triangles}
 		e.run()
 	}
 }
@@ -36,9 +36,14 @@ type panelElimination struct {
 	system
 	team
 	low, high int
-	lump      [block]float64
-	lower     [block * block]float64 // (I−L)⁻¹
-	upper     [block * block]float64 // (D−U)⁻¹
+	*triangles
+}
+
+// triangles is scratch memory for one panel.
+type triangles struct {
+	lump  [block]float64
+	lower [block * block]float64 // (I−L)⁻¹
+	upper [block * block]float64 // (D−U)⁻¹
 }
 
 func (e *panelElimination) run() {
@@ -66,18 +71,11 @@ func (e *panelElimination) run() {
 
 // sumRest lumps, for each pivot, the rates to everything later than the panel.
 func (e *panelElimination) sumRest() {
-	for i := e.low; i < e.high; i++ {
-		sum := e.exit[i]
-		for _, v := range e.diagonal.row(i)[e.high:] {
-			sum += v
-		}
-		if e.right.columns > 0 {
-			for _, v := range e.right.row(i) {
-				sum += v
-			}
-		}
-		e.lump[i-e.low] = sum
-	}
+	p, w := e.diagonal.rows, e.team[0]
+	lump := e.lump[:e.high-e.low]
+	copy(lump, e.exit[e.low:e.high])
+	w.addRight(lump, e.diagonal.part(e.low, e.high, e.high, p), w.ones(p))
+	w.addRight(lump, e.right.part(e.low, e.high, 0, e.right.columns), w.ones(e.right.columns))
 }
 
 // pivots eliminates within the panel.

@@ -34,15 +34,16 @@ func factor(ctx context.Context, p *plan, threads int, tell func(done float64)) 
 	f.remain = dense(m, m, make([]float64, m*m))
 	f.remainExit = make([]float64, m)
 	f.subtrees(func(w *worker, low, high int) {
+		store := f.store(low, high)
 		for k := low; k < high && ctx.Err() == nil; k++ {
-			f.front(k, team{w})
+			store = f.front(k, team{w}, store)
 		}
 	})
 	for _, k := range f.top {
 		if ctx.Err() != nil {
 			return nil, ctx.Err()
 		}
-		f.front(k, f.team)
+		f.front(k, f.team, f.store(k, k+1))
 	}
 	f.gatherKept()
 	return f, ctx.Err()
@@ -93,25 +94,36 @@ func (f *factors) subtrees(work func(w *worker, low, high int)) {
 	wait.Wait()
 }
 
-// front assembles and eliminates one front, and forms its remainder.
-func (f *factors) front(k int, t team) {
+// store gives zeroed memory for the factors of fronts low to high.
+func (f *factors) store(low, high int) []float64 {
+	n := 0
+	for k := low; k < high; k++ {
+		p, b := f.fronts[k].pivots(), len(f.fronts[k].border)
+		n += p*p + 2*p*b + p + b
+	}
+	return make([]float64, n)
+}
+
+// front assembles and eliminates one front, forms its remainder, and gives back
+// what is left of the store.
+func (f *factors) front(k int, t team, store []float64) []float64 {
 	fr := &f.fronts[k]
 	p, b := fr.pivots(), len(fr.border)
-	numbers := make([]float64, p*p+2*p*b+p+b)
 	cut := func(n int) []float64 {
-		out := numbers[:n:n]
-		numbers = numbers[n:]
+		out := store[:n:n]
+		store = store[n:]
 		return out
 	}
 	fr.diagonal, fr.right, fr.below, fr.exit = cut(p*p), cut(p*b), cut(b*p), cut(p+b)
-	fr.rest = make([]float64, b*b)
-	f.assemble(k)
+	fr.rest = t[0].zeros(b * b)
+	f.assemble(k, t[0])
 	s := fr.system()
 	s.eliminate(t)
 	t.multiplyAdd(dense(b, b, fr.rest), s.below, s.right)
 	if f.tell != nil && k%64 == 0 {
 		f.tell(float64(f.done.Add(64)) / float64(len(f.fronts)))
 	}
+	return store
 }
 
 func (fr *front) system() system {
@@ -120,7 +132,7 @@ func (fr *front) system() system {
 }
 
 // assemble fills a front with its own rates and its children's remainders.
-func (f *factors) assemble(k int) {
+func (f *factors) assemble(k int, w *worker) {
 	fr := &f.fronts[k]
 	p, b := fr.pivots(), len(fr.border)
 	for i := range p {
@@ -138,7 +150,10 @@ func (f *factors) assemble(k int) {
 		}
 	}
 	for _, c := range fr.children {
-		fr.take(&f.fronts[c])
+		child := &f.fronts[c]
+		fr.take(child)
+		w.giveBack(child.rest)
+		child.rest = nil
 	}
 }
 
@@ -168,7 +183,7 @@ func (fr *front) places(border []int32) []int {
 	return out
 }
 
-// take adds a child's remainder and drops it.
+// take adds a child's remainder.
 func (fr *front) take(child *front) {
 	at := fr.places(child.border)
 	p, b, n := fr.pivots(), len(fr.border), len(at)
@@ -185,7 +200,6 @@ func (fr *front) take(child *front) {
 		scatter(fr.diagonal[row*p:(row+1)*p], from[:inner], at[:inner], 0)
 		scatter(fr.right[row*b:(row+1)*b], from[inner:], at[inner:], p)
 	}
-	child.rest = nil
 }
 
 // scatter adds from to the places at of row, less offset.
