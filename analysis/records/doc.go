@@ -15,7 +15,7 @@
 //
 // A folder that exists is used if it is empty, or holds a record of the same design,
 // seed and command, which is then replaced. Any other is refused with what differs.
-// Two runs must not write to one folder at the same time.
+// So is a folder that another process is writing to, where the file system can lock.
 //
 // # Bytes
 //

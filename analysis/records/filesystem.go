@@ -25,6 +25,7 @@ type fileSystem interface {
 	List(dir string) ([]string, error)
 	Read(name string) ([]byte, error)
 	Create(name string) (file, error) // fails if name exists
+	Busy(name string) bool            // a living process is writing the file
 	Rename(from, to string) error
 	Remove(name string) error
 	SyncDir(dir string) error
@@ -59,7 +60,17 @@ func (disk) Create(name string) (file, error) {
 	if err != nil {
 		return nil, err
 	}
+	lock(f)
 	return f, nil
+}
+
+func (disk) Busy(name string) bool {
+	f, err := os.Open(name)
+	if err != nil {
+		return false
+	}
+	defer func() { _ = f.Close() }() // opened for reading
+	return locked(f)
 }
 
 func (disk) Rename(from, to string) error { return os.Rename(from, to) }

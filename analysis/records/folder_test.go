@@ -128,6 +128,32 @@ func TestRefuseOccupied(t *testing.T) {
 	}
 }
 
+// A folder that another run is writing to is refused, and that run goes on. A second
+// opening of a file stands for the other process: locks belong to the opening.
+func TestRefuseBusy(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "run")
+	f, err := Create(dir, marsh())
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, err := f.Table(newEverything().Table); err != nil {
+		t.Fatal(err)
+	}
+	if names := contents(t, dir); len(names) != 1 {
+		t.Fatalf("%v", names)
+	}
+	if !f.fs.Busy(f.temp("everything")) {
+		t.Skip("files cannot be locked here")
+	}
+	var occupied *OccupiedError
+	if _, err := Create(dir, marsh()); !errors.As(err, &occupied) || !strings.Contains(err.Error(), "another run") {
+		t.Errorf("the folder is taken twice: %v", err)
+	}
+	if err := f.Finish(Outcome{}); err != nil {
+		t.Error(err)
+	}
+}
+
 // A manifest cannot make the program remove a file elsewhere.
 func TestManifestCannotReachOutside(t *testing.T) {
 	base := t.TempDir()

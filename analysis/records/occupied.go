@@ -55,6 +55,11 @@ func (f *Folder) survey() error {
 		return err
 	}
 	for _, name := range left {
+		if f.fs.Busy(f.path(name)) {
+			return &OccupiedError{f.dir, name, "is being written by another run"}
+		}
+	}
+	for _, name := range left {
 		if err := f.fs.Remove(f.path(name)); err != nil {
 			return &WriteError{f.path(name), "remove", err}
 		}
