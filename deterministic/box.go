@@ -90,8 +90,8 @@ func (b *box) tighten(s *system, c *class) bool {
 		gained = b.lowerByBalance(s, i) || gained
 		for r := range s.changes {
 			if reads(s.reads[r], i) {
-				gained = b.lower(s, r, i, rates[r].hi) || gained
-				gained = b.raise(s, r, i, rates[r].lo) || gained
+				gained = b.lower(s, r, i, rates[r].Hi) || gained
+				gained = b.raise(s, r, i, rates[r].Lo) || gained
 			}
 		}
 	}
@@ -107,20 +107,21 @@ func reads(list []int, i int) bool {
 	return false
 }
 
-func (b *box) intervals() []interval {
-	out := make([]interval, len(b.high))
+func (b *box) intervals() []span {
+	out := make([]span, len(b.high))
 	for i := range out {
-		out[i] = interval{b.low[i], b.high[i]}
+		out[i] = span{Lo: b.low[i], Hi: b.high[i]}
 	}
 	return out
 }
 
 // rates encloses every reaction's rate over the box; rates are not negative.
-func (b *box) rates(s *system) []interval {
+func (b *box) rates(s *system) []span {
 	over := b.intervals()
-	out := make([]interval, len(s.changes))
+	out := make([]span, len(s.changes))
 	for r := range out {
-		out[r] = b.encloser.enclose(s.net.Reactions[r].Law, over).meet(interval{0, math.Inf(1)})
+		v := b.encloser.enclose(s.net.Reactions[r].Law, over)
+		out[r] = span{Lo: max(v.Lo, 0), Hi: max(v.Hi, 0)}
 	}
 	return out
 }
@@ -131,8 +132,8 @@ func (b *box) lower(s *system, r, i int, most float64) bool {
 	if math.IsInf(most, 1) {
 		return false
 	}
-	return b.lowerWhere(s, i, func(over []interval) bool {
-		return b.encloser.enclose(s.net.Reactions[r].Law, over).lo > most
+	return b.lowerWhere(s, i, func(over []span) bool {
+		return b.encloser.enclose(s.net.Reactions[r].Law, over).Lo > most
 	})
 }
 
@@ -140,18 +141,18 @@ func (b *box) lower(s *system, r, i int, most float64) bool {
 // away, and less is made, whatever the other species do.
 func (b *box) lowerByBalance(s *system, i int) bool {
 	q := b.balance[i]
-	return q.ratio != nil && b.lowerWhere(s, i, func(over []interval) bool {
-		return b.encloser.enclose(q.lost, over).lo > 0 && q.ratio.enclose(b.encloser, over).hi < 1
+	return q.ratio != nil && b.lowerWhere(s, i, func(over []span) bool {
+		return b.encloser.enclose(q.lost, over).Lo > 0 && q.ratio.enclose(b.encloser, over).Hi < 1
 	})
 }
 
 // lowerWhere moves the upper end of species i down to the least amount from which
 // on out holds: that no resting state is there. out must hold for any part of an
 // interval that it holds for. It is true where that gained a tenth.
-func (b *box) lowerWhere(s *system, i int, out func([]interval) bool) bool {
+func (b *box) lowerWhere(s *system, i int, out func([]span) bool) bool {
 	over := b.intervals()
 	exceeds := func(u float64) bool {
-		over[i] = interval{u, max(u, b.high[i])}
+		over[i] = span{Lo: u, Hi: max(u, b.high[i])}
 		return out(over)
 	}
 	top := min(b.high[i], huge)
@@ -178,8 +179,8 @@ func (b *box) raise(s *system, r, i int, atLeast float64) bool {
 	}
 	over := b.intervals()
 	misses := func(u float64) bool {
-		over[i] = interval{b.low[i], u}
-		return b.encloser.enclose(s.net.Reactions[r].Law, over).hi < atLeast
+		over[i] = span{Lo: b.low[i], Hi: u}
+		return b.encloser.enclose(s.net.Reactions[r].Law, over).Hi < atLeast
 	}
 	bottom := max(b.low[i], tiny)
 	if !misses(bottom * 1.1) {
@@ -248,32 +249,32 @@ const (
 const mostPrograms = 40
 
 // balanceRates tightens bounds on rates by N v = 0.
-func balanceRates(s *system, c *class, rates []interval) {
+func balanceRates(s *system, c *class, rates []span) {
 	p, ok := balanceProgram(s, c, rates)
 	if !ok {
 		return
 	}
 	goal := make([]float64, len(rates))
 	for r, v := range rates {
-		if len(rates) > mostPrograms && !math.IsInf(v.hi, 1) {
+		if len(rates) > mostPrograms && !math.IsInf(v.Hi, 1) {
 			continue
 		}
 		goal[r] = 1
-		most := v.lo + p.maximise(goal)
+		most := v.Lo + p.maximise(goal)
 		goal[r] = -1
-		least := v.lo - p.maximise(goal)
+		least := v.Lo - p.maximise(goal)
 		goal[r] = 0
-		rates[r].hi = min(v.hi, most*(1+margin))
-		rates[r].lo = max(v.lo, least-margin*most)
+		rates[r].Hi = min(v.Hi, most*(1+margin))
+		rates[r].Lo = max(v.Lo, least-margin*most)
 	}
 }
 
 // balanceProgram is N (lo + w) = 0 over the independent species, w ≤ hi − lo,
 // w ≥ 0.
-func balanceProgram(s *system, c *class, rates []interval) (*program, bool) {
+func balanceProgram(s *system, c *class, rates []span) (*program, bool) {
 	var bounded []int
 	for r, v := range rates {
-		if !math.IsInf(v.hi, 1) {
+		if !math.IsInf(v.Hi, 1) {
 			bounded = append(bounded, r)
 		}
 	}
@@ -289,14 +290,14 @@ func balanceProgram(s *system, c *class, rates []interval) (*program, bool) {
 		for _, ch := range list {
 			if k := position[ch.species] - 1; k >= 0 {
 				a[k][r] += ch.amount
-				b[k] -= ch.amount * rates[r].lo
+				b[k] -= ch.amount * rates[r].Lo
 			}
 		}
 	}
 	for k, r := range bounded {
 		row := make([]float64, width)
 		row[r], row[len(rates)+k] = 1, 1
-		a, b = append(a, row), append(b, rates[r].hi-rates[r].lo)
+		a, b = append(a, row), append(b, rates[r].Hi-rates[r].Lo)
 	}
 	return newProgram(a, b)
 }

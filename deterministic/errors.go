@@ -6,8 +6,9 @@ import (
 	"strings"
 )
 
-// ErrNoRestingState tells that no stable resting state was found.
-var ErrNoRestingState = errors.New("no stable resting state: amounts do not come to rest anywhere on the conserved totals of the start; check the signs of the laws, or whether the design oscillates")
+// ErrNoRestingState tells that no stable resting state was found; errors that wrap
+// it say what was found instead.
+var ErrNoRestingState = errors.New("no stable resting state")
 
 // A OneStateError tells that a design has one stable state only.
 type OneStateError struct {

@@ -1,6 +1,7 @@
 package deterministic
 
 import (
+	"math"
 	"slices"
 
 	"holdfast/model"
@@ -24,22 +25,28 @@ type face struct {
 // of which no reaction makes any while they are all absent (siphons; Angeli, De
 // Leenheer, Sontag, Math. Biosci. 210 (2007) 598), each enlarged by the species
 // that then are lost and not made.
-func (s *system) faces(totals []model.Total) (out []face, complete bool) {
-	probe := newProbe(s)
-	seen := map[string]bool{}
+func (s *system) faces(totals []model.Total, high []float64) (out []face, complete bool) {
+	probe := newProbe(s, high)
+	seen, kept := map[string]bool{}, map[string]bool{}
 	queue := [][]bool{make([]bool, s.n)}
 	for len(queue) > 0 && len(seen) < maxFaces {
-		frozen, ok := probe.starve(queue[0])
+		siphon := queue[0]
 		queue = queue[1:]
-		key := faceKey(frozen)
-		if !ok || seen[key] {
+		if seen[faceKey(siphon)] {
 			continue
 		}
-		seen[key] = true
+		seen[faceKey(siphon)] = true
+		queue = append(queue, probe.extensions(siphon)...)
+		frozen, ok := probe.starve(siphon)
+		key := faceKey(frozen)
+		if !ok || kept[key] {
+			continue
+		}
+		kept[key] = true
 		if f, ok := s.newFace(probe, totals, frozen); ok {
 			out = append(out, f)
 		}
-		queue = append(queue, probe.extensions(frozen)...)
+		queue = append(queue, frozen)
 	}
 	slices.SortStableFunc(out, func(a, b face) int { return countTrue(a.frozen) - countTrue(b.frozen) })
 	return out, len(queue) == 0
@@ -56,18 +63,19 @@ func (s *system) newFace(p *probe, totals []model.Total, frozen []bool) (face, b
 }
 
 // probe tells which reactions run when some species are absent, by their rates
-// at two points with all other amounts positive and in no special relation.
+// at points with all other amounts positive, from a thousandth of the box's end
+// upwards and in no special relation.
 type probe struct {
 	s      *system
-	points [2][]float64
+	points [12][]float64
 }
 
-func newProbe(s *system) *probe {
+func newProbe(s *system, high []float64) *probe {
 	p := &probe{s: s}
 	for k := range p.points {
 		p.points[k] = make([]float64, s.n)
 		for i := range s.n {
-			p.points[k][i] = 0.5 + halton(k+1, i) // any positive amounts serve
+			p.points[k][i] = max(high[i], least/s.unit[i]) * math.Pow(1000, halton(k+1, i)-float64(k%2))
 		}
 	}
 	return p

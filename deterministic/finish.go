@@ -83,7 +83,7 @@ func (m *Map) stateWarnings() {
 		case !s.Kind.Stable():
 		case s.Absorbing && s.Molecules[r] > 0:
 			m.warn("%s has less than half a molecule, and from its lattice point nothing comes back: %s = %.3g molecules", s.Name, name, s.Molecules[r])
-		case !s.Absorbing && s.Molecules[r] < fewMolecules:
+		case s.Molecules[r] > 0 && s.Molecules[r] < fewMolecules:
 			m.warn("%s has fewer than %d molecules of %s (%.3g): rate equations and linear noise are rough there", s.Name, fewMolecules, name, s.Molecules[r])
 		}
 	}
@@ -130,14 +130,15 @@ func (m *Map) searchWarnings() {
 	if m.Search.Checked && !m.Search.Balanced {
 		m.warn("the states' indices do not add up: at least one resting state was missed")
 	}
-	m.warn("%v", m.Search)
+	if !m.Search.Scanned {
+		m.warn("%v", m.Search)
+	}
 }
 
 // String says how the list of states was found.
 func (s Search) String() string {
-	how := fmt.Sprintf("multi-start, %d starts and %d flows", s.Starts, s.Flows)
 	if s.Scanned {
-		how = fmt.Sprintf("scan of %d points", s.Starts)
+		return fmt.Sprintf("the class has one dimension and was searched along it without gaps, in %d pieces", s.Starts)
 	}
-	return "completeness of the list of states is not proved here: " + how
+	return fmt.Sprintf("completeness of the list of states is not proved here: multi-start, %d starts and %d flows", s.Starts, s.Flows)
 }

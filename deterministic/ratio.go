@@ -6,6 +6,7 @@ import (
 	"strconv"
 	"strings"
 
+	"holdfast/deterministic/proof/interval"
 	"holdfast/model"
 )
 
@@ -44,55 +45,59 @@ func newRatio(top, bottom *model.Node) *ratio {
 // of the bottom's terms each divided by it, in which powers of the same factor
 // cancel; and where every term of the top has its like below, the whole lies
 // between the least and the largest quotient of coefficients.
-func (q *ratio) enclose(e *encloser, over []interval) interval {
+func (q *ratio) enclose(e *encloser, over []span) span {
 	for _, list := range [][]monomial{q.top, q.bottom} {
 		for _, m := range list {
 			for _, f := range m.factors {
-				if !(e.enclose(f.node, over).lo >= 0) {
-					return everything
+				if !(e.enclose(f.node, over).Lo >= 0) {
+					return interval.Whole()
 				}
 			}
 		}
 	}
-	sum := exactly(0)
+	sum := interval.Point(0)
 	for _, t := range q.top {
-		inverse := exactly(0)
+		inverse := interval.Point(0)
 		for _, b := range q.bottom {
-			inverse = inverse.add(e.quotient(b, t, over))
+			inverse = inverse.Add(e.quotient(b, t, over))
 		}
-		sum = sum.add(positive(inverse.inverse()))
+		sum = sum.Add(positive(interval.Point(1).Div(inverse)))
 	}
-	return positive(sum).meet(q.coefficients())
+	return positive(sum).Meet(q.coefficients())
 }
 
-func positive(a interval) interval { return interval{max(a.lo, 0), a.hi} }
+func positive(a span) span { return span{Lo: max(a.Lo, 0), Hi: a.Hi} }
 
 // coefficients bounds the ratio by the quotients of like terms' coefficients.
-func (q *ratio) coefficients() interval {
-	out := interval{math.Inf(1), 0}
+func (q *ratio) coefficients() span {
+	out := interval.Empty()
 	matched := 0
 	for _, t := range q.top {
 		k := slices.IndexFunc(q.bottom, func(b monomial) bool { return b.key == t.key })
 		if k < 0 {
-			out.hi = math.Inf(1)
-			continue
+			return span{Lo: 0, Hi: math.Inf(1)}
 		}
 		matched++
 		v := t.coefficient / q.bottom[k].coefficient
-		out = interval{min(out.lo, v*(1-4*epsilon)), max(out.hi, v*(1+4*epsilon))}
+		out = out.Hull(about(v))
 	}
 	if matched < len(q.bottom) {
-		out.lo = 0
+		return out.Hull(interval.Point(0))
 	}
 	return out
 }
 
+// about holds a coefficient that a few roundings have gone into.
+func about(c float64) span {
+	return span{Lo: c * (1 - 64*epsilon), Hi: c * (1 + 64*epsilon)}
+}
+
 // quotient encloses a/b.
-func (e *encloser) quotient(a, b monomial, over []interval) interval {
+func (e *encloser) quotient(a, b monomial, over []span) span {
 	c := a.coefficient / b.coefficient
-	out := outward(c, c, 1)
+	out := about(c)
 	for _, f := range multiply(a.factors, b.factors, -1) {
-		out = out.mul(e.enclose(f.node, over).power(f.exponent))
+		out = out.Mul(e.enclose(f.node, over).Pow(interval.Point(f.exponent)))
 	}
 	return positive(out)
 }

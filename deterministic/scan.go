@@ -56,6 +56,10 @@ func (f *finder) scanLine(c *class) {
 	f.starts += v.boxes
 	f.scanned = f.scanned && !v.spent
 	for _, p := range v.pieces {
+		if !p.monotone && p.to-p.from > 1e-3*p.to && f.flat(l, p) {
+			f.drift(c, l.at(middle(p.from, p.to), x))
+			continue
+		}
 		a, b := rate(p.from), rate(p.to)
 		switch {
 		case a == 0:

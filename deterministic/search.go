@@ -22,6 +22,7 @@ type finder struct {
 	ranAway    []int // species, by flow that ran away
 	unsettled  int
 	scanned    bool // every line was searched without a gap
+	drifting   *ContinuumError
 }
 
 // candidate is a resting state with its type.
@@ -140,6 +141,13 @@ func (f *finder) multiStart(c *class) {
 			}
 		}
 		f.refine(c)
+		if target > leastStarts && !f.indexBalanced() {
+			f.between(c)
+		}
+		if f.many(c) {
+			f.drift(c, nil)
+			return
+		}
 		if f.ctx.Err() != nil || next >= f.most() || f.enough(c, hits) {
 			return
 		}
@@ -277,6 +285,42 @@ func (f *finder) refine(c *class) {
 		}
 		r.probed = true
 		f.probeAlong(c, r)
+	}
+}
+
+// bisections halves the way between two states to a millionth.
+const bisections = 20
+
+// between looks for the states on the boundaries between basins: along the straight
+// way from each stable state to each other it finds where the flow's end changes,
+// by bisection; the flows from near there pass, and take up, what lies on the
+// boundary.
+func (f *finder) between(c *class) {
+	var stable []*candidate
+	for _, r := range f.found {
+		if r.kind.Stable() {
+			stable = append(stable, r)
+		}
+	}
+	for i, a := range stable {
+		for _, b := range stable[:i] {
+			low, high := 0.0, 1.0
+			for range bisections {
+				s := (low + high) / 2
+				x := make([]float64, c.n)
+				for k := range x {
+					x[k] = (1-s)*a.x[k] + s*b.x[k]
+				}
+				if f.ctx.Err() != nil {
+					return
+				}
+				if at := f.flowToRest(f.whole, x); at != nil && at.same(a.root) {
+					low = s
+				} else {
+					high = s
+				}
+			}
+		}
 	}
 }
 

@@ -20,13 +20,15 @@ func (m *Map) search(ctx context.Context, o Options) (*finder, error) {
 		return nil, err
 	}
 	m.Low, m.High, m.Basis = b.low, b.high, b.basis
-	list, complete := s.faces(m.Totals)
+	list, complete := s.faces(m.Totals, f.high)
 	if !complete {
 		m.warn("faces where species are absent: only the first %d were searched", maxFaces)
 	}
 	for _, face := range slices.Backward(list) { // the inside last: its search counts the rest
 		f.searchFace(face.class)
+		f.loosen(face)
 	}
+	f.farFlows()
 	if err := ctx.Err(); err != nil {
 		return nil, err
 	}
@@ -141,16 +143,39 @@ func countKind(list []State, is func(Kind) bool) int {
 	return n
 }
 
-// noStates explains a search that found no stable state.
+// noStates explains a search that found no stable state, and warns of what it met
+// besides stable states.
 func (m *Map) noStates(f *finder) error {
 	if countKind(m.States, Kind.Stable) > 0 {
+		m.warnBeyond(f)
 		return nil
 	}
-	if len(f.ranAway) > 0 {
+	degenerate := countKind(m.States, func(k Kind) bool { return k == Degenerate })
+	switch {
+	case f.drifting != nil:
+		return f.drifting
+	case len(f.ranAway) > 0:
 		i := f.ranAway[0]
 		return &RunawayError{m.Network.Species[i].Name, f.limit[i]}
+	case degenerate > 0:
+		return fmt.Errorf("%w: the design sits on a fold or branch point, at %v; move a constant a little", ErrNoRestingState, m.States[len(m.States)-1].Amounts)
+	case f.unsettled > 0:
+		return fmt.Errorf("%w: amounts keep moving, as in an oscillator", ErrNoRestingState)
 	}
-	return ErrNoRestingState
+	return fmt.Errorf("%w on the conserved totals of the start; check the laws", ErrNoRestingState)
+}
+
+// warnBeyond warns of flows that ran away or kept moving, and of continua.
+func (m *Map) warnBeyond(f *finder) {
+	if len(f.ranAway) > 0 {
+		m.warn("from large amounts %s grows without bound: a run that gets there will not come back", m.Network.Species[f.ranAway[0]].Name)
+	}
+	if f.unsettled > 0 {
+		m.warn("some flows keep moving, as in an oscillator: dwell times from such a motion are not covered by the resting states")
+	}
+	if f.drifting != nil {
+		m.warn("%v", f.drifting)
+	}
 }
 
 // speciesNames lists the names in order.

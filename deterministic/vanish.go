@@ -3,6 +3,8 @@ package deterministic
 import (
 	"math"
 	"slices"
+
+	"holdfast/deterministic/proof/interval"
 )
 
 // piece is a stretch of a line. Where monotone, the rate along the line rises or
@@ -47,8 +49,8 @@ func (v *vanisher) run() {
 		value, slope := v.enclose(p)
 		mid := middle(p.from, p.to)
 		switch {
-		case value.lo > 0 || value.hi < 0:
-		case slope.lo > 0 || slope.hi < 0:
+		case value.Lo > 0 || value.Hi < 0:
+		case slope.Lo > 0 || slope.Hi < 0:
 			p.monotone = true
 			v.pieces = append(v.pieces, p)
 		case p.to-p.from <= thinnest*max(abs(p.from), abs(p.to)) || mid <= p.from || mid >= p.to:
@@ -88,27 +90,27 @@ func (v *vanisher) join() {
 
 // enclose encloses the rate of the independent species over a piece and its slope
 // along the line, the rate also by its middle value and the slope.
-func (v *vanisher) enclose(p piece) (value, slope interval) {
-	whole := v.over(interval{p.from, p.to})
+func (v *vanisher) enclose(p piece) (value, slope span) {
+	whole := v.over(span{Lo: p.from, Hi: p.to})
 	value, slope = v.rate(whole)
 	mid := p.from + (p.to-p.from)/2
-	center, _ := v.rate(v.over(exactly(mid)))
-	away := interval{p.from, p.to}.add(exactly(-mid))
-	centered := center.add(slope.mul(away))
-	return value.meet(centered), slope
+	center, _ := v.rate(v.over(interval.Point(mid)))
+	away := span{Lo: p.from, Hi: p.to}.Add(interval.Point(-mid))
+	centered := center.Add(slope.Mul(away))
+	return value.Meet(centered), slope
 }
 
 // over gives the box of amounts along a piece.
-func (v *vanisher) over(t interval) []interval {
-	out := make([]interval, v.l.c.n)
+func (v *vanisher) over(t span) []span {
+	out := make([]span, v.l.c.n)
 	for i, d := range v.l.c.link {
-		x := exactly(v.l.base[i]).add(exactly(d).mul(t))
-		out[i] = interval{max(x.lo, 0), max(x.hi, 0)}
+		x := interval.Point(v.l.base[i]).Add(interval.Point(d).Mul(t))
+		out[i] = span{Lo: max(x.Lo, 0), Hi: max(x.Hi, 0)}
 	}
 	return out
 }
 
-func (v *vanisher) rate(over []interval) (value, slope interval) {
+func (v *vanisher) rate(over []span) (value, slope span) {
 	i := v.l.c.independent[0]
 	for r, list := range v.s.changes {
 		for _, c := range list {
@@ -116,8 +118,8 @@ func (v *vanisher) rate(over []interval) (value, slope interval) {
 				continue
 			}
 			a, d := v.e.slope(v.s.net.Reactions[r].Law, over, v.l.c.link)
-			value = value.add(exactly(c.amount).mul(a))
-			slope = slope.add(exactly(c.amount).mul(d))
+			value = value.Add(interval.Point(c.amount).Mul(a))
+			slope = slope.Add(interval.Point(c.amount).Mul(d))
 		}
 	}
 	return value, slope
