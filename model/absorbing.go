@@ -61,8 +61,8 @@ type siphonSearch struct {
 	budget int
 }
 
-// searchBudget bounds the steps of the search.
-const searchBudget = 20_000
+// searchBudget bounds the work of a search: steps times species.
+const searchBudget = 20_000_000
 
 // newSiphonSearch gathers what the search needs of the network.
 func newSiphonSearch(n *Network) *siphonSearch {
@@ -113,7 +113,7 @@ func (n *Network) stopped(r int, empty []bool) bool {
 	if re.MassAction {
 		return re.Coefficient == 0 || slices.ContainsFunc(re.Reactants, gone)
 	}
-	return re.Law.vanishes(empty)
+	return re.Law.vanishes(func(i int) bool { return empty[i] })
 }
 
 // frozen lists the minimal sets that stop every reaction.
@@ -160,7 +160,7 @@ func (s *siphonSearch) grow(z []bool, must func([]bool) []int, found *[][]bool, 
 		return
 	}
 	seen[key] = true
-	s.budget--
+	s.budget -= len(z)
 	running := -1
 	for _, r := range must(z) {
 		if !s.net.stopped(r, z) {

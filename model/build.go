@@ -72,7 +72,8 @@ func (n *Network) setConstants(set map[string]float64) error {
 	for _, name := range slices.Sorted(maps.Keys(set)) {
 		v, i := set[name], n.ConstantIndex(name)
 		if i < 0 {
-			return fmt.Errorf("no constant is called %q: %s", name, nearHint(name, n.constantNames()))
+			_, names := n.nameLists()
+			return fmt.Errorf("no constant is called %q: %s", name, nearHint(name, names))
 		}
 		if v < 0 || math.IsNaN(v) || math.IsInf(v, 0) {
 			return fmt.Errorf("%s = %v: a constant must be a finite number, not below 0", name, v)
@@ -96,20 +97,15 @@ func (n *Network) checkStarts() error {
 	return nil
 }
 
-func (n *Network) constantNames() []string {
-	out := make([]string, len(n.Constants))
-	for i, c := range n.Constants {
-		out[i] = c.Name
+// nameLists gives the names of the species and of the constants, by index.
+func (n *Network) nameLists() (species, constants []string) {
+	for _, s := range n.Species {
+		species = append(species, s.Name)
 	}
-	return out
-}
-
-func (n *Network) speciesNames() []string {
-	out := make([]string, len(n.Species))
-	for i, s := range n.Species {
-		out[i] = s.Name
+	for _, c := range n.Constants {
+		constants = append(constants, c.Name)
 	}
-	return out
+	return species, constants
 }
 
 func (n *Network) bindReaction(d DraftReaction) (Reaction, error) {
@@ -131,7 +127,9 @@ func (n *Network) bindReaction(d DraftReaction) (Reaction, error) {
 	}
 	r.Law = r.Free.Bind(n.values)
 	r.program = Compile(r.Law)
-	r.reads = r.Law.Reads()
+	r.lawReads = r.Law.Reads()
+	r.local = r.program.renumbered(r.lawReads)
+	r.reads = slices.Clone(r.lawReads)
 	for _, t := range d.Uses {
 		if !slices.Contains(r.reads, t.Species) {
 			r.reads = append(r.reads, t.Species)

@@ -1,6 +1,9 @@
 package model
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // Compile makes a program of a tree whose constants are bound. A sub-tree that
 // occurs several times is evaluated once.
@@ -13,6 +16,20 @@ func Compile(n *Node) *Program {
 		}
 	}
 	return &Program{steps: c.steps, depth: c.most + c.kept}
+}
+
+// renumbered gives the same program over fewer species: reads, in their order.
+func (p *Program) renumbered(reads []int) *Program {
+	out := &Program{steps: slices.Clone(p.steps), depth: p.depth}
+	for i := range out.steps {
+		s := &out.steps[i]
+		switch s.code {
+		case loadX, addX, subX, mulX, divX:
+			at, _ := slices.BinarySearch(reads, int(s.index))
+			s.index = int32(at)
+		}
+	}
+	return out
 }
 
 // compiler gathers the steps of a program.

@@ -113,10 +113,11 @@ func (d *description) constants() {
 func (d *description) reactions() {
 	n := d.net
 	start := n.StartCounts()
+	species, constants := n.nameLists()
 	rows := [][]string{{"", "name", "change", "law", "propensity at the start"}}
 	for r := range n.Reactions {
 		a := number(n.Propensity(r, start)) + " per " + n.TimeUnit
-		rows = append(rows, []string{strconv.Itoa(r + 1), n.title(r), n.Equation(r), n.LawText(r), a})
+		rows = append(rows, []string{strconv.Itoa(r + 1), n.title(r), n.Equation(r), n.Reactions[r].Free.Format(species, constants), a})
 	}
 	d.heading("Reactions", len(n.Reactions))
 	d.table(rows)

@@ -60,7 +60,7 @@ func (d *designer) numberOrFormula(e *tomlEntry, s span, constantsOnly bool) *No
 func (d *designer) formula(v *tomlValue, constantsOnly bool) *Node {
 	offsets := v.runeOffsets()
 	at := func(rune int) int { return offsets[min(max(rune, 0), len(offsets)-1)] }
-	p := lawParser{text: v.text, names: d.names, constantsOnly: constantsOnly, lost: d.isLost, at: at}
+	p := lawParser{text: v.text, names: d.names, constantsOnly: constantsOnly, lost: d.isLost, hinter: &d.hinter, at: at}
 	tree := p.parse()
 	for _, e := range p.errors {
 		d.errorf(at(e.rune), e.hint, "%s", e.message)

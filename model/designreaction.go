@@ -173,9 +173,9 @@ func (d *designer) species(e *tomlEntry) *namedThing {
 		thing.used = true
 		return thing
 	case thing != nil:
-		d.errorf(e.at, allowed(d.names.of(speciesName)), "%q is a constant, not a species", e.key)
+		d.errorf(e.at, d.hinter.list(d.names.species), "%q is a constant, not a species", e.key)
 	case !d.isLost(e.key):
-		d.errorf(e.at, nearHint(e.key, d.names.of(speciesName)), "no species is called %q", e.key)
+		d.errorf(e.at, d.hinter.near(e.key, d.names.species), "no species is called %q", e.key)
 	}
 	return nil
 }

@@ -43,5 +43,6 @@ func (n *Network) term(t Term) string {
 
 // LawText writes the law of reaction r with its constants named.
 func (n *Network) LawText(r int) string {
-	return n.Reactions[r].Free.Format(n.speciesNames(), n.constantNames())
+	species, constants := n.nameLists()
+	return n.Reactions[r].Free.Format(species, constants)
 }

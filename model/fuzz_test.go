@@ -68,7 +68,7 @@ func FuzzLaw(f *testing.F) {
 		f.Add(text)
 	}
 	f.Fuzz(func(t *testing.T, text string) {
-		p := lawParser{text: text, names: testNames()}
+		p := lawParser{text: text, names: testNames(), hinter: &hinter{}}
 		tree := p.parse()
 		if (tree == nil) != (len(p.errors) > 0) {
 			t.Fatalf("tree %v with errors %v", tree, p.errors)
@@ -84,7 +84,7 @@ func FuzzLaw(f *testing.F) {
 		}
 		bound.Gradient(x, nil, make([]float64, 3), nil)
 		written := tree.Format([]string{"x", "y", "z"}, []string{"a", "b"})
-		again := lawParser{text: written, names: testNames()}
+		again := lawParser{text: written, names: testNames(), hinter: &hinter{}}
 		if again.parse() == nil && len(written) < longestFormula {
 			t.Fatalf("%q is written %q, which does not parse: %v", text, written, again.errors)
 		}

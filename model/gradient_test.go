@@ -9,7 +9,7 @@ import (
 // law parses a formula over the species x, y, z and the constants a, b.
 func law(t *testing.T, text string) *Node {
 	t.Helper()
-	p := lawParser{text: text, names: testNames()}
+	p := lawParser{text: text, names: testNames(), hinter: &hinter{}}
 	tree := p.parse()
 	if tree == nil {
 		t.Fatalf("%s: %+v", text, p.errors)

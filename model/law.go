@@ -21,6 +21,7 @@ type lawParser struct {
 	// lost tells whether an unknown name may have been lost to another error in
 	// the file, and is not to be reported.
 	lost   func(name string) bool
+	hinter *hinter
 	errors []lawError
 	at     func(rune int) int // byte offset in the file of a rune of the formula
 }
@@ -84,7 +85,7 @@ func (p *lawParser) checkName(t lexer.Token) *lawError {
 		return p.unknown(t)
 	case thing.kind == speciesName && p.constantsOnly:
 		thing.used = true
-		return &lawError{t.From, fmt.Sprintf("%q is a species; only constants can stand in this formula", t.Value), allowed(p.names.of(constantName))}
+		return &lawError{t.From, fmt.Sprintf("%q is a species; only constants can stand in this formula", t.Value), p.hinter.list(p.names.constants)}
 	}
 	thing.used = true
 	return nil
@@ -98,9 +99,9 @@ func (p *lawParser) unknown(t lexer.Token) *lawError {
 		return nil
 	}
 	if p.constantsOnly {
-		return &lawError{t.From, fmt.Sprintf("no constant is called %q", t.Value), nearHint(t.Value, p.names.of(constantName))}
+		return &lawError{t.From, fmt.Sprintf("no constant is called %q", t.Value), p.hinter.near(t.Value, p.names.constants)}
 	}
-	return &lawError{t.From, fmt.Sprintf("no species or constant is called %q", t.Value), nearHint(t.Value, p.names.all())}
+	return &lawError{t.From, fmt.Sprintf("no species or constant is called %q", t.Value), p.hinter.near(t.Value, p.names.all)}
 }
 
 // grammarError words an error of the library's parser by the token it stopped at.

@@ -152,7 +152,7 @@ func TestLawRefusals(t *testing.T) {
 		{"x" + strings.Repeat("+x", 6000), 0, "more than 10000 parts"},
 		{strings.Repeat(" ", 100_001) + "x", 0, "longer than 100000"},
 	} {
-		p := lawParser{text: c.text, names: testNames()}
+		p := lawParser{text: c.text, names: testNames(), hinter: &hinter{}}
 		tree := p.parse()
 		if tree != nil || len(p.errors) == 0 {
 			t.Errorf("%.60q was accepted", c.text)
@@ -171,7 +171,7 @@ func TestLawRefusals(t *testing.T) {
 func TestLawForeignNames(t *testing.T) {
 	for _, name := range []string{"count", "sum", "len", "now", "filter", "map", "all", "reduce", "int", "float", "e", "pi", "_", "β", "blåbær"} {
 		names := nameTable{name: {kind: speciesName}}
-		p := lawParser{text: fmt.Sprintf("2*%s/(1 + %s)", name, name), names: names}
+		p := lawParser{text: fmt.Sprintf("2*%s/(1 + %s)", name, name), names: names, hinter: &hinter{}}
 		tree := p.parse()
 		if tree == nil {
 			t.Errorf("%s: %v", name, p.errors)
@@ -185,7 +185,7 @@ func TestLawForeignNames(t *testing.T) {
 
 // TestLawSeveralErrors checks that one formula reports all it can.
 func TestLawSeveralErrors(t *testing.T) {
-	p := lawParser{text: "w + exq(v) + hill(x) + 2 ** y", names: testNames()}
+	p := lawParser{text: "w + exq(v) + hill(x) + 2 ** y", names: testNames(), hinter: &hinter{}}
 	p.parse()
 	var at []int
 	for _, e := range p.errors {
@@ -194,7 +194,7 @@ func TestLawSeveralErrors(t *testing.T) {
 	if fmt.Sprint(at) != "[25 0 4 8]" {
 		t.Errorf("errors at %v: %+v", at, p.errors)
 	}
-	p = lawParser{text: "w + hill(x) + v", names: testNames()}
+	p = lawParser{text: "w + hill(x) + v", names: testNames(), hinter: &hinter{}}
 	p.parse()
 	if len(p.errors) != 3 {
 		t.Errorf("%d errors, want 3: %+v", len(p.errors), p.errors)

@@ -88,6 +88,10 @@ func (t nameTable) of(kind nameKind) []string {
 	return out
 }
 
+func (t nameTable) species() []string { return t.of(speciesName) }
+
+func (t nameTable) constants() []string { return t.of(constantName) }
+
 // all lists the names of both kinds.
 func (t nameTable) all() []string {
 	return append(t.of(speciesName), t.of(constantName)...)

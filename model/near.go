@@ -22,11 +22,14 @@ func didYouMean(typed string, names []string) string {
 	return fmt.Sprintf("did you mean %q?", best)
 }
 
+// longestName is the longest name, in letters, that a suggestion is sought for.
+const longestName = 64
+
 // nearEnough is how many letters may be wrong: none in a name of one letter (only
 // its case), one in a short name, a third of a longer one.
 func nearEnough(typed string) int {
 	n := len([]rune(typed))
-	if n < 2 {
+	if n < 2 || n > longestName {
 		return 0
 	}
 	return min(max(1, n/3), 4)
@@ -89,4 +92,28 @@ func nearHint(typed string, names []string) string {
 		return near + " " + strings.ToUpper(list[:1]) + list[1:]
 	}
 	return join(near, list)
+}
+
+// mostSuggestions is how many problems of a file get a suggestion or a list of
+// names: beyond it the file is wrong as a whole, and the search would take long in
+// a design of thousands of names.
+const mostSuggestions = 50
+
+// hinter makes hints from names, as long as they may help.
+type hinter struct{ made int }
+
+// near is nearHint of the names.
+func (h *hinter) near(typed string, names func() []string) string {
+	if h.made++; h.made > mostSuggestions {
+		return ""
+	}
+	return nearHint(typed, names())
+}
+
+// list is the list of the names.
+func (h *hinter) list(names func() []string) string {
+	if h.made++; h.made > mostSuggestions {
+		return ""
+	}
+	return allowed(names())
 }

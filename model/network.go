@@ -61,8 +61,11 @@ type Reaction struct {
 	Scale float64
 
 	program *Program
-	reads   []int   // species that the propensity depends on, ascending
-	factor  float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
+	// local is the same program over the amounts of lawReads only, in their order.
+	local    *Program
+	lawReads []int
+	reads    []int   // species that the propensity depends on, ascending
+	factor   float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
 }
 
 // Program gives the law compiled for fast evaluation at many amounts.
@@ -178,8 +181,11 @@ func (n *Network) Propensity(r int, counts []int64) float64 {
 		a := re.factor
 		for _, t := range re.Reactants {
 			k := counts[t.Species]
+			if k < int64(t.Count) {
+				return 0
+			}
 			for j := range t.Count {
-				a *= float64(max(k-int64(j), 0))
+				a *= float64(k - int64(j))
 			}
 		}
 		return a
@@ -190,7 +196,11 @@ func (n *Network) Propensity(r int, counts []int64) float64 {
 		}
 	}
 	var buf [8]float64
-	return re.Scale * re.program.Eval(n.Amounts(buf[:], counts))
+	x := buf[:0]
+	for _, i := range re.lawReads {
+		x = append(x, float64(counts[i])/n.Unit(i))
+	}
+	return re.Scale * re.local.Eval(x)
 }
 
 // MassActionFactor gives the c of the propensity c ∏ nᵢ!/(nᵢ−νᵢ)! of a

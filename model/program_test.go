@@ -59,7 +59,7 @@ const (
 var sink float64
 
 func benchmarkLaw(b *testing.B, text string, f func(*Node) func([]float64) float64) {
-	p := lawParser{text: text, names: testNames()}
+	p := lawParser{text: text, names: testNames(), hinter: &hinter{}}
 	eval := f(p.parse().Bind(nil))
 	x := []float64{0.7, 1.9, 3.1}
 	for b.Loop() {

@@ -57,6 +57,7 @@ func (s *source) after(offset int) int {
 type reporter struct {
 	src             *source
 	problems, notes Problems
+	hinter          hinter
 }
 
 // errorf adds a problem at a byte offset.

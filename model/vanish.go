@@ -1,16 +1,16 @@
 package model
 
 // vanishes tells whether the tree, its constants bound, is 0 at every amount of
-// the other species once those marked empty are 0. It is decided from the
+// the other species once those that empty tells are 0. It is decided from the
 // structure: a product with a factor that vanishes, a sum of terms that all do, a
 // positive power or a Hill function of what vanishes, and so on. A law that
 // vanishes for another reason (x − x) is not recognised.
-func (n *Node) vanishes(empty []bool) bool {
+func (n *Node) vanishes(empty func(species int) bool) bool {
 	switch n.Op {
 	case OpNumber:
 		return n.Value == 0
 	case OpSpecies:
-		return empty[n.Index]
+		return empty(n.Index)
 	case OpMul:
 		return n.Args[0].vanishes(empty) || n.Args[1].vanishes(empty)
 	case OpAdd, OpSub, OpMin, OpMax:

@@ -83,7 +83,7 @@ func (n *Network) lawWarnings(r int) []string {
 	}
 	var out []string
 	for _, t := range re.Uses {
-		if empty := n.marked(t.Species); !re.Law.vanishes(empty) {
+		if !re.Law.vanishes(func(i int) bool { return i == t.Species }) {
 			out = append(out, fmt.Sprintf("%s: its law is not 0 without %s, which it uses; below %d %s it is taken not to happen", n.title(r), n.Species[t.Species].Name, t.Count, plural(int64(t.Count), "molecule")))
 		}
 	}
@@ -147,12 +147,6 @@ func (n *Network) title(r int) string {
 		return name
 	}
 	return fmt.Sprintf("reaction %d", r+1)
-}
-
-func (n *Network) marked(species int) []bool {
-	out := make([]bool, len(n.Species))
-	out[species] = true
-	return out
 }
 
 // names lists the names of species.
