@@ -61,13 +61,15 @@ type explorer struct {
 	moves   []move
 	phases  []phase
 	seen    finder
-	limit   int // nodes allowed
+	limit   int  // nodes allowed
+	shallow bool // it is known that there are three dimensions at most
 	point   []int64
 	target  []int64
 }
 
 // explore lists the nodes that can be reached from the starts inside the box. It
-// gives errTooMany with the chain so far when there are more than limit.
+// gives errTooMany or errTooDeep with the chain so far when there are more than
+// limit, or more than smallLattice in more than three dimensions.
 func explore(ctx context.Context, n *model.Network, b Box, starts [][]int64, limit int) (*chain, error) {
 	ms, phases := moves(n)
 	size := len(n.Species)
@@ -84,8 +86,8 @@ func explore(ctx context.Context, n *model.Network, b Box, starts [][]int64, lim
 		if i%4096 == 0 && ctx.Err() != nil {
 			return nil, ctx.Err()
 		}
-		if e.nodes() > limit {
-			return e.chain, errTooMany
+		if err := e.tooMuch(); err != nil {
+			return e.chain, err
 		}
 		if err := e.expand(i); err != nil {
 			return nil, err
@@ -93,6 +95,24 @@ func explore(ctx context.Context, n *model.Network, b Box, starts [][]int64, lim
 	}
 	e.rank = dimensions(ms, phases, b, e.long())
 	return e.chain, nil
+}
+
+// smallLattice is how many nodes are served in any number of dimensions.
+const smallLattice = 20000
+
+// tooMuch ends an exploration that nothing could come of.
+func (e *explorer) tooMuch() error {
+	if e.nodes() > e.limit {
+		return errTooMany
+	}
+	if e.shallow || e.nodes() <= smallLattice {
+		return nil
+	}
+	e.shallow = true // by now every species has shown its range
+	if e.rank = dimensions(e.moves, e.phases, e.box, e.long()); e.rank > 3 {
+		return errTooDeep
+	}
+	return nil
 }
 
 // few is the range of counts above which a species counts as a direction of the

@@ -2,7 +2,10 @@ package lattice
 
 import "errors"
 
-var errTooMany = errors.New("more nodes than allowed")
+var (
+	errTooMany = errors.New("more nodes than allowed")
+	errTooDeep = errors.New("more than three dimensions")
+)
 
 // A finder tells a node's number by its place in the box: by a table where the
 // box is small enough, by hashing where it is mostly empty.

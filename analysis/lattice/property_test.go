@@ -35,13 +35,13 @@ func trioCores() []model.Core {
 // order, of some 10⁴ positive numbers.
 func TestOrderOfSpeciesAndStates(t *testing.T) {
 	d, cores := trio(5), trioCores()
-	want := solve(t, Problem{Network: bind(t, d, 1), Cores: cores, Truncation: 1e-6, Threads: 2})
-	order := []int{2, 0, 1}
+	order, low := []int{2, 0, 1}, []int64{0, 0, 0}
+	want := solve(t, Problem{Network: bind(t, d, 1), Cores: cores, Low: low, High: []int64{17, 16, 15}, Fixed: true, Threads: 2})
 	var moved []model.Core
 	for _, c := range []model.Core{cores[1], cores[2], cores[0]} {
 		moved = append(moved, reorderedCore(c, order))
 	}
-	got := solve(t, Problem{Network: bind(t, d.permuted(order), 1), Cores: moved, Truncation: 1e-6, Threads: 1})
+	got := solve(t, Problem{Network: bind(t, d.permuted(order), 1), Cores: moved, Low: low, High: []int64{16, 15, 17}, Fixed: true, Threads: 1})
 	for a := range 3 {
 		b := (a + 2) % 3
 		if relative(got.Mean[b], want.Mean[a]) > 1e-11 || relative(got.Weight[b], want.Weight[a]) > 1e-10 || relative(got.Escape[b], want.Escape[a]) > 1e-10 {

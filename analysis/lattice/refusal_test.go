@@ -120,3 +120,16 @@ func TestEstimate(t *testing.T) {
 		t.Errorf("estimate %+v for %d states in the end", e, s.States)
 	}
 }
+
+// Two genes with dimers and an operator: of the eight species four have long
+// ranges, and those are named.
+func TestDimerSwitchRefused(t *testing.T) {
+	n := zoo.DimerSwitch()
+	at := func(k ...int64) []int64 { return k }
+	low, high := at(20, 5, 0, 0, 1, 0, 0, 0), at(0, 0, 20, 5, 1, 0, 0, 0)
+	err := refusal(t, Problem{Network: n, Cores: []model.Core{box("low", low, low, low), box("high", high, high, high)}}, "[a a2 b b2]")
+	var deep *DimensionError
+	if !errors.As(err, &deep) || deep.Dimensions != 4 {
+		t.Errorf("got %v, want a DimensionError for 4", err)
+	}
+}

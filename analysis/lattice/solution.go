@@ -25,8 +25,10 @@ type Solution struct {
 	End  [][]float64
 	Lost []float64
 	// Pair[a][b] is Mean[a]/End[a][b], the mean time between flips from a to b
-	// while in a; +Inf where there are none and on the diagonal.
-	Pair [][]float64
+	// while in a; +Inf where there are none and on the diagonal. PairBound bounds
+	// the relative error that cutting the lattice off causes in it; where an end is
+	// as rare as leaving the box it is large, and no number is to be trusted.
+	Pair, PairBound [][]float64
 
 	// Species is the number of species; Counts holds each lattice state's counts,
 	// Species numbers a state. What follows is nil if only means were wanted.
@@ -137,14 +139,18 @@ func (s *solver) means() *Solution {
 			}
 		}
 		out.Never[a] = ended == 0
-		pair := make([]float64, n)
-		for b := range pair {
-			pair[b] = out.Mean[a] / o.ends[b]
-			if b == a || o.ends[b] == 0 {
-				pair[b] = math.Inf(1)
-			}
-		}
-		out.Pair = append(out.Pair, pair)
+		out.addPairs(a, o)
 	}
 	return out
+}
+
+func (s *Solution) addPairs(a int, o *origin) {
+	pair, bound := make([]float64, len(s.Mean)), make([]float64, len(s.Mean))
+	for b := range pair {
+		pair[b], bound[b] = s.Mean[a]/o.ends[b], s.Bound[a]+o.leave/o.ends[b]
+		if b == a || o.ends[b] == 0 {
+			pair[b], bound[b] = math.Inf(1), 0
+		}
+	}
+	s.Pair, s.PairBound = append(s.Pair, pair), append(s.PairBound, bound)
 }
