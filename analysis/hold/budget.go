@@ -23,11 +23,12 @@ const (
 type allowance struct {
 	runs   int
 	events int64 // most events of one run; 0: no limit
+	again  bool  // what is left of the budget afterwards goes into more runs
 }
 
 // pilotAllowance is the pilot of a state with so many events to spend.
 func pilotAllowance(events int64) allowance {
-	return allowance{pilotRuns, max(1, int64(pilotShare*float64(events))/pilotRuns)}
+	return allowance{runs: pilotRuns, events: max(1, int64(pilotShare*float64(events))/pilotRuns)}
 }
 
 // plan gives the runs that count. flips is what the precision takes; events is
@@ -37,15 +38,21 @@ func pilotAllowance(events int64) allowance {
 // as the precision takes or the budget pays: the number of flips is then fixed
 // beforehand, and 2·flips·mean/θ is χ² with 2·flips degrees of freedom. Where it
 // did not, a few long runs share the budget, and flips are counted in a time
-// fixed beforehand but for chance. Neither depends on threads, nor on the runs
+// fixed beforehand but for chance; what runs that flip leave of it goes into more runs.
+// Neither depends on threads, nor on the runs
 // themselves.
 func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
 	left := float64(events) * (1 - pilotShare)
 	if seenFlips >= pilotFlips {
 		perDwell := float64(seenEvents) / float64(seenFlips)
 		runs := min(float64(flips), math.Max(1, math.Floor(left/perDwell)))
-		return allowance{int(runs), int64(math.Ceil(perDwell * capDwells))}
+		return allowance{runs: int(runs), events: int64(math.Ceil(perDwell * capDwells))}
 	}
-	runs := min(max(left/spareEvents, 1), pilotRuns)
-	return allowance{int(runs), max(1, int64(left/math.Floor(runs)))}
+	return longRuns(int64(left))
+}
+
+// longRuns shares so many events among a few long runs.
+func longRuns(events int64) allowance {
+	runs := min(max(events/spareEvents, 1), pilotRuns)
+	return allowance{runs: int(runs), events: max(1, events/runs), again: true}
 }

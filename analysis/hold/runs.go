@@ -24,6 +24,7 @@ type stateRuns struct {
 	state       int
 	seen        []dwell.Observation
 	events      int64
+	made        int // runs that count: the next one's replicate
 	interrupted bool
 }
 
@@ -56,24 +57,34 @@ func (j *job) runState(ctx context.Context, s int, events int64) (*stateRuns, er
 	if err != nil {
 		return r, err
 	}
-	for done := 0; done < allowed.runs && !r.interrupted; done += block {
-		p := j.runPlan(s, uint64(done), min(block, allowed.runs-done), allowed.events)
-		p.Progress = j.progressOf(s, done, allowed.runs)
-		if err := j.count(ctx, r, p); err != nil {
-			return r, err
-		}
+	err = j.spend(ctx, r, allowed)
+	for err == nil && allowed.again && !r.interrupted && events-r.events >= spareEvents {
+		err = j.spend(ctx, r, longRuns(events-r.events))
 	}
-	return r, nil
+	return r, err
+}
+
+// spend makes the runs that are allowed, a block at a time.
+func (j *job) spend(ctx context.Context, r *stateRuns, allowed allowance) error {
+	for done := 0; done < allowed.runs && !r.interrupted; done += block {
+		p := j.runPlan(r.state, uint64(r.made), min(block, allowed.runs-done), allowed.events)
+		p.Progress = j.progressOf(r.state, done, allowed.runs)
+		if err := j.count(ctx, r, p); err != nil {
+			return err
+		}
+		r.made += p.Runs
+	}
+	return nil
 }
 
 // allow plans the runs of a state, by a pilot where the number is not given.
 func (j *job) allow(ctx context.Context, r *stateRuns, events int64) (allowance, error) {
 	if j.options.Runs > 0 {
-		return allowance{int(j.options.Runs), perRun(events, int(j.options.Runs))}, nil
+		return allowance{runs: int(j.options.Runs), events: perRun(events, int(j.options.Runs))}, nil
 	}
 	flips := dwell.FlipsFor(j.options.Precision)
 	if events == 0 {
-		return allowance{flips, 0}, nil
+		return allowance{runs: flips}, nil
 	}
 	pilot := pilotAllowance(events)
 	result, err := ssa.Run(ctx, j.runPlan(r.state, pilotReplicate, pilot.runs, pilot.events))

@@ -1,0 +1,35 @@
+package hold
+
+import (
+	"math"
+	"testing"
+)
+
+func TestCompare(t *testing.T) {
+	sampled := func(mean, low, high, se Value, flips int64) DwellReport {
+		return DwellReport{From: "low", To: "high", Route: Runs, Sampled: true, Mean: mean, Low: low, High: high, StandardError: se, Flips: flips}
+	}
+	exact := func(mean Value) DwellReport {
+		return DwellReport{From: "low", To: "high", Route: Lattice, Mean: mean, Low: mean * (1 - 1e-9), High: mean * (1 + 1e-9)}
+	}
+	never := DwellReport{From: "low", To: "high", Route: Lattice, Never: true, Mean: Value(math.Inf(1)), Low: Value(math.Inf(1)), High: Value(math.Inf(1))}
+	none := sampled(Value(math.NaN()), 500, Value(math.Inf(1)), Value(math.NaN()), 0)
+	for _, c := range []struct {
+		name  string
+		a, b  DwellReport
+		agree bool
+		text  string
+	}{
+		{"inside the interval", exact(100), sampled(104, 94, 115, 5, 400), true, "agree within errors"},
+		{"three standard errors off", exact(100), sampled(116.18, 105, 128, 5.809, 400), false, "disagree: 3.0 standard errors apart"},
+		{"no flip seen, and none expected", exact(1e6), none, true, "agree within errors"},
+		{"no flip seen where many were due", exact(10), none, false, "disagree: one sees what the other excludes"},
+		{"never, and flips seen", never, sampled(104, 94, 115, 5, 400), false, "disagree: one sees what the other excludes"},
+		{"never, and none seen", never, none, true, "agree within errors"},
+	} {
+		v := compare(&c.a, &c.b)
+		if v.Agree != c.agree || v.Text != c.text {
+			t.Errorf("%s: %v, %q; want %v, %q", c.name, v.Agree, v.Text, c.agree, c.text)
+		}
+	}
+}
