@@ -22,7 +22,7 @@ type examiner struct {
 }
 
 // examine does all it can with one box, which it may change.
-func (e *examiner) examine(b box, known []found) report {
+func (e *examiner) examine(b box, known []found, heaps []heap) report {
 	for range 40 {
 		old := slices.Clone(b)
 		if e.narrow(b, 0.1, 10) || isKnown(b, known) {
@@ -40,7 +40,7 @@ func (e *examiner) examine(b box, known []found) report {
 		if alone {
 			r, done := e.settle(b, region)
 			if !done {
-				rest := e.split(b)
+				rest := e.split(b, heaps)
 				r.parts, r.stuck = rest.parts, rest.stuck
 			}
 			return r
@@ -49,7 +49,7 @@ func (e *examiner) examine(b box, known []found) report {
 			break
 		}
 	}
-	return e.split(b)
+	return e.split(b, heaps)
 }
 
 func isKnown(b box, known []found) bool {
@@ -97,11 +97,6 @@ func (e *examiner) candidates(b box) []found {
 		out = append(out, f)
 	}
 	return out
-}
-
-// alone tells whether no two points of b have the same rates.
-func (e *examiner) alone(b box) bool {
-	return e.linearise(b, b.mid()) && e.contracts(b)
 }
 
 // onFace looks for a resting state near b with the species at 0 that would stay 0.
@@ -152,7 +147,10 @@ func (e *examiner) lift(face *system, f found) found {
 // unknown, as a share of the row's (smear: Kearfott and Novoa, ACM Trans. Math.
 // Softw. 16 (1990) 152, from memory); unknowns that all rates are linear in are
 // left to the narrowing as long as others can be cut.
-func (e *examiner) split(b box) report {
+func (e *examiner) split(b box, heaps []heap) report {
+	if slices.ContainsFunc(heaps, func(h heap) bool { return h.absorbs(b) }) {
+		return report{stuck: b}
+	}
 	at, best := -1, 0.0
 	score := e.smear(b)
 	for i := range b {

@@ -40,27 +40,23 @@ func (b *builder) factor(id int) (base, exp int) {
 }
 
 func (m *monomial) multiply(base, exp int) {
-	for i, other := range m.bases {
-		if other == base && (m.exps[i] > 0) == (exp > 0) {
-			m.exps[i] += exp
-			return
-		}
+	if i := m.find(base, exp); i >= 0 {
+		m.exps[i] += exp
+		return
 	}
 	at, _ := slices.BinarySearch(m.bases, base)
 	m.bases = slices.Insert(m.bases, at, base)
 	m.exps = slices.Insert(m.exps, at, exp)
 }
 
-// takes tells whether d, constant aside, divides m and gives the quotient; only
-// positive exponents are cancelled.
+// takes tells whether d, constant aside, divides m and gives the quotient. Exponents
+// are taken from exponents of the same sign and at least the size, so that what is
+// left is undefined nowhere that m is defined.
 func (m monomial) takes(d monomial) (monomial, bool) {
 	out := monomial{c: m.c, bases: slices.Clone(m.bases), exps: slices.Clone(m.exps)}
 	for i, base := range d.bases {
-		at := slices.Index(out.bases, base)
-		for at >= 0 && at < len(out.bases) && out.bases[at] == base && out.exps[at] < 0 {
-			at++
-		}
-		if at < 0 || at >= len(out.bases) || out.bases[at] != base || d.exps[i] < 0 || out.exps[at] < d.exps[i] {
+		at := out.find(base, d.exps[i])
+		if at < 0 || max(out.exps[at], -out.exps[at]) < max(d.exps[i], -d.exps[i]) {
 			return out, false
 		}
 		if out.exps[at] -= d.exps[i]; out.exps[at] == 0 {
@@ -69,6 +65,16 @@ func (m monomial) takes(d monomial) (monomial, bool) {
 		}
 	}
 	return out, true
+}
+
+// find gives the place of the base with an exponent of the sign of exp, or -1.
+func (m *monomial) find(base, exp int) int {
+	for i, other := range m.bases {
+		if other == base && (m.exps[i] > 0) == (exp > 0) {
+			return i
+		}
+	}
+	return -1
 }
 
 // build gives the monomial as one product node.

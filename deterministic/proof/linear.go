@@ -40,26 +40,36 @@ func (f *form) addNode(id int, c iv) {
 	f.coef[at] = f.coef[at].Add(c)
 }
 
-// tidy drops the nodes whose coefficients add to 0, and joins each falling
-// function with its rising twin, whose sum is 1.
+// tidy joins falling functions with their rising twins, and drops the nodes whose
+// coefficients add to 0.
 func (f *form) tidy(b *builder) {
-	for i := 0; i < len(f.nodes); i++ {
-		n := b.nodes[f.nodes[i]]
-		if n.kind != fall || f.coef[i] == interval.Point(0) {
-			continue
-		}
-		n.kind = rise
-		id, ok := b.find(n)
-		if !ok {
-			continue
-		}
-		if at, found := slices.BinarySearch(f.nodes, id); found && f.coef[at] != interval.Point(0) {
-			f.c = f.c.Add(f.coef[i])
-			f.coef[at] = f.coef[at].Sub(f.coef[i])
-			f.coef[i] = interval.Point(0)
+	for _, id := range slices.Clone(f.nodes) {
+		if k := b.nodes[id].kind; k == rise || k == fall {
+			f.twin(b, id)
 		}
 	}
 	f.dropZeros(b)
+}
+
+// twin writes a saturating function as 1 less its twin, where a falling one has its
+// twin in the form as well, or where the constant part becomes smaller: so that 1
+// less a function near 1 does not lose its digits.
+func (f *form) twin(b *builder, id int) {
+	i, _ := slices.BinarySearch(f.nodes, id)
+	k, n := f.coef[i], b.nodes[id]
+	n.kind = rise + fall - n.kind
+	other, both := b.find(n)
+	if both {
+		_, both = slices.BinarySearch(f.nodes, other)
+	}
+	c := f.c.Add(k)
+	if both && n.kind == fall || !both && c.Mag() >= f.c.Mag() {
+		return
+	}
+	f.c = c
+	f.nodes = slices.Delete(f.nodes, i, i+1)
+	f.coef = slices.Delete(f.coef, i, i+1)
+	f.addNode(b.intern(n), k.Neg())
 }
 
 func (f *form) dropZeros(b *builder) {

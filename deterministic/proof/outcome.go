@@ -1,16 +1,12 @@
 package proof
 
-import (
-	"slices"
-
-	"holdfast/deterministic/proof/interval"
-)
+import "holdfast/deterministic/proof/interval"
 
 // An outcome gathers what a search finds.
 type outcome struct {
 	task   *task
 	known  []found
-	stuck  []box
+	heaps  []heap
 	left   []box
 	boxes  int
 	ending Ending
@@ -22,7 +18,7 @@ func (o *outcome) take(r report) []box {
 		o.note(f)
 	}
 	if r.stuck != nil {
-		o.stuck = append(o.stuck, r.stuck)
+		o.heaps = pile(o.heaps, r.stuck)
 	}
 	return r.parts
 }
@@ -37,45 +33,19 @@ func (o *outcome) note(f found) {
 		switch {
 		case f.box.in(k.unique) || k.box.in(f.unique):
 			return
+		case f.box.meets(k.box) && !o.same(f, k):
+			o.heaps = pile(o.heaps, f.box)
+			return
 		case f.box.meets(k.box):
-			o.stuck = append(o.stuck, f.box)
 			return
 		}
 	}
 	o.known = append(o.known, f)
 }
 
-// clusters joins boxes that touch into their hulls, until none touch. Boxes count as
-// touching within the given share of their size.
-func clusters(boxes []box, bounds box) []box {
-	var out []box
-	for _, b := range boxes {
-		b = grown(b, bounds)
-		for i := 0; i < len(out); {
-			if !out[i].meets(b) {
-				i++
-				continue
-			}
-			b = b.hull(out[i])
-			out = slices.Delete(out, i, i+1)
-			i = 0
-		}
-		out = append(out, b)
-	}
-	return out
-}
-
-// grown widens a box by a hundredth of its width, inside the bounds.
-func grown(b, bounds box) box {
-	out := make(box, len(b))
-	for i, a := range b {
-		r := a.Width() / 100
-		out[i] = a.Add(iv{Lo: -r, Hi: r}).Meet(bounds[i])
-		if out[i].IsEmpty() {
-			out[i] = a
-		}
-	}
-	return out
+// same tells whether the two states whose boxes meet are proved to be one.
+func (o *outcome) same(f, k found) bool {
+	return newWorker(o.task.system).alone(f.box.hull(k.box))
 }
 
 // amounts gives a box in the unknowns as a box with one interval a species.

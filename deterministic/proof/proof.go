@@ -104,7 +104,7 @@ func newTask(p Problem) (*task, error) {
 			return nil, fmt.Errorf("a total is %v; it must be a finite number", v)
 		}
 	}
-	s, ok, err := newSystem(p.Network, t.totals, t.values, nil)
+	s, ok, err := newSystem(p.Network, t.totals, t.values, nil, none)
 	if ok {
 		t.system = s
 	}

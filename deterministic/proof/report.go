@@ -18,19 +18,24 @@ func (o *outcome) result(low, high []float64, all bool) *Result {
 		}
 		r.Roots = append(r.Roots, root)
 	}
-	slices.SortFunc(r.Roots, func(a, b Root) int { return slices.CompareFunc(a.Point, b.Point, cmp.Compare) })
-	rest := slices.Concat(o.stuck, o.left)
-	for _, c := range clusters(rest, o.task.bounds) {
-		n := 0
-		for _, b := range rest {
-			if b.in(c) {
-				n++
-			}
-		}
-		r.Unresolved = append(r.Unresolved, Unresolved{Box: s.amounts(c), Boxes: n})
+	slices.SortFunc(r.Roots, func(a, b Root) int { return slices.CompareFunc(a.Box, b.Box, before) })
+	heaps := o.heaps
+	for _, b := range o.left {
+		heaps = pile(heaps, b)
 	}
-	r.Complete = len(rest) == 0 && o.ending == Finished
+	for _, h := range heaps {
+		r.Unresolved = append(r.Unresolved, Unresolved{Box: s.amounts(h.hull), Boxes: h.boxes})
+	}
+	r.Complete = len(heaps) == 0 && o.ending == Finished
 	return r
+}
+
+// before orders intervals; those that meet count as equal.
+func before(a, b interval.Interval) int {
+	if a.Meet(b).IsEmpty() {
+		return cmp.Compare(a.Lo, b.Lo)
+	}
+	return 0
 }
 
 // unposed is the result where the equations do not determine isolated states.

@@ -28,41 +28,61 @@ func (w *worker) linearise(b box, x []float64) (ok bool) {
 	return true
 }
 
-// pin looks for the resting state near x: it tries boxes about x, the widest
-// first, until one is proved to hold exactly one. bounds is not left.
-func (w *worker) pin(x []float64, radius, bounds box) (f found, ok bool) {
+// alone tells whether no two points of b have the same rates.
+func (w *worker) alone(b box) bool {
+	return w.linearise(b, b.mid()) && w.contracts(b)
+}
+
+// pin looks for the resting state near x, and inside bounds: it tries boxes about
+// it, of some times the given sizes and less and less, until one is proved to hold
+// exactly one.
+func (w *worker) pin(x []float64, size, bounds box) (f found, ok bool) {
 	x, ok = w.polish(x, bounds)
 	if !ok {
 		return f, false
 	}
-	for shrink := 1.0; shrink > 1e-14; shrink /= 16 {
+	for share := 2.0; share > 1e-14; share /= 16 {
 		y := make(box, len(x))
 		for i, v := range x {
-			r := shrink*radius[i].Width() + 1e-14*math.Abs(v) + 1e-300
+			r := share*size[i].Width() + 1e-14*math.Abs(v) + 1e-300
 			y[i] = interval.Point(v).Add(iv{Lo: -r, Hi: r}).Meet(bounds[i])
 		}
-		if f, ok = w.prove(y); ok {
+		if f, ok = w.prove(y, bounds); ok {
 			return f, true
 		}
 	}
 	return f, false
 }
 
-// prove tells whether the box holds exactly one resting state by Krawczyk's test:
-// K ⊆ X for existence (Brouwer), contraction for uniqueness. It then encloses it
+// prove tells whether the box, or one near it, holds exactly one resting state, by
+// Krawczyk's test: K ⊆ X for existence (Brouwer), contraction for uniqueness. Where
+// K is not inside, the test is repeated about K, somewhat inflated (Rump's
+// ε-inflation, Neumaier 1990, section 5.1, from memory). The state is then enclosed
 // as tightly as the steps go.
-func (w *worker) prove(b box) (f found, ok bool) {
-	if !w.linearise(b, b.mid()) || !w.contracts(b) {
-		return f, false
+func (w *worker) prove(b, bounds box) (f found, ok bool) {
+	for range 4 {
+		if !w.linearise(b, b.mid()) || !w.contracts(b) {
+			return f, false
+		}
+		w.krawczyk(b, b.mid())
+		k := slices.Clone(box(w.image))
+		if k.in(b) {
+			defined, _ := w.sheet.defined(&w.s.graph)
+			f = found{box: k, unique: b}
+			if defined {
+				w.tighten(&f)
+			}
+			return f, defined
+		}
+		b = make(box, len(k))
+		for i, a := range k {
+			b[i] = a.Add(iv{Lo: -a.Width() / 2, Hi: a.Width() / 2}).Meet(bounds[i])
+			if b[i].IsEmpty() {
+				return f, false
+			}
+		}
 	}
-	w.krawczyk(b, b.mid())
-	defined, smooth := w.sheet.defined(&w.s.graph)
-	if !defined || !box(w.image).in(b) {
-		return f, false
-	}
-	f = found{box: slices.Clone(box(w.image)), unique: b, kink: !smooth}
-	w.tighten(&f)
-	return f, true
+	return f, false
 }
 
 // tighten repeats Newton steps until the enclosure stays as it is.

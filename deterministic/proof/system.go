@@ -44,8 +44,10 @@ type column struct {
 
 // newSystem builds the rest condition with the absent species held at 0. ok is
 // false where the equations do not number the unknowns: there may be a continuum of
-// resting states. The absent species must stay at 0; see leaving.
-func newSystem(n *model.Network, totals []model.Total, values []float64, absent []bool) (s *system, ok bool, err error) {
+// resting states. The absent species must stay at 0; see leaving. Where
+// high is a species, the further rows are right only where that is above 0: they hold
+// the others divided by its powers.
+func newSystem(n *model.Network, totals []model.Total, values []float64, absent []bool, high int) (s *system, ok bool, err error) {
 	b := newBuilder(n.ConstantValues(), absent)
 	fluxes, err := fluxesOf(b, n)
 	if err != nil {
@@ -72,7 +74,13 @@ func newSystem(n *model.Network, totals []model.Total, values []float64, absent 
 		}
 	}
 	main = append(main, sums...)
-	s.finish(b, main, b.further(fluxes, s.species))
+	further := b.further(fluxes, s.species)
+	if high != none {
+		for _, r := range further {
+			further = append(further, b.divided(r, high)...)
+		}
+	}
+	s.finish(b, main, further)
 	return s, true, s.defined(n)
 }
 

@@ -44,7 +44,7 @@ func (t *task) buildFace(absent []bool) *system {
 			return nil
 		}
 		if left < 0 {
-			s, ok, err := newSystem(t.network, t.totals, t.values, absent)
+			s, ok, err := newSystem(t.network, t.totals, t.values, absent, none)
 			if !ok || err != nil {
 				return nil
 			}
@@ -81,7 +81,7 @@ func (t *task) search(ctx context.Context, start box, limit, threads int) (out *
 		todo := slices.Clone(stack[len(stack)-n:])
 		stack = stack[:len(stack)-n]
 		out.boxes += n
-		for _, r := range examineAll(workers, todo, out.known) {
+		for _, r := range examineAll(workers, todo, out) {
 			stack = append(stack, out.take(r)...)
 		}
 	}
@@ -89,11 +89,11 @@ func (t *task) search(ctx context.Context, start box, limit, threads int) (out *
 }
 
 // examineAll examines the boxes and gives the reports in the same order.
-func examineAll(workers []*examiner, todo []box, known []found) []report {
-	out := make([]report, len(todo))
+func examineAll(workers []*examiner, todo []box, so *outcome) []report {
+	out, known, heaps := make([]report, len(todo)), so.known, so.heaps
 	if len(todo) < 8 || len(workers) == 1 {
 		for i, b := range todo {
-			out[i] = workers[0].examine(b, known)
+			out[i] = workers[0].examine(b, known, heaps)
 		}
 		return out
 	}
@@ -101,7 +101,7 @@ func examineAll(workers []*examiner, todo []box, known []found) []report {
 	for k, e := range workers {
 		wait.Go(func() {
 			for i := k; i < len(todo); i += len(workers) {
-				out[i] = e.examine(todo[i], known)
+				out[i] = e.examine(todo[i], known, heaps)
 			}
 		})
 	}

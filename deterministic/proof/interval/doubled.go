@@ -110,8 +110,8 @@ const logError = 0x1p-86
 // the exponential, the series' rest is below z³ < 2⁻⁹⁰, the sum's rounding below
 // 2⁻⁹⁵. ok is false where z does not become small.
 func logPair(x float64) (y pair, ok bool) {
-	y.hi = math.Log(x)
 	f, e := math.Frexp(x)
+	y.hi = math.Log(f) + float64(e)*math.Ln2
 	for range 4 {
 		m, k := expPair(pair{-y.hi, 0})
 		f := math.Ldexp(f, e+k)
