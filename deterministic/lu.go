@@ -121,6 +121,15 @@ func (f *lu) solve(b []float64) {
 	copy(b, w)
 }
 
+// determinant gives the sign of A's determinant and the logarithm of its
+// magnitude.
+func (f *lu) determinant() (sign, size float64) {
+	for k := range f.n {
+		size += math.Log(abs(f.a[k*f.n+k])) - math.Log(f.scale[k])
+	}
+	return f.sign, size
+}
+
 // inverse gives A⁻¹ in row-major order.
 func (f *lu) inverse() []float64 {
 	n := f.n

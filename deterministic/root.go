@@ -9,11 +9,12 @@ type Quality struct {
 	Residual float64
 	// Error bounds the rounding error of each amount, to first order.
 	Error []float64
-	// Isolation is the share by which the Newton equations change within twice
-	// Error of the state (the Newton–Kantorovich number; Ortega, Am. Math. Monthly
-	// 75 (1968) 658), sampled along each species. Below 1/2 the state is the only
-	// one there; near or above it the state is degenerate: a fold, say, to within
-	// rounding.
+	// Isolation is the share by which the determinant of the Newton equations
+	// changes within twice Error of the state, sampled along the directions of the
+	// error: the Newton–Kantorovich condition (Ortega, Am. Math. Monthly 75 (1968)
+	// 658) for the one combination of amounts that may be flat. Well below 1 the
+	// derivatives keep their rank and the state is the only one there; near or above
+	// it the state is degenerate: a fold, say, to within rounding.
 	Isolation float64
 }
 
@@ -55,7 +56,6 @@ func (w *workspace) examine(c *class, x, floor []float64) *root {
 		return r
 	}
 	inverse := w.lu.inverse()
-	reach := 0.0
 	for i := range n {
 		sum := 0.0
 		for j := range n {
@@ -64,55 +64,38 @@ func (w *workspace) examine(c *class, x, floor []float64) *root {
 			}
 		}
 		r.quality.Error[i] = sum * w.scale[i]
-		reach = max(reach, sum)
 	}
-	r.quality.Isolation = w.isolation(c, x, inverse, 2*reach)
+	r.quality.Isolation = w.isolation(c, x, inverse, bound)
 	return r
 }
 
-// isolation is ‖A⁻¹(A(y) − A(x))‖ over the points y at reach (in units of
-// w.scale) along each species from x, the directions' shares added up.
-func (w *workspace) isolation(c *class, x, inverse []float64, reach float64) float64 {
+// isolation is the share by which the determinant of the equations' derivatives
+// changes between x and the points y that an error in one equation of twice its
+// bound moves the state to, on either side, the equations' shares added up. It uses
+// up the factors in w.lu.
+func (w *workspace) isolation(c *class, x, inverse, bound []float64) float64 {
 	n := w.sys.n
-	base := append([]float64(nil), w.jac...)
-	y := append([]float64(nil), x...)
+	sign, size := w.lu.determinant()
+	y := make([]float64, n)
 	total := 0.0
 	for j := range n {
-		if c.frozen[j] {
+		if bound[j] == 0 {
 			continue
 		}
 		largest := 0.0
-		for _, sign := range []float64{-1, 1} {
-			y[j] = max(x[j]+sign*reach*w.scale[j], 0)
-			w.sys.jacobian(y, w.jac, w.grad)
-			largest = max(largest, w.changeNorm(c, inverse, base))
+		for _, reach := range []float64{-2 * bound[j], 2 * bound[j]} {
+			for i := range y {
+				y[i] = max(x[i]+reach*inverse[i*n+j]*w.scale[i], 0)
+			}
+			if !w.factor(c, y) {
+				return math.Inf(1)
+			}
+			s, d := w.lu.determinant()
+			largest = max(largest, abs(s*sign*math.Exp(d-size)-1))
 		}
-		y[j] = x[j]
 		total += largest
 	}
 	return total
-}
-
-// changeNorm is the largest row sum of inverse·(w.jac − base), columns in units
-// of w.scale, over the rows of the independent species.
-func (w *workspace) changeNorm(c *class, inverse, base []float64) float64 {
-	n := w.sys.n
-	largest := 0.0
-	for i := range n {
-		row := 0.0
-		for k := range n {
-			sum := 0.0
-			for _, j := range c.independent {
-				sum += inverse[i*n+j] * (w.jac[j*n+k] - base[j*n+k])
-			}
-			row += abs(sum) * w.scale[k]
-		}
-		if math.IsNaN(row) {
-			return math.Inf(1)
-		}
-		largest = max(largest, row)
-	}
-	return largest
 }
 
 // same tells whether two converged points are one resting state: no further

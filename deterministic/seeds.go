@@ -1,9 +1,6 @@
 package deterministic
 
-import (
-	"math"
-	"slices"
-)
+import "math"
 
 // primes are the bases of the Halton sequence, one a species; beyond them the
 // species take turns with a shift.
@@ -148,12 +145,4 @@ func (c *class) projectionRows() (rows [][]float64, totals []float64) {
 		}
 	}
 	return rows, totals
-}
-
-// sortUnique sorts points, and keeps those strictly between from and to, once
-// each.
-func sortUnique(points []float64, from, to float64) []float64 {
-	slices.Sort(points)
-	points = slices.Compact(points)
-	return slices.DeleteFunc(points, func(p float64) bool { return p <= from || p >= to })
 }
