@@ -21,7 +21,7 @@ func Layers() []Layer {
 		{"analysis", []string{"analysis", "ssa", "sde", "deterministic", "model", "internal/stream"}},
 		{"ssa", []string{"model", "internal/stream"}},
 		{"sde", []string{"model", "internal/stream"}},
-		{"deterministic", []string{"model"}},
+		{"deterministic", []string{"deterministic", "model"}},
 		{"model", nil},
 		{"internal/stream", nil},
 		{"internal/zoo", []string{"model"}},
