@@ -12,6 +12,7 @@ type UnknownKnobError struct {
 	Known []string // what could have been written
 }
 
+// Error gives the message, one sentence.
 func (e *UnknownKnobError) Error() string {
 	return fmt.Sprintf("there is no constant, total or product %q to turn; known here: %s", e.Name, strings.Join(e.Known, ", "))
 }
@@ -23,6 +24,7 @@ type RangeError struct {
 	Problem   string
 }
 
+// Error gives the message, one sentence.
 func (e *RangeError) Error() string {
 	return fmt.Sprintf("%s from %g to %g: %s", e.Knob, e.Low, e.High, e.Problem)
 }
@@ -33,6 +35,7 @@ type OutsideError struct {
 	Today, Low, High float64
 }
 
+// Error gives the message, one sentence.
 func (e *OutsideError) Error() string {
 	return fmt.Sprintf("today's %s is %g, outside the range from %g to %g; widen the range so that it holds %g", e.Knob, e.Today, e.Low, e.High, e.Today)
 }
@@ -43,6 +46,7 @@ type ProductError struct {
 	Problem string
 }
 
+// Error gives the message, one sentence.
 func (e *ProductError) Error() string { return fmt.Sprintf("product %s: %s", e.Knob, e.Problem) }
 
 // A NoStateError says that no resting state was found at any of the settings that
@@ -54,6 +58,7 @@ type NoStateError struct {
 	Last error
 }
 
+// Error gives the message, one sentence.
 func (e *NoStateError) Error() string {
 	text := fmt.Sprintf("no resting state found anywhere on %s from %g to %g", e.Knob, e.Low, e.High)
 	if e.Last != nil {
@@ -68,6 +73,7 @@ func (e *NoStateError) Unwrap() error { return e.Last }
 // A SharedKnobError says that two knobs turn the same thing.
 type SharedKnobError struct{ First, Second string }
 
+// Error gives the message, one sentence.
 func (e *SharedKnobError) Error() string {
 	return fmt.Sprintf("%s and %s turn the same thing; give two knobs that have nothing in common", e.First, e.Second)
 }

@@ -35,6 +35,7 @@ type CurveEnd struct {
 	Knob, Species, Text string
 }
 
+// String names it in words.
 func (e CurveEnd) String() string {
 	switch e.Kind {
 	case RangeEnd:

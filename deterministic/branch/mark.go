@@ -33,6 +33,7 @@ const (
 	Lost
 )
 
+// String names it in words.
 func (k Kind) String() string {
 	names := [...]string{
 		"fold", "Hopf point", "pitchfork", "transcritical point", "crossing", "kink",

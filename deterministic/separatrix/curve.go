@@ -63,6 +63,7 @@ const (
 	WindsOn
 )
 
+// String names it in words.
 func (e Ending) String() string {
 	switch e {
 	case AtEdge:

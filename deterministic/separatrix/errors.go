@@ -9,6 +9,7 @@ type DimensionError struct {
 	Dimension int
 }
 
+// Error gives the message, one sentence.
 func (e *DimensionError) Error() string {
 	return fmt.Sprintf("a separatrix is a curve where two amounts are free; here %d are", e.Dimension)
 }
@@ -19,6 +20,7 @@ type SaddleError struct {
 	Problem string
 }
 
+// Error gives the message, one sentence.
 func (e *SaddleError) Error() string { return fmt.Sprintf("at %.6g: %s", e.Amounts, e.Problem) }
 
 // A BoxError says what is wrong with a box of amounts.
@@ -28,6 +30,7 @@ type BoxError struct {
 	Problem   string
 }
 
+// Error gives the message, one sentence.
 func (e *BoxError) Error() string {
 	return fmt.Sprintf("box of %s from %g to %g: %s", e.Species, e.Low, e.High, e.Problem)
 }

@@ -22,6 +22,7 @@ const (
 	BySample
 )
 
+// String names it in words.
 func (m Method) String() string {
 	switch m {
 	case ByCurves:
