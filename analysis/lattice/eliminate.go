@@ -1,5 +1,7 @@
 package lattice
 
+import "context"
+
 // block is how many pivots are eliminated at a time before their effect on the
 // rest is added by one matrix product.
 const block = 48
@@ -22,10 +24,11 @@ type system struct {
 // and keeps its relative accuracy however rare a transition is (O'Cinneide,
 // Numer. Math. 65 (1993) 109). Blocks of pivots are eliminated with all other
 // columns lumped into one; the rest follows by products with the inverses of the
-// two triangles, which are non-negative too.
-func (s system) eliminate(t team) {
+// two triangles, which are non-negative too. It stops between blocks when ctx is
+// done.
+func (s system) eliminate(ctx context.Context, t team) {
 	p := s.diagonal.rows
-	for k := 0; k < p; k += block {
+	for k := 0; k < p && ctx.Err() == nil; k += block {
 		e := panelElimination{s, t, k, min(k+block, p), t[0].triangles}
 		e.run()
 	}

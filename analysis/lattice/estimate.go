@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math"
+	"slices"
 	"time"
 )
 
@@ -54,10 +55,13 @@ type laid struct {
 // lay explores the box and plans its elimination, if memory allows.
 func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 	p.report("counting states", 0)
+	if slices.Max(b.High) >= math.MaxInt32 {
+		return nil, p.tooMany(int(min(b.volume(), math.MaxInt64/bytesPerNode/8)), b)
+	}
 	limit := int(min(float64(p.memory())/bytesPerNode, math.MaxInt32-1))
 	c, err := explore(ctx, p.Network, b, p.starts(), limit)
 	if errors.Is(err, errTooMany) {
-		return nil, p.tooMany(c, b)
+		return nil, p.tooMany(c.nodes(), b)
 	}
 	if errors.Is(err, errTooDeep) {
 		return nil, &DimensionError{c.rank, p.names(c.long())}
@@ -78,8 +82,8 @@ func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 }
 
 // tooMany refuses a lattice whose states alone do not fit.
-func (p *Problem) tooMany(c *chain, b Box) error {
-	e := Estimate{States: c.states(), Nodes: c.nodes(), Box: b, Bytes: int64(c.nodes()) * bytesPerNode * 4}
+func (p *Problem) tooMany(nodes int, b Box) error {
+	e := Estimate{States: nodes, Nodes: nodes, Box: b, Bytes: int64(nodes) * bytesPerNode * 4}
 	e.Multiplications = 10 * math.Pow(float64(e.Nodes), 1.5)
 	e.Seconds = e.Multiplications / speed() / float64(p.threads())
 	return &TooLargeError{Estimate: e, Allowed: p.memory(), AtLeast: true}

@@ -1,6 +1,9 @@
 package lattice
 
-import "errors"
+import (
+	"encoding/binary"
+	"errors"
+)
 
 var (
 	errTooMany = errors.New("more nodes than allowed")
@@ -11,52 +14,49 @@ var (
 // box is small enough, by hashing where it is mostly empty.
 type finder struct {
 	low    []int64
-	stride []uint64
+	stride []int
 	table  []int32
-	hashed map[uint64]int32
+	hashed map[string]int32
+	key    []byte
 }
 
-func newFinder(b Box, phases int) finder {
-	const tableLimit = 1 << 27
-	f := finder{low: b.Low, stride: make([]uint64, len(b.Low))}
-	step := uint64(phases)
-	for s := range b.Low {
-		f.stride[s] = step
-		step *= uint64(b.High[s]-b.Low[s]) + 1
-	}
-	if b.volume()*float64(phases) > tableLimit {
-		f.hashed = map[uint64]int32{}
+// newFinder uses a table if it has no more than limit entries.
+func newFinder(b Box, phases int, limit float64) finder {
+	f := finder{low: b.Low, stride: make([]int, len(b.Low))}
+	if b.volume()*float64(phases) > limit {
+		f.hashed = map[string]int32{}
 		return f
 	}
-	f.table = make([]int32, step)
-	for i := range f.table {
-		f.table[i] = -1
+	step := phases
+	for s := range b.Low {
+		f.stride[s] = step
+		step *= int(b.High[s]-b.Low[s]) + 1
 	}
+	f.table = make([]int32, step)
 	return f
 }
 
-func (f *finder) slot(counts []int64, phase int) uint64 {
-	at := uint64(phase)
-	for s, k := range counts {
-		at += uint64(k-f.low[s]) * f.stride[s]
-	}
-	return at
-}
-
-func (f *finder) get(slot uint64) int32 {
+// find gives the node's number, or with ok false the number next, which is the
+// node's from now on.
+func (f *finder) find(counts []int64, phase int, next int32) (node int32, ok bool) {
 	if f.table != nil {
-		return f.table[slot]
+		at := phase
+		for s, k := range counts {
+			at += int(k-f.low[s]) * f.stride[s]
+		}
+		if f.table[at] != 0 {
+			return f.table[at] - 1, true
+		}
+		f.table[at] = next + 1
+		return next, false
 	}
-	if i, ok := f.hashed[slot]; ok {
-		return i
+	f.key = append(f.key[:0], byte(phase))
+	for _, k := range counts {
+		f.key = binary.AppendVarint(f.key, k)
 	}
-	return -1
-}
-
-func (f *finder) put(slot uint64, node int32) {
-	if f.table != nil {
-		f.table[slot] = node
-		return
+	if node, ok = f.hashed[string(f.key)]; ok {
+		return node, true
 	}
-	f.hashed[slot] = node
+	f.hashed[string(f.key)] = next
+	return next, false
 }

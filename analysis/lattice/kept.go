@@ -1,8 +1,11 @@
 package lattice
 
+import "context"
+
 // A keptChain is the chain censored to the kept nodes: what is left when all
 // others have been eliminated. Nodes are numbered from 0.
 type keptChain struct {
+	ctx    context.Context
 	rates  matrix
 	exit   []float64
 	region []int32
@@ -12,7 +15,7 @@ type keptChain struct {
 
 func (f *factors) keptChain() *keptChain {
 	m := f.remain.rows
-	k := &keptChain{rates: f.remain, exit: f.remainExit, region: make([]int32, m), closed: make([]bool, m)}
+	k := &keptChain{ctx: f.ctx, rates: f.remain, exit: f.remainExit, region: make([]int32, m), closed: make([]bool, m)}
 	for i := range m {
 		node := f.node[f.ordering.kept+i]
 		k.region[i] = f.of[node]
@@ -59,7 +62,7 @@ func (k *keptChain) restrict(t team, leaves bool, inside func(i int) bool) *rest
 	}
 	r.system.below = matrix{columns: n, stride: n}
 	r.system.right = matrix{rows: n}
-	r.system.eliminate(t)
+	r.system.eliminate(k.ctx, t)
 	return r
 }
 

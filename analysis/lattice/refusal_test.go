@@ -133,3 +133,14 @@ func TestDimerSwitchRefused(t *testing.T) {
 		t.Errorf("got %v, want a DimensionError for 4", err)
 	}
 }
+
+// Counts beyond any lattice are refused before they are counted.
+func TestHugeCounts(t *testing.T) {
+	n := bind(t, toggle(20, 20), 1e9)
+	low, high := []int64{20e9, 0}, []int64{0, 20e9}
+	var large *TooLargeError
+	err := refusal(t, Problem{Network: n, Cores: []model.Core{box("low", low, low, low), box("high", high, high, high)}}, "at least")
+	if !errors.As(err, &large) {
+		t.Errorf("got %v, want a TooLargeError", err)
+	}
+}

@@ -2,6 +2,7 @@ package lattice
 
 import (
 	"context"
+	"sync"
 	"time"
 )
 
@@ -22,7 +23,12 @@ type solver struct {
 
 func newSolver(ctx context.Context, p *Problem, l *laid) (*solver, error) {
 	p.report("eliminating", 0)
-	f, err := factor(ctx, l.plan, p.threads(), func(done float64) { p.report("eliminating", min(done, 1)) })
+	var one sync.Mutex
+	f, err := factor(ctx, l.plan, p.threads(), func(done float64) {
+		one.Lock()
+		defer one.Unlock()
+		p.report("eliminating", min(done, 1))
+	})
 	if err != nil {
 		return nil, err
 	}
