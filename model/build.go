@@ -127,8 +127,9 @@ func (n *Network) bindReaction(d DraftReaction) (Reaction, error) {
 	}
 	r.Law = r.Free.Bind(n.values)
 	r.program = Compile(r.Law)
+	r.slope, r.freeSlope = newSweep(r.Law), newSweep(r.Free)
 	r.lawReads = r.Law.Reads()
-	r.local = r.program.renumbered(r.lawReads)
+	r.local = newSweep(r.Law).renumbered(r.lawReads)
 	r.reads = slices.Clone(r.lawReads)
 	for _, t := range d.Uses {
 		if !slices.Contains(r.reads, t.Species) {

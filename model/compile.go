@@ -1,45 +1,14 @@
 package model
 
-import (
-	"math"
-	"slices"
-)
+import "math"
 
-// Compile makes a program of a tree whose constants are bound. A sub-tree that
-// occurs several times is evaluated once.
-func Compile(n *Node) *Program {
-	c := newCompiler(n)
-	c.emit(n)
-	for i := range c.steps { // kept values lie above the stack
-		if code := c.steps[i].code; code == keep || code == recall {
-			c.steps[i].index += int32(c.most)
-		}
-	}
-	return &Program{steps: c.steps, depth: c.most + c.kept}
-}
-
-// renumbered gives the same program over fewer species: reads, in their order.
-func (p *Program) renumbered(reads []int) *Program {
-	out := &Program{steps: slices.Clone(p.steps), depth: p.depth}
-	for i := range out.steps {
-		s := &out.steps[i]
-		switch s.code {
-		case loadX, addX, subX, mulX, divX:
-			at, _ := slices.BinarySearch(reads, int(s.index))
-			s.index = int32(at)
-		}
-	}
-	return out
-}
-
-// compiler gathers the steps of a program.
+// compiler turns a tree into evaluators.
 type compiler struct {
-	steps       []step
-	depth, most int
-	ids         map[*Node]int // equal sub-trees have equal numbers
-	uses        map[int]int   // how often each is an operand
-	slots       map[int]int   // where the value of one used twice is kept
-	kept        int
+	ids   map[*Node]int // equal sub-trees have equal numbers
+	known map[treeKey]int
+	nodes []*Node // one of each number
+	// first and second are the numbers of the shared sub-trees, −1 if not chosen.
+	first, second int
 }
 
 // treeKey tells sub-trees apart: by their head and the numbers of their arguments.
@@ -51,176 +20,192 @@ type treeKey struct {
 }
 
 func newCompiler(n *Node) *compiler {
-	c := &compiler{ids: map[*Node]int{}, uses: map[int]int{}, slots: map[int]int{}}
-	c.number(n, map[treeKey]int{})
+	c := &compiler{ids: map[*Node]int{}, known: map[treeKey]int{}, first: -1, second: -1}
+	c.number(n)
+	c.nodes = c.byID()
 	return c
 }
 
-// number gives every sub-tree its number, equal ones the same, and counts uses.
-func (c *compiler) number(n *Node, known map[treeKey]int) int {
+// number gives every sub-tree its number, equal ones the same.
+func (c *compiler) number(n *Node) int {
 	if id, done := c.ids[n]; done {
 		return id
 	}
 	key := treeKey{op: n.Op, value: math.Float64bits(n.Value), index: n.Index}
 	for i, a := range n.Args {
-		key.args[i] = c.number(a, known) + 1
+		key.args[i] = c.number(a) + 1
 	}
-	id, old := known[key]
+	id, old := c.known[key]
 	if !old {
-		id = len(known)
-		known[key] = id
-		for _, a := range n.Args {
-			c.uses[c.ids[a]]++
-		}
+		id = len(c.known)
+		c.known[key] = id
 	}
 	c.ids[n] = id
 	return id
 }
 
-func (c *compiler) add(s step) { c.steps = append(c.steps, s) }
-
-// load puts a leaf in the register; what was there goes to the stack.
-func (c *compiler) load(s step) {
-	if len(c.steps) > 0 {
-		c.depth++
-		c.most = max(c.most, c.depth)
-	}
-	c.add(s)
-}
-
-// emit adds the steps of a tree, or recalls its value if there is one already.
-func (c *compiler) emit(n *Node) {
-	id := c.ids[n]
-	if slot, done := c.slots[id]; done {
-		c.load(step{code: recall, index: int32(slot)})
-		return
-	}
-	c.emitFresh(n)
-	if c.uses[id] > 1 && !n.isCheap() {
-		c.slots[id] = c.kept
-		c.add(step{code: keep, index: int32(c.kept)})
-		c.kept++
-	}
-}
-
-// isCheap tells that a tree is as fast to evaluate again as to keep: a leaf, or one
-// addition, multiplication or small power of leaves.
-func (n *Node) isCheap() bool {
-	for _, a := range n.Args {
-		if len(a.Args) > 0 {
-			return false
+// byID lists one sub-tree of each number.
+func (c *compiler) byID() []*Node {
+	out := make([]*Node, len(c.known))
+	for m, id := range c.ids {
+		if old := out[id]; old == nil || m.At < old.At {
+			out[id] = m
 		}
 	}
-	switch n.Op {
-	case OpPow:
-		return n.Args[1].is(2) || n.Args[1].is(3)
-	case OpNumber, OpSpecies, OpConstant, OpAdd, OpSub, OpMul, OpNeg:
-		return true
-	}
-	return false
+	return out
 }
 
-func (c *compiler) emitFresh(n *Node) {
+// cost is about the nanoseconds that an operator takes.
+func cost(op Op, args []*Node) int {
+	switch op {
+	case OpNumber, OpSpecies, OpConstant:
+		return 0
+	case OpPow:
+		if args[1].is(2) || args[1].is(3) || args[1].is(4) {
+			return 2
+		}
+		return 40
+	case OpHill, OpHillFall, OpExp, OpLog:
+		return 20
+	case OpDiv, OpSqrt:
+		return 5
+	}
+	return 2
+}
+
+// worthSharing is the least saving, in the units of cost, that a shared sub-tree
+// is chosen for.
+const worthSharing = 8
+
+// best gives the number of the sub-tree whose sharing saves most, −1 if none
+// saves enough. What is inside the sub-tree chosen first does not count.
+func (c *compiler) best(root *Node) int {
+	uses, costs := make([]int, len(c.nodes)), make([]int, len(c.nodes))
+	c.count(root, uses, costs)
+	best, most := -1, worthSharing-1
+	for id := range uses {
+		if saved := (uses[id] - 1) * costs[id]; saved > most {
+			best, most = id, saved
+		}
+	}
+	return best
+}
+
+// count counts how often each sub-tree is evaluated under n, and what it costs.
+func (c *compiler) count(n *Node, uses, costs []int) {
+	id := c.ids[n]
+	if id == c.first {
+		return
+	}
+	uses[id]++
+	total := cost(n.Op, n.Args)
+	for _, a := range n.Args {
+		c.count(a, uses, costs)
+		total += costs[c.ids[a]]
+	}
+	costs[id] = total
+}
+
+// emit gives the evaluator of a tree, which may be a shared one.
+func (c *compiler) emit(n *Node) evaluator {
+	switch c.ids[n] {
+	case c.first:
+		return func(_ []float64, a, _ float64) float64 { return a }
+	case c.second:
+		return func(_ []float64, _, b float64) float64 { return b }
+	}
+	return c.fresh(n)
+}
+
+// fresh gives the evaluator of a tree by its head. (A shared tree is fresh once,
+// where it is evaluated.)
+func (c *compiler) fresh(n *Node) evaluator {
 	switch n.Op {
 	case OpNumber:
-		c.load(step{code: loadN, value: n.Value})
+		return number64(n.Value)
 	case OpSpecies:
-		c.load(step{code: loadX, index: int32(n.Index)})
-	case OpConstant:
-		c.load(step{code: loadN, value: math.NaN()}) // not bound: there is no value
-	case OpAdd, OpSub, OpMul, OpDiv, OpPow:
-		c.emitBinary(n)
-	case OpHill, OpHillFall:
-		c.emitHill(n)
-	case OpNeg:
-		c.emit(n.Args[0])
-		c.add(step{code: neg})
-	default:
-		c.emitCall(n)
-	}
-}
-
-// forms are the steps of one operator by the kind of its operands.
-type forms struct{ stack, species, number, reverse stepCode }
-
-func formsOf(op Op) forms {
-	switch op {
+		i := n.Index
+		return func(x []float64, _, _ float64) float64 { return x[i] }
 	case OpAdd:
-		return forms{addS, addX, addN, addN}
+		return sumOf(c.operand(n.Args[0]), c.operand(n.Args[1]))
 	case OpSub:
-		return forms{subS, subX, subN, subR}
+		return differenceOf(c.operand(n.Args[0]), c.operand(n.Args[1]))
 	case OpMul:
-		return forms{mulS, mulX, mulN, mulN}
+		return productOf(c.operand(n.Args[0]), c.operand(n.Args[1]))
+	case OpDiv:
+		return quotientOf(c.operand(n.Args[0]), c.operand(n.Args[1]))
+	case OpPow:
+		return c.powerOf(n)
+	case OpHill, OpHillFall:
+		return c.hillOf(n)
+	case OpNeg:
+		f := c.emit(n.Args[0])
+		return func(x []float64, a, b float64) float64 { return -f(x, a, b) }
+	case OpConstant:
+		return number64(math.NaN()) // not bound: there is no value
 	}
-	return forms{divS, divX, divN, divR}
+	return c.applyOf(n)
 }
 
-func (c *compiler) emitBinary(n *Node) {
-	left, right := n.Args[0], n.Args[1]
-	if n.Op == OpPow {
-		c.emitPower(left, right)
-		return
-	}
-	f := formsOf(n.Op)
-	commutes := n.Op == OpAdd || n.Op == OpMul
+func number64(v float64) evaluator { return func([]float64, float64, float64) float64 { return v } }
+
+// operand tells what kind of operand a tree is.
+func (c *compiler) operand(n *Node) operand {
+	o := operand{kind: general}
 	switch {
-	case right.Op == OpNumber:
-		c.emit(left)
-		c.add(step{code: f.number, value: right.Value})
-	case left.Op == OpNumber:
-		c.emit(right)
-		c.add(step{code: f.reverse, value: left.Value})
-	case right.Op == OpSpecies:
-		c.emit(left)
-		c.add(step{code: f.species, index: int32(right.Index)})
-	case left.Op == OpSpecies && commutes:
-		c.emit(right)
-		c.add(step{code: f.species, index: int32(left.Index)})
+	case n.Op == OpNumber:
+		o = operand{kind: literal, value: n.Value}
+	case n.Op == OpSpecies:
+		o = operand{kind: amount, index: n.Index}
+	}
+	o.f = c.emit(n)
+	return o
+}
+
+func (c *compiler) powerOf(n *Node) evaluator {
+	o := c.operand(n.Args[0])
+	f, i := o.f, o.index
+	switch exponent := n.Args[1]; {
+	case exponent.is(2) && o.kind == amount:
+		return func(x []float64, _, _ float64) float64 { v := x[i]; return v * v }
+	case exponent.is(2):
+		return func(x []float64, a, b float64) float64 { v := f(x, a, b); return v * v }
+	case exponent.is(3):
+		return func(x []float64, a, b float64) float64 { v := f(x, a, b); return v * v * v }
+	case exponent.Op == OpNumber:
+		e := exponent.Value
+		return func(x []float64, a, b float64) float64 { return power(f(x, a, b), e) }
 	default:
-		c.emit(left)
-		c.emit(right)
-		c.depth--
-		c.add(step{code: f.stack})
+		g := c.emit(exponent)
+		return func(x []float64, a, b float64) float64 { return power(f(x, a, b), g(x, a, b)) }
 	}
 }
 
-func (c *compiler) emitPower(base, exponent *Node) {
-	c.emit(base)
-	if exponent.Op != OpNumber {
-		c.emit(exponent)
-		c.depth--
-		c.add(step{code: powS})
-		return
-	}
-	switch exponent.Value {
-	case 2:
-		c.add(step{code: square})
-	case 3:
-		c.add(step{code: cube})
-	default:
-		c.add(step{code: powN, value: exponent.Value})
-	}
-}
-
-func (c *compiler) emitHill(n *Node) {
+func (c *compiler) hillOf(n *Node) evaluator {
 	if n.Args[1].Op != OpNumber || n.Args[2].Op != OpNumber {
-		c.emitCall(n)
-		return
+		return c.applyOf(n)
 	}
-	code := hillN
+	f, half, steep := c.emit(n.Args[0]), n.Args[1].Value, n.Args[2].Value
 	if n.Op == OpHillFall {
-		code = fallN
+		return func(x []float64, a, b float64) float64 { return hill(half, f(x, a, b), steep) }
 	}
-	c.emit(n.Args[0])
-	c.add(step{code: code, value: n.Args[1].Value})
-	c.add(step{code: argument, value: n.Args[2].Value})
+	return func(x []float64, a, b float64) float64 { return hill(f(x, a, b), half, steep) }
 }
 
-func (c *compiler) emitCall(n *Node) {
-	for _, a := range n.Args {
-		c.emit(a)
+// applyOf is any operator or function, by Apply.
+func (c *compiler) applyOf(n *Node) evaluator {
+	op := n.Op
+	var f [3]evaluator
+	for i, arg := range n.Args {
+		f[i] = c.emit(arg)
 	}
-	c.depth -= len(n.Args) - 1
-	code := [...]stepCode{apply1, apply2, apply3}[len(n.Args)-1]
-	c.add(step{code: code, index: int32(n.Op)})
+	switch len(n.Args) {
+	case 1:
+		return func(x []float64, a, b float64) float64 { return Apply(op, f[0](x, a, b), 0, 0) }
+	case 2:
+		return func(x []float64, a, b float64) float64 { return Apply(op, f[0](x, a, b), f[1](x, a, b), 0) }
+	}
+	return func(x []float64, a, b float64) float64 {
+		return Apply(op, f[0](x, a, b), f[1](x, a, b), f[2](x, a, b))
+	}
 }

@@ -73,6 +73,12 @@ func (n *Node) replay(tape, dx, dc []float64, weight float64) []float64 {
 // derivatives with respect to each argument.
 func Partials(op Op, a, b, c float64, d *[3]float64) float64 {
 	v := Apply(op, a, b, c)
+	partials(op, a, b, c, v, d)
+	return v
+}
+
+// partials sets the partial derivatives of op, whose value is v.
+func partials(op Op, a, b, c, v float64, d *[3]float64) {
 	switch op {
 	case OpAdd:
 		d[0], d[1] = 1, 1
@@ -99,7 +105,6 @@ func Partials(op Op, a, b, c float64, d *[3]float64) float64 {
 	case OpHillFall:
 		hillPartials(a, b, c, -1, d)
 	}
-	return v
 }
 
 func kinkPartials(op Op, a, b float64, d *[3]float64) {
@@ -116,9 +121,7 @@ func kinkPartials(op Op, a, b float64, d *[3]float64) {
 // powerPartials are those of v = aᵇ: b aᵇ⁻¹ and v ln a. A power of a negative
 // number has no derivative in the exponent.
 func powerPartials(a, b, v float64) (da, db float64) {
-	if b != 0 {
-		da = b * power(a, b-1)
-	}
+	da = powerSlope(a, b)
 	switch {
 	case a > 0:
 		db = v * math.Log(a)
@@ -127,6 +130,17 @@ func powerPartials(a, b, v float64) (da, db float64) {
 		db = math.NaN()
 	}
 	return da, db
+}
+
+// powerSlope is ∂aᵇ/∂a.
+func powerSlope(a, b float64) float64 {
+	switch b {
+	case 0:
+		return 0
+	case 2:
+		return 2 * a
+	}
+	return b * power(a, b-1)
 }
 
 // hillPartials: with h = xⁿ/(kⁿ+xⁿ) and g = 1−h, ∂h/∂x = n h g/x,

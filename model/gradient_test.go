@@ -103,9 +103,14 @@ func TestGradientEdges(t *testing.T) {
 		{"x*0", 0, 0},
 	} {
 		dx := make([]float64, 3)
-		v := law(t, c.text).Gradient([]float64{0, 0, 0}, nil, dx, nil)
+		tree := law(t, c.text)
+		v := tree.Gradient([]float64{0, 0, 0}, nil, dx, nil)
 		if v != c.value || dx[0] != c.dx {
 			t.Errorf("%s at 0: %v with slope %v, want %v with %v", c.text, v, dx[0], c.value, c.dx)
+		}
+		v = newSweep(tree).gradient([]float64{0, 0, 0}, nil, dx, nil)
+		if v != c.value || dx[0] != c.dx {
+			t.Errorf("%s at 0, compiled: %v with slope %v, want %v with %v", c.text, v, dx[0], c.value, c.dx)
 		}
 	}
 }
@@ -161,6 +166,7 @@ func TestGradientDifferences(t *testing.T) {
 		c := []float64{0.5 + rng.Float64(), 0.5 + rng.Float64()}
 		dx, dc := make([]float64, 3), make([]float64, 2)
 		v := tree.Gradient(x, c, dx, dc)
+		checkSweep(t, tree, x, c, v, dx, dc)
 		for i := range x {
 			compare(t, tree, x, c, x, i, v, dx[i])
 		}
@@ -181,6 +187,22 @@ func compare(t *testing.T, tree *Node, x, c, moved []float64, i int, value, got 
 		}
 	}
 	t.Errorf("%s: derivative %v, difference %v", tree.Format([]string{"x", "y", "z"}, []string{"a", "b"}), got, want)
+}
+
+// checkSweep holds the compiled gradient against the tree's: the value in every bit,
+// the derivatives but for the order of sums.
+func checkSweep(t *testing.T, tree *Node, x, c []float64, v float64, dx, dc []float64) {
+	t.Helper()
+	ex, ec := make([]float64, len(dx)), make([]float64, len(dc))
+	if w := newSweep(tree).gradient(x, c, ex, ec); w != v {
+		t.Errorf("the compiled gradient gives the value %v, the tree %v", w, v)
+	}
+	for i, d := range append(ex, ec...) {
+		want := append(append([]float64(nil), dx...), dc...)[i]
+		if math.Abs(d-want) > 1e-11*max(1, math.Abs(want), math.Abs(v)) {
+			t.Errorf("the compiled gradient gives %v, the tree %v", d, want)
+		}
+	}
 }
 
 func difference(tree *Node, x, c, moved []float64, i int, h float64) float64 {

@@ -49,7 +49,7 @@ func editDistance(a, b string, limit int) int {
 	for i := 1; i <= len(s); i++ {
 		row[0] = i
 		for j := 1; j <= len(t); j++ {
-			row[j] = min(last[j]+1, row[j-1]+1, last[j-1]+cost(s[i-1] != t[j-1]))
+			row[j] = min(last[j]+1, row[j-1]+1, last[j-1]+oneIf(s[i-1] != t[j-1]))
 			if i > 1 && j > 1 && s[i-1] == t[j-2] && s[i-2] == t[j-1] {
 				row[j] = min(row[j], before[j-2]+1)
 			}
@@ -59,7 +59,7 @@ func editDistance(a, b string, limit int) int {
 	return last[len(t)]
 }
 
-func cost(differs bool) int {
+func oneIf(differs bool) int {
 	if differs {
 		return 1
 	}

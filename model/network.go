@@ -61,11 +61,13 @@ type Reaction struct {
 	Scale float64
 
 	program *Program
-	// local is the same program over the amounts of lawReads only, in their order.
-	local    *Program
+	// local is the law over the amounts of lawReads only, in their order.
+	local    *sweep
 	lawReads []int
-	reads    []int   // species that the propensity depends on, ascending
-	factor   float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
+	// slope and freeSlope give the gradients of Law and Free.
+	slope, freeSlope *sweep
+	reads            []int   // species that the propensity depends on, ascending
+	factor           float64 // mass action: Coefficient·Scale/Ω^(order in scaling species)
 }
 
 // Program gives the law compiled for fast evaluation at many amounts.
@@ -200,7 +202,7 @@ func (n *Network) Propensity(r int, counts []int64) float64 {
 	for _, i := range re.lawReads {
 		x = append(x, float64(counts[i])/n.Unit(i))
 	}
-	return re.Scale * re.local.Eval(x)
+	return re.Scale * re.local.value(x)
 }
 
 // MassActionFactor gives the c of the propensity c ∏ nᵢ!/(nᵢ−νᵢ)! of a
@@ -214,13 +216,13 @@ func (n *Network) Flux(r int, x []float64) float64 { return n.Reactions[r].progr
 // FluxGradient gives Flux and overwrites dx, one per species, with its partial
 // derivatives in the amounts.
 func (n *Network) FluxGradient(r int, x, dx []float64) float64 {
-	return n.Reactions[r].Law.Gradient(x, nil, dx, nil)
+	return n.Reactions[r].slope.gradient(x, nil, dx, nil)
 }
 
 // FluxConstants gives Flux and overwrites dc, one per constant, with its partial
 // derivatives in the constants.
 func (n *Network) FluxConstants(r int, x, dc []float64) float64 {
-	return n.Reactions[r].Free.Gradient(x, n.values, nil, dc)
+	return n.Reactions[r].freeSlope.gradient(x, n.values, nil, dc)
 }
 
 // AmountChange gives what one firing of reaction r per unit of time adds to

@@ -50,6 +50,24 @@ func TestProgramAllocatesNothing(t *testing.T) {
 	}
 }
 
+// TestNetworkAllocatesNothing checks what engines call in their loops.
+func TestNetworkAllocatesNothing(t *testing.T) {
+	n := load(t, "pair")
+	counts, x, dx := []int64{30, 40}, []float64{1, 1.3}, make([]float64, 2)
+	dc := make([]float64, len(n.Constants))
+	calls := testing.AllocsPerRun(100, func() {
+		for r := range n.Reactions {
+			n.Propensity(r, counts)
+			n.Flux(r, x)
+			n.FluxGradient(r, x, dx)
+			n.FluxConstants(r, x, dc)
+		}
+	})
+	if calls > 0 {
+		t.Errorf("a pass over the network allocates %v times", calls)
+	}
+}
+
 // The laws of the benchmarks: one species with literal powers, and three species.
 const (
 	shortLaw = "0.02 + 1.5*x^2/(1 + x^2)"
@@ -76,7 +94,8 @@ func programEval(n *Node) func([]float64) float64 { return Compile(n).Eval }
 
 func gradientEval(n *Node) func([]float64) float64 {
 	dx := make([]float64, 3)
-	return func(x []float64) float64 { return n.Gradient(x, nil, dx, nil) }
+	s := newSweep(n)
+	return func(x []float64) float64 { return s.gradient(x, nil, dx, nil) }
 }
 
 func BenchmarkShortLawTree(b *testing.B)     { benchmarkLaw(b, shortLaw, treeEval) }
