@@ -42,6 +42,10 @@ const (
 	burstStream = 1 << 63
 )
 
+// endOfTime is later than any time a run may reach, and earlier than any event of a
+// state with a total propensity below never.
+const endOfTime = 0x1p800
+
 // reset puts a run at its start.
 func (s *system) reset(l *lane, run int) {
 	replicate := s.Group<<40 | (s.FirstReplicate + uint64(run))
@@ -85,7 +89,7 @@ func (l *lane) rewind(step int) {
 }
 
 func (s *system) setNext(l *lane) {
-	l.next = math.Inf(1)
+	l.next = endOfTime
 	if l.sample < len(s.Times) {
 		l.next = s.Times[l.sample]
 	} else if s.Until > 0 {

@@ -4,6 +4,8 @@ import "math"
 
 // rushPair is the rush of two rows of at most two reactions each, the shape of a
 // gene with its transcript or of two genes.
+//
+// A total that is not known, or 0, makes t NaN or later than any l.next.
 func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
 	a, b := k.rows[0].entries, k.rows[1].entries
 	shifts := [4]uint64{k.shifts[groupWidth+1][0], k.shifts[groupWidth][0], k.shifts[1][0], k.shifts[0][0]}
@@ -11,10 +13,10 @@ func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
 		for ; i < len(lanes); i++ {
 			l := &lanes[i]
 			at := l.at[0]
-			x, y, draw := &a[uint32(at)], &b[at>>32], &l.draws[step]
+			x, y, draw := &a[uint32(at)], &b[at>>32], &l.draws[step&(blockSteps-1)]
 			total := x.total + y.total
 			t := l.time + draw.Exp/total
-			if x.cores&y.cores != 0 || !(total >= never) || !(t <= l.next) {
+			if x.cores&y.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
 			u := math.Float64bits(draw.Unit * total)

@@ -3,7 +3,6 @@ package ssa
 import (
 	"errors"
 	"fmt"
-	"math"
 	"slices"
 
 	"holdfast/model"
@@ -151,8 +150,8 @@ func (p *Plan) checkNumbers() error {
 		return fmt.Errorf("replicates %d and %d more; they must be below 2⁴⁰", p.FirstReplicate, p.Runs)
 	case p.Group >= 1<<22:
 		return fmt.Errorf("group is %d; it must be below 2²²", p.Group)
-	case !(p.Until >= 0) || math.IsInf(p.Until, 1):
-		return fmt.Errorf("until is %v; it must be finite and not negative (0: no horizon)", p.Until)
+	case !(p.Until >= 0) || p.Until > endOfTime:
+		return fmt.Errorf("until is %v; it must be from 0 to 2⁸⁰⁰ (0: no horizon)", p.Until)
 	case p.MaxEvents < 0:
 		return fmt.Errorf("max events is %d; it must not be negative (0: no limit)", p.MaxEvents)
 	case p.MaxCount < 0 || p.MaxCount > maxCountLimit:
@@ -168,8 +167,8 @@ func (p *Plan) checkNumbers() error {
 func (p *Plan) checkTimes() error {
 	last := 0.0
 	for k, t := range p.Times {
-		if !(t >= last) || math.IsInf(t, 1) {
-			return fmt.Errorf("times[%d] is %v; times must be finite, not negative, and ascend", k, t)
+		if !(t >= last) || t > endOfTime {
+			return fmt.Errorf("times[%d] is %v; times must be from 0 to 2⁸⁰⁰, and ascend", k, t)
 		}
 		last = t
 	}

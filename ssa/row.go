@@ -103,7 +103,9 @@ func (r *row) fill(e *entry, props []propensity, targets []target, counts []int6
 		e.sums[j] = sum
 	}
 	e.cores = r.cores(targets, counts)
-	e.total = sum
+	if e.total = sum; sum < never {
+		e.total, e.sums = 0, [groupWidth - 1]float64{}
+	}
 }
 
 // cores gives the bits of the targets whose bounds hold in the row's species.

@@ -43,7 +43,7 @@ const Block = 64
 // need more to the end.
 func (s *Draws) Fill(dst *[Block]Draw) {
 	high, low := s.Main.words()
-	high, low, edges := fill(dst, &expZiggurat.strips, high, low)
+	high, low, edges := fill(dst, &expZiggurat.strips, &oneAndTwo, high, low)
 	s.Main.setWords(high, low)
 	for ; edges != 0; edges &= edges - 1 {
 		d := &dst[bits.TrailingZeros64(edges)]
@@ -52,11 +52,13 @@ func (s *Draws) Fill(dst *[Block]Draw) {
 	}
 }
 
-func fill(dst *[Block]Draw, strips *[256]Strip, high, low uint64) (nextHigh, nextLow, edges uint64) {
-	_, _ = dst[0], strips[0] // no test for nil in the loop
+// fill makes draws and the bits of those whose exponential number needs more. The
+// constants come by reference, since in line they would take an instruction each.
+func fill(dst *[Block]Draw, strips *[256]Strip, c *[2]congruential, high, low uint64) (nextHigh, nextLow, edges uint64) {
+	_, _, _ = dst[0], strips[0], c[0] // no tests for nil in the loop
 	for i := range dst {
-		h, l := advance(high, low)
-		high, low = advanceTwo(high, low)
+		h, l := c[0].advance(high, low)
+		high, low = c[1].advance(high, low)
 		b := output(h, l)
 		strip := &strips[b&255]
 		dst[i].Exp = float64(int64(b>>11)) * strip.Width
@@ -69,9 +71,12 @@ func fill(dst *[Block]Draw, strips *[256]Strip, high, low uint64) (nextHigh, nex
 	return high, low, edges
 }
 
-// The 128-bit linear congruential generator of PCG XSL RR 128/64; O'Neill, Harvey
-// Mudd College technical report HMC-CS-2014-0905, section 6. Two steps of one are
-// a step of another.
+// A congruential is a linear congruential generator of 128 bits, high and low
+// words apart.
+type congruential struct{ multiplierHigh, multiplierLow, incrementHigh, incrementLow uint64 }
+
+// The generator of PCG XSL RR 128/64, O'Neill, Harvey Mudd College technical report
+// HMC-CS-2014-0905, section 6; and the one whose step is two of its steps.
 const (
 	multiplier = 2549297995355413924<<64 | 4865540595714422341
 	increment  = 6364136223846793005<<64 | 1442695040888963407
@@ -82,21 +87,18 @@ const (
 	word = 1<<64 - 1
 )
 
-// advance gives the next state.
-func advance(high, low uint64) (nextHigh, nextLow uint64) {
-	h, l := bits.Mul64(low, multiplier&word)
-	h += high*(multiplier&word) + low*(multiplier>>64)
-	l, carry := bits.Add64(l, increment&word, 0)
-	h, _ = bits.Add64(h, increment>>64, carry)
-	return h, l
+// oneAndTwo are the generators of one step and of two. They are never written.
+var oneAndTwo = [2]congruential{
+	{multiplier >> 64, multiplier & word, increment >> 64, increment & word},
+	{twoMultiplier >> 64, twoMultiplier & word, twoIncrement >> 64, twoIncrement & word},
 }
 
-// advanceTwo gives the state after the next.
-func advanceTwo(high, low uint64) (nextHigh, nextLow uint64) {
-	h, l := bits.Mul64(low, twoMultiplier&word)
-	h += high*(twoMultiplier&word) + low*(twoMultiplier>>64)
-	l, carry := bits.Add64(l, twoIncrement&word, 0)
-	h, _ = bits.Add64(h, twoIncrement>>64, carry)
+// advance gives the next state.
+func (c *congruential) advance(high, low uint64) (nextHigh, nextLow uint64) {
+	h, l := bits.Mul64(low, c.multiplierLow)
+	h += high*c.multiplierLow + low*c.multiplierHigh
+	l, carry := bits.Add64(l, c.incrementLow, 0)
+	h, _ = bits.Add64(h, c.incrementHigh, carry)
 	return h, l
 }
 
