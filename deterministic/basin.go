@@ -9,12 +9,14 @@ import (
 	"gonum.org/v1/gonum/mat"
 )
 
-// basinTolerance is the relative accuracy of the flow that labels a point.
-const basinTolerance = 1e-8
+// basinTolerance is the relative error of a step of the flow that labels a point,
+// by the method's estimate of order 3; the error of the step taken, of order 4, is
+// smaller.
+const basinTolerance = 1e-6
 
 // onSaddle is how close to a state that is not stable, relative to its amounts, a
 // flow may come: what lies nearer is not told apart by a flow of that accuracy.
-const onSaddle = 100 * basinTolerance
+const onSaddle = 10 * basinTolerance
 
 // A BasinError tells why a point has no label.
 type BasinError struct {
@@ -28,13 +30,14 @@ type BasinError struct {
 
 func (e *BasinError) Error() string { return e.problem }
 
-// Basin gives the index in Stable() of the stable resting state that the flow of
+// Basin gives the index in States of the stable resting state that the flow of
 // the rate equations from amounts x leads to. x must have the conserved totals of
 // the map; where it has not, where the flow runs away (*RunawayError), and where it
 // ends on a saddle or does not come to rest (*BasinError) there is an error.
 //
-// The flow is followed by an implicit method to a relative accuracy of 1e-8 a
-// step, until it enters a region about a stable state in which a quadratic form
+// The flow is followed by an implicit method to a relative accuracy of 1e-6 a
+// step, so that points nearer to a boundary of basins than about that may get either
+// label, until it enters a region about a stable state in which a quadratic form
 // falls along the flow. Basin is safe for concurrent use.
 func (m *Map) Basin(x []float64) (state int, err error) {
 	return m.BasinContext(context.Background(), x)
@@ -98,9 +101,9 @@ func (m *Map) checkPoint(x []float64) error {
 // onUnstable gives the index in States of a state that is not stable and that x
 // lies on, or -1.
 func (m *Map) onUnstable(x []float64) int {
-	for k := len(m.Cores); k < len(m.States); k++ {
+	for k := range m.States {
 		s := &m.States[k]
-		near := true
+		near := !s.Kind.Stable() && s.Kind != Declared
 		for i, v := range s.Amounts {
 			if !(abs(x[i]-v) <= onSaddle*(v+m.resolution[i])) {
 				near = false
@@ -127,10 +130,16 @@ type sink struct {
 func (m *Map) inSink(x []float64) int {
 	for k := range m.sinks {
 		if m.sinks[k].value(m.class, x) <= m.sinks[k].level {
-			return k
+			return m.stateOf(k)
 		}
 	}
 	return -1
+}
+
+// stateOf gives the index in States of the resting state that is root k: where the
+// design declares cores their order differs.
+func (m *Map) stateOf(k int) int {
+	return slices.IndexFunc(m.States, func(s State) bool { return s.Name == m.names[k] })
 }
 
 func (s *sink) value(c *class, x []float64) float64 {

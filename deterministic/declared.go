@@ -8,7 +8,11 @@ import (
 	"holdfast/model"
 )
 
-// declare replaces or adds the cores that the design declares.
+// declare replaces or adds the cores that the design declares. Where all declared
+// names are those of stable states their cores are replaced. Where one is not, one
+// declared core alone is a state besides the resting ones; two or more are all the
+// states there are, start and target of a passage: resting states that are not
+// declared lose their cores.
 func (k *coreMaker) declare() error {
 	m := k.m
 	isDeclared := make([]bool, len(m.Cores))
@@ -25,6 +29,9 @@ func (k *coreMaker) declare() error {
 		k.addDeclared(c)
 		isDeclared = append(isDeclared, true)
 	}
+	if len(m.Network.Declared) > 1 && countKind(m.States, func(k Kind) bool { return k == Declared }) > 0 {
+		isDeclared = m.onlyDeclared(isDeclared)
+	}
 	for i := range m.Cores {
 		for j := range i {
 			if isDeclared[i] || isDeclared[j] {
@@ -36,6 +43,26 @@ func (k *coreMaker) declare() error {
 	}
 	k.warnHeld(isDeclared)
 	return nil
+}
+
+// onlyDeclared takes away the cores that are not declared, and puts their states
+// behind those that have one.
+func (m *Map) onlyDeclared(isDeclared []bool) []bool {
+	var cores []model.Core
+	var with, without []State
+	for i, declared := range isDeclared {
+		if declared {
+			cores, with = append(cores, m.Cores[i]), append(with, m.States[i])
+		} else {
+			without = append(without, m.States[i])
+		}
+	}
+	for _, s := range without {
+		m.warn("the resting state %q has no core: the declared ones, not all of resting states, are all the states", s.Name)
+	}
+	m.States = slices.Concat(with, without, m.States[len(m.Cores):])
+	m.Cores = cores
+	return slices.Repeat([]bool{true}, len(cores))
 }
 
 // declaredCore makes the core of a declaration, of the stable state i or of none.
@@ -158,6 +185,9 @@ func (k *coreMaker) apart(a, b *model.Core) error {
 func (k *coreMaker) warnHeld(isDeclared []bool) {
 	m := k.m
 	for _, s := range m.States[len(m.Cores):] {
+		if s.Kind.Stable() {
+			continue
+		}
 		for i, c := range m.Cores {
 			inside := isDeclared[i]
 			for j, v := range s.Molecules {

@@ -49,7 +49,8 @@ type Map struct {
 
 	sys   *system
 	class *class
-	roots []*candidate // the resting states, in the order of States without the declared
+	roots []*candidate // the resting states, in the order in which they were named
+	names []string     // their names
 	sinks []sink
 
 	limit, resolution []float64

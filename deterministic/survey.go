@@ -66,6 +66,9 @@ func (m *Map) states(f *finder) {
 		m.States = append(m.States, m.state(f.w, c))
 	}
 	m.nameStates()
+	for i := range m.States {
+		m.names = append(m.names, m.States[i].Name)
+	}
 	sum, ok := f.indexSum()
 	m.Search = Search{
 		Starts: f.starts, Flows: f.flows, Checked: ok, Balanced: ok && sum == 1, Scanned: m.class.dim() == 1 && f.scanned,

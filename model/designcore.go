@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 )
 
@@ -22,8 +23,8 @@ func (d *designer) readCores(e *tomlEntry) {
 }
 
 func (d *designer) oneCore(e *tomlEntry, t *tomlTable) {
-	if !isStateName(e.key) {
-		d.errorf(e.at, nearHint(e.key, []string{"only", "low", "middle", "high", "level1"}), "no state can be called %q", e.key)
+	if problem := badStateName(e.key); problem != "" {
+		d.errorf(e.at, nearHint(e.key, []string{"only", "low", "middle", "high", "level1"}), "no state can be called %q: %s", e.key, problem)
 	}
 	core := DeclaredCore{State: e.key}
 	for i := range t.entries {
@@ -37,15 +38,25 @@ func (d *designer) oneCore(e *tomlEntry, t *tomlTable) {
 	d.draft.Declared = append(d.draft.Declared, core)
 }
 
-// isStateName tells whether a state of a network can have this name: one state is
-// "only", two are "low" and "high", three have "middle" between them, more are
-// "level1", "level2" and so on.
-func isStateName(name string) bool {
-	switch name {
-	case "only", "low", "middle", "high":
-		return true
+// badStateName says why a state cannot be called so; "" if it can. The program's own
+// names are "only" for one stable state, "low" and "high" for two, with "middle" for
+// three, "level1", "level2" and so on for more; a core of any other name makes a
+// state of its own.
+func badStateName(name string) string {
+	switch {
+	case !isIdentifier(name):
+		return "a name is letters, digits and _, and begins with a letter"
+	case slices.Contains([]string{"any", "censored", "elsewhere", "absorbed", "stationary"}, name):
+		return "the word means something else in results"
+	case name == "saddle" || isNumbered(name, "saddle") || isNumbered(name, "unstable") || isNumbered(name, "degenerate"):
+		return "states that are not stable are called so"
 	}
-	digits, ok := strings.CutPrefix(name, "level")
+	return ""
+}
+
+// isNumbered tells whether name is the word with a number from 1 behind it.
+func isNumbered(name, word string) bool {
+	digits, ok := strings.CutPrefix(name, word)
 	return ok && digits != "" && digits[0] != '0' && strings.Trim(digits, "0123456789") == ""
 }
 
