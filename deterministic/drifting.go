@@ -52,6 +52,24 @@ func (f *finder) loosen(face face) {
 	}
 }
 
+// linger notes where a flow came to rest, with every species present, on no
+// separate state; two such places apart make a continuum.
+func (f *finder) linger(c *class, x []float64) {
+	if f.drifting != nil || !f.present(c, x) {
+		return
+	}
+	if f.lingering == nil {
+		f.lingering = slices.Clone(x)
+		return
+	}
+	for i, v := range x {
+		if abs(v-f.lingering[i]) > 1e-3*(v+f.resolution[i]) {
+			f.drift(c, x)
+			return
+		}
+	}
+}
+
 // present tells whether every species that the face does not freeze is there.
 func (f *finder) present(c *class, x []float64) bool {
 	for _, i := range c.free() {

@@ -100,3 +100,26 @@ func logUniform(r *rand.Rand, low, high float64) float64 {
 
 func pow10(x float64) float64 { return math.Pow(10, x) }
 func log10(x float64) float64 { return math.Log10(x) }
+
+// fastDimers is the dimer switch with its bindings and partings faster by a factor:
+// the same resting states.
+func fastDimers(t testing.TB, factor float64) *model.Network {
+	d := newDraft(1, "a", "a2", "b", "b2", "o", "oa2", "ob2", "oa2b2")
+	for i := 4; i < 8; i++ {
+		d.Species[i].Fixed = true
+	}
+	d.Species[0].Start, d.Species[4].Start, d.Readout = 20, 1, 2
+	both := func(left, right []model.Term, forth, back float64) {
+		d.add(left, nil, right, factor*forth).add(right, nil, left, factor*back)
+	}
+	both(several(0, 2), terms(1), 5, 5)
+	both(several(2, 2), terms(3), 5, 5)
+	both(terms(4, 1), terms(5), 5, 1)
+	both(terms(4, 3), terms(6), 5, 1)
+	both(terms(5, 3), terms(7), 5, 1)
+	both(terms(6, 1), terms(7), 5, 1)
+	for _, p := range [][2]int{{4, 0}, {4, 2}, {5, 0}, {6, 2}} {
+		d.add(nil, terms(p[0]), terms(p[1]), 1)
+	}
+	return d.add(terms(0), nil, nil, 0.3).add(terms(2), nil, nil, 0.3).network(t)
+}

@@ -23,6 +23,7 @@ type finder struct {
 	unsettled  int
 	scanned    bool // every line was searched without a gap
 	drifting   *ContinuumError
+	lingering  []float64 // where a flow came to rest on no separate state, or nil
 }
 
 // candidate is a resting state with its type.
@@ -232,6 +233,9 @@ func (f *finder) flowToRest(c *class, x []float64) *candidate {
 	})
 	switch end {
 	case flowSettled:
+		if at == nil {
+			f.linger(c, x)
+		}
 		return at
 	case flowRanAway:
 		f.ranAway = append(f.ranAway, species)
