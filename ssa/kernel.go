@@ -16,14 +16,22 @@ func newKernel(w *worker) kernel {
 
 // rush gives the fastest rush for the rows.
 func (k *lookup) rush() rush {
-	narrow := true
+	narrow := k.bursty == 0
 	for _, r := range k.rows {
 		narrow = narrow && len(r.reactions) <= 2
 	}
 	if len(k.rows) == 2 && narrow {
 		return rushPair
 	}
-	return rushNone
+	switch k.width() {
+	case 1:
+		return rushOne
+	case 4:
+		return rushFour
+	case 6:
+		return rushSix
+	}
+	return rushEight
 }
 
 // rushNone leaves all events to be done with care.

@@ -1,7 +1,15 @@
 package ssa
 
 import (
+	"math"
 	"slices"
+)
+
+// The entries before those of the rows; see lookup.
+const (
+	nowhere = iota
+	nothing
+	firstEntry
 )
 
 // maxRows is the most rows that a lane's position has room for.
@@ -17,11 +25,19 @@ type position [maxRows / 2]uint64
 // beyond.
 type lookup struct {
 	*worker
-	rows   []*row
-	steps  []int64 // the largest increase of each species by one firing
-	shifts [maxRows * groupWidth]position
+	rows []*row
+	// entries are those of all rows. Entry nowhere is never filled in: it is where
+	// lanes without a run stay. Entry nothing is that of rows that are not there.
+	entries []entry
+	steps   []int64 // the largest increase of each species by one firing
+	shifts  [maxRows * groupWidth]position
 	// reaction at each place, groupWidth to a row; −1: none
 	reaction [maxRows * groupWidth]int
+
+	// Where place p of n rows is counted from the end, as a rush counts: changes of
+	// position, and bits of the reactions that have bursts.
+	back   [maxRows * groupWidth]position
+	bursty uint64
 
 	spilled bool // a state is beyond any row: the lanes need another kernel
 }
@@ -71,6 +87,7 @@ func (k *lookup) setReactions() {
 // hold makes all rows large enough for counts; it tells whether they can be.
 // Positions of before are of no use after it.
 func (k *lookup) hold(counts []int64) bool {
+	end := int64(firstEntry)
 	for _, r := range k.rows {
 		for i, s := range r.species {
 			r.counts[i] = min(r.counts[i], k.MaxCount+1)
@@ -78,16 +95,46 @@ func (k *lookup) hold(counts []int64) bool {
 				r.counts[i] = min(2*r.counts[i], k.MaxCount+1)
 			}
 		}
-		if !r.lay(k.steps) {
+		size, ok := r.lay(end, k.steps)
+		if !ok {
 			return false
 		}
+		end += size
 	}
+	k.entries = make([]entry, end)
+	for i := range k.entries {
+		k.entries[i].total = math.NaN()
+	}
+	k.entries[nothing] = entry{cores: math.MaxUint64}
+	k.setShifts()
+	return true
+}
+
+func (k *lookup) setShifts() {
+	last := k.width()*groupWidth - 1
 	for p, r := range k.reaction {
-		if r >= 0 {
-			k.shifts[p] = k.shift(r)
+		if r < 0 {
+			continue
+		}
+		k.shifts[p] = k.shift(r)
+		k.back[last-p] = k.shifts[p]
+		if len(k.bursts[r]) > 0 {
+			k.bursty |= 1 << (last - p)
 		}
 	}
-	return true
+}
+
+// width is the number of rows that the rush is made for.
+func (k *lookup) width() int {
+	switch n := len(k.rows); {
+	case n <= 1:
+		return 1
+	case n <= 4:
+		return 4
+	case n <= 6:
+		return 6
+	}
+	return 8
 }
 
 // shift is what a firing of reaction r, but for bursts, adds to a position.
@@ -109,6 +156,9 @@ func (k *lookup) locate(counts []int64) (at position, within bool) {
 		index, ok := row.index(counts)
 		at[i/2] += uint64(index) << (32 * (i % 2))
 		within = within && ok
+	}
+	for i := len(k.rows); i < maxRows; i++ {
+		at[i/2] += nothing << (32 * (i % 2))
 	}
 	return at, within
 }
@@ -149,7 +199,7 @@ func (k *lookup) place(l *lane) bool {
 func (k *lookup) total(l *lane) float64 {
 	sum := 0.0
 	for i, row := range k.rows {
-		e := &row.entries[l.at.half(i)]
+		e := &k.entries[l.at.half(i)]
 		if e.total != e.total {
 			row.fill(e, k.props, k.targets, l.counts)
 		}
@@ -162,13 +212,13 @@ func (k *lookup) total(l *lane) float64 {
 func (k *lookup) choose(l *lane, u float64) int {
 	before, g := 0.0, 0
 	for ; g < len(k.rows)-1; g++ {
-		after := before + k.rows[g].entries[l.at.half(g)].total
+		after := before + k.entries[l.at.half(g)].total
 		if u < after {
 			break
 		}
 		before = after
 	}
-	e, j := &k.rows[g].entries[l.at.half(g)], 0
+	e, j := &k.entries[l.at.half(g)], 0
 	for j < len(e.sums) && before+e.sums[j] <= u {
 		j++
 	}

@@ -7,13 +7,13 @@ import "math"
 //
 // A total that is not known, or 0, makes t NaN or later than any l.next.
 func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
-	a, b := k.rows[0].entries, k.rows[1].entries
+	entries := k.entries
 	shifts := [4]uint64{k.shifts[groupWidth+1][0], k.shifts[groupWidth][0], k.shifts[1][0], k.shifts[0][0]}
 	for ; step < blockSteps; step++ {
 		for ; i < len(lanes); i++ {
 			l := &lanes[i]
 			at := l.at[0]
-			x, y, draw := &a[uint32(at)], &b[at>>32], &l.draws[step&(blockSteps-1)]
+			x, y, draw := &entries[uint32(at)], &entries[at>>32], &l.draws[step&(blockSteps-1)]
 			total := x.total + y.total
 			t := l.time + draw.Exp/total
 			if x.cores&y.cores != 0 || !(t <= l.next) {

@@ -1,7 +1,5 @@
 package ssa
 
-import "math"
-
 const (
 	// rowEntries is the most entries of a row of one species, and crossEntries of
 	// one of several.
@@ -24,17 +22,17 @@ type entry struct {
 	cores uint64
 }
 
-// A row is the table of one group over the counts of its species. Entry 0 is
-// never filled in: it is where lanes without a run stay.
+// A row is the table of one group over the counts of its species: a stretch of the
+// entries that all rows of a network share.
 type row struct {
 	group
+	first int64 // entry of no molecules
 	// counts[i] is the number of counts of species i that entries may be filled in
 	// for, from 0 on; strides[i] is the distance between neighbouring counts. There
 	// is room beyond counts[i] for the largest step of one firing, so that a lane
 	// that steps beyond meets an entry that is not filled in.
 	counts  []int64
 	strides []int64
-	entries []entry
 }
 
 // newRow makes a row for a group, or for a species that no propensity reads.
@@ -46,9 +44,10 @@ func newRow(g group) *row {
 	return r
 }
 
-// lay lays the row out anew, all entries unfilled, with steps the largest
-// increase of each species by a firing. It tells whether the row is small enough.
-func (r *row) lay(steps []int64) bool {
+// lay lays the row out anew from entry first on, with steps the largest increase
+// of each species by a firing, and gives the entries it takes. It tells whether the
+// row is small enough.
+func (r *row) lay(first int64, steps []int64) (size int64, ok bool) {
 	size, limit := int64(1), int64(rowEntries)
 	if len(r.species) > 1 {
 		limit = crossEntries
@@ -57,19 +56,16 @@ func (r *row) lay(steps []int64) bool {
 		r.strides[i] = size
 		size *= r.counts[i] + steps[s]
 		if size > limit {
-			return false
+			return 0, false
 		}
 	}
-	r.entries = make([]entry, size+1)
-	for i := range r.entries {
-		r.entries[i].total = math.NaN()
-	}
-	return true
+	r.first = first
+	return size, true
 }
 
 // index gives the entry at counts, and whether it is within the row.
 func (r *row) index(counts []int64) (index int64, within bool) {
-	index, within = 1, true
+	index, within = r.first, true
 	for i, s := range r.species {
 		index += counts[s] * r.strides[i]
 		within = within && counts[s] < r.counts[i]
@@ -79,7 +75,7 @@ func (r *row) index(counts []int64) (index int64, within bool) {
 
 // read puts the counts of entry index into counts.
 func (r *row) read(index int64, counts []int64) {
-	index--
+	index -= r.first
 	for i := len(r.species) - 1; i >= 0; i-- {
 		counts[r.species[i]] = index / r.strides[i]
 		index %= r.strides[i]

@@ -1,0 +1,28 @@
+package ssa
+
+import "math"
+
+// rushOne is the rush of one row, the shape of one species.
+func rushOne(k *lookup, lanes []lane, step, i int) (int, int) {
+	entries, bursty := k.entries, k.bursty
+	for ; step < blockSteps; step++ {
+		for ; i < len(lanes); i++ {
+			l := &lanes[i]
+			at := l.at[0]
+			e, draw := &entries[uint32(at)], &l.draws[step&(blockSteps-1)]
+			t := l.time + draw.Exp/e.total
+			if e.cores != 0 || !(t <= l.next) {
+				return step, i
+			}
+			u := math.Float64bits(draw.Unit * e.total)
+			p := above(e.sums[0], u) + above(e.sums[1], u) + above(e.sums[2], u)
+			if bursty>>p&1 != 0 {
+				return step, i
+			}
+			l.time = t
+			l.at[0] = at + k.back[p&3][0]
+		}
+		i = 0
+	}
+	return step, 0
+}

@@ -1,0 +1,125 @@
+package ssa
+
+import "math"
+
+// The rushes of up to four, six and eight rows go the same way: of the sums of all
+// rows up to each, those above u are counted, which gives the row, from the end;
+// then those above u within it, which gives the place. Row and place are looked up
+// rather than branched on.
+
+// rushFour is the rush of up to four rows.
+func rushFour(k *lookup, lanes []lane, step, i int) (int, int) {
+	entries, bursty := k.entries, k.bursty
+	for ; step < blockSteps; step++ {
+		for ; i < len(lanes); i++ {
+			l := &lanes[i]
+			w0, w1 := l.at[0], l.at[1]
+			e0, e1 := &entries[uint32(w0)], &entries[w0>>32]
+			e2, e3 := &entries[uint32(w1)], &entries[w1>>32]
+			end0 := e0.total
+			end1 := end0 + e1.total
+			end2 := end1 + e2.total
+			total := end2 + e3.total
+			draw := &l.draws[step&(blockSteps-1)]
+			t := l.time + draw.Exp/total
+			if e0.cores&e1.cores&e2.cores&e3.cores != 0 || !(t <= l.next) {
+				return step, i
+			}
+			u := math.Float64bits(draw.Unit * total)
+			g := above(end0, u) + above(end1, u) + above(end2, u)
+			before := [8]float64{end2, end1, end0}
+			at := [8]uint64{w1 >> 32, uint64(uint32(w1)), w0 >> 32, uint64(uint32(w0))}
+			b, sums := before[g&7], &entries[at[g&7]].sums
+			p := (g<<2 + above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u)) & (maxRows*groupWidth - 1)
+			if bursty>>p&1 != 0 {
+				return step, i
+			}
+			l.time = t
+			shift := &k.back[p]
+			l.at[0], l.at[1] = w0+shift[0], w1+shift[1]
+		}
+		i = 0
+	}
+	return step, 0
+}
+
+// rushSix is the rush of up to six rows.
+func rushSix(k *lookup, lanes []lane, step, i int) (int, int) {
+	entries, bursty := k.entries, k.bursty
+	for ; step < blockSteps; step++ {
+		for ; i < len(lanes); i++ {
+			l := &lanes[i]
+			w0, w1, w2 := l.at[0], l.at[1], l.at[2]
+			e0, e1 := &entries[uint32(w0)], &entries[w0>>32]
+			e2, e3 := &entries[uint32(w1)], &entries[w1>>32]
+			e4, e5 := &entries[uint32(w2)], &entries[w2>>32]
+			end0 := e0.total
+			end1 := end0 + e1.total
+			end2 := end1 + e2.total
+			end3 := end2 + e3.total
+			end4 := end3 + e4.total
+			total := end4 + e5.total
+			draw := &l.draws[step&(blockSteps-1)]
+			t := l.time + draw.Exp/total
+			if e0.cores&e1.cores&e2.cores&e3.cores&e4.cores&e5.cores != 0 || !(t <= l.next) {
+				return step, i
+			}
+			u := math.Float64bits(draw.Unit * total)
+			g := above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u)
+			before := [8]float64{end4, end3, end2, end1, end0}
+			at := [8]uint64{w2 >> 32, uint64(uint32(w2)), w1 >> 32, uint64(uint32(w1)), w0 >> 32, uint64(uint32(w0))}
+			b, sums := before[g&7], &entries[at[g&7]].sums
+			p := (g<<2 + above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u)) & (maxRows*groupWidth - 1)
+			if bursty>>p&1 != 0 {
+				return step, i
+			}
+			l.time = t
+			shift := &k.back[p]
+			l.at[0], l.at[1], l.at[2] = w0+shift[0], w1+shift[1], w2+shift[2]
+		}
+		i = 0
+	}
+	return step, 0
+}
+
+// rushEight is the rush of up to eight rows.
+func rushEight(k *lookup, lanes []lane, step, i int) (int, int) {
+	entries, bursty := k.entries, k.bursty
+	for ; step < blockSteps; step++ {
+		for ; i < len(lanes); i++ {
+			l := &lanes[i]
+			w0, w1, w2, w3 := l.at[0], l.at[1], l.at[2], l.at[3]
+			e0, e1 := &entries[uint32(w0)], &entries[w0>>32]
+			e2, e3 := &entries[uint32(w1)], &entries[w1>>32]
+			e4, e5 := &entries[uint32(w2)], &entries[w2>>32]
+			e6, e7 := &entries[uint32(w3)], &entries[w3>>32]
+			end0 := e0.total
+			end1 := end0 + e1.total
+			end2 := end1 + e2.total
+			end3 := end2 + e3.total
+			end4 := end3 + e4.total
+			end5 := end4 + e5.total
+			end6 := end5 + e6.total
+			total := end6 + e7.total
+			draw := &l.draws[step&(blockSteps-1)]
+			t := l.time + draw.Exp/total
+			if e0.cores&e1.cores&e2.cores&e3.cores&e4.cores&e5.cores&e6.cores&e7.cores != 0 || !(t <= l.next) {
+				return step, i
+			}
+			u := math.Float64bits(draw.Unit * total)
+			g := above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u) + above(end5, u) + above(end6, u)
+			before := [8]float64{end6, end5, end4, end3, end2, end1, end0}
+			at := [8]uint64{w3 >> 32, uint64(uint32(w3)), w2 >> 32, uint64(uint32(w2)), w1 >> 32, uint64(uint32(w1)), w0 >> 32, uint64(uint32(w0))}
+			b, sums := before[g&7], &entries[at[g&7]].sums
+			p := (g<<2 + above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u)) & (maxRows*groupWidth - 1)
+			if bursty>>p&1 != 0 {
+				return step, i
+			}
+			l.time = t
+			shift := &k.back[p]
+			l.at[0], l.at[1], l.at[2], l.at[3] = w0+shift[0], w1+shift[1], w2+shift[2], w3+shift[3]
+		}
+		i = 0
+	}
+	return step, 0
+}
