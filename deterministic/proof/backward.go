@@ -83,7 +83,9 @@ func (s sheet) narrow(n *node, v iv) {
 		}
 		*a = v.RootInt(n.n, *a)
 	case realPower:
-		*a = a.Meet(realRoot(v, n.c))
+		if a.Lo >= 0 || !n.c.HasWhole() {
+			*a = a.Meet(realRoot(v, n.c))
+		}
 	case exponential:
 		*a = a.Meet(v.Log())
 	case logarithm:
@@ -151,9 +153,18 @@ func (s sheet) narrowTwo(n *node, v iv) {
 			*a = v
 			return
 		}
-		q := odds(v)
-		*a, *b = a.Meet(q.Mul(*b)), interval.Solve(*a, q, *b)
+		*a, *b = narrowRatio(*a, *b, odds(v))
 	}
+}
+
+// narrowRatio narrows u and r, not below 0, to u = q r. An unbounded q stands for
+// r = 0 as well, where u/(u+r) is 1 whatever u is.
+func narrowRatio(u, r, q iv) (iv, iv) {
+	product := q.Mul(r)
+	if q.Hi > largest && r.Lo == 0 {
+		product.Hi = q.Hi
+	}
+	return u.Meet(product), interval.Solve(u, q, r)
 }
 
 // narrowSmaller narrows a and b so that min(a, b) can be in v.

@@ -67,11 +67,6 @@ func (d *design) mass(uses, needs, makes string, k float64) *design {
 	return d
 }
 
-func (d *design) start(name string, amount float64) *design {
-	d.draft.Species[d.index(name)].Start = amount
-	return d
-}
-
 func (d *design) network(t testing.TB) *model.Network {
 	t.Helper()
 	n, err := d.draft.Bind(0, nil)

@@ -159,6 +159,7 @@ func TestBadProblems(t *testing.T) {
 		{proof.Problem{Network: latch, Low: []float64{0, 0}, High: []float64{1, math.NaN()}}, "must be finite"},
 		{proof.Problem{Network: latch, Totals: []float64{1}}, "1 totals for a network that conserves 0"},
 		{proof.Problem{Network: latch, Width: 2}, "width"},
+		{proof.Problem{Network: zoo.Chain(40, 1, 1)}, "too large for a proof: 41 species"},
 		{proof.Problem{Network: zoo.Dimerisation(), Totals: []float64{math.NaN()}}, "total"},
 	} {
 		_, err := proof.Prove(context.Background(), c.p)
@@ -189,7 +190,7 @@ func TestEndings(t *testing.T) {
 	if err != nil || r.Complete || r.Ending != proof.Cancelled || len(r.Unresolved) != 1 {
 		t.Errorf("cancelled: %v, %v", r, err)
 	}
-	if s := r.String(); !strings.HasPrefix(s, "not proved: 0 resting states found, 0 boxes, cancelled; what resisted: ") {
+	if s := r.String(); !strings.HasPrefix(s, "not proved: 0 resting states found, 0 boxes, cancelled; what resisted: mrna 0.0224") {
 		t.Errorf("says %q", s)
 	}
 }

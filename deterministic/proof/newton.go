@@ -135,8 +135,12 @@ func (w *worker) krawczyk(box []iv, x []float64) {
 
 // contracts tells whether C J(X) is so near to the identity that no two points of
 // X have the same rates: |1 − CJ| u < u for some u > 0, which makes every matrix in
-// C J regular (Neumaier 1990, section 3.7, H-matrices; the mean value theorem does
-// the rest). u starts from the box's shape.
+// C J regular (Neumaier 1990, section 3.7, H-matrices), and by the mean value theorem
+// f(x) − f(y) = A (x − y) for one of them. At the kinks of min, max and abs the
+// theorem holds with Clarke's gradients, which J holds too. Where a law is undefined
+// in a part of X the derivatives are unbounded, and this is not reached, but for
+// powers above 1 of what falls below 0; these go on with the value 0 and slope 0,
+// which J holds as well. u starts from the box's shape.
 func (w *worker) contracts(box []iv) bool {
 	m := len(box)
 	u, v := make([]float64, m), make([]float64, m)

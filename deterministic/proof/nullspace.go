@@ -107,6 +107,9 @@ func wholeRow(row []*big.Rat) (out []int64, ok bool) {
 	return out, true
 }
 
+// orders is the number of orders that elementary tries.
+const orders = 6
+
 // elementary gives combinations of the rows of the changes in which fluxes cancel:
 // the rows of echelon forms for several orders of the fluxes, whole numbers, one a
 // flux. At rest each sum of fluxes with these weights is 0.
@@ -114,7 +117,7 @@ func elementary(fluxes []flux, species []int) [][]int64 {
 	n := len(fluxes)
 	order := ascending(n)
 	var out [][]int64
-	for range 2 * n {
+	for range min(n, orders) {
 		m := newRational(len(species), n)
 		for k, i := range species {
 			for r, f := range fluxes {
@@ -126,10 +129,7 @@ func elementary(fluxes []flux, species []int) [][]int64 {
 				out = append(out, row)
 			}
 		}
-		order = append(order[1:], order[0])
-		if len(out) > 4*len(species) {
-			break
-		}
+		order = append(order[n/orders+1:], order[:n/orders+1]...)
 	}
 	return out
 }

@@ -36,6 +36,13 @@ type Problem struct {
 // given.
 var ErrUnbounded = errors.New("no bound was found for the amounts at rest: give the box to be searched")
 
+// ErrLarge tells that the network is beyond what a proof may take on.
+var ErrLarge = errors.New("the network is too large for a proof")
+
+// A search grows exponentially with the species that curve the rates, so that far
+// fewer than these can be hoped for.
+const mostSpecies, mostReactions = 32, 256
+
 // Prove finds every resting state of the network in a box, by interval branch and
 // prune, and proves that there are no others. An error means that the problem is
 // not posed well; a proof that does not succeed is a Result that is not Complete.
@@ -49,7 +56,7 @@ func Prove(ctx context.Context, p Problem) (*Result, error) {
 		return nil, err
 	}
 	if t.system == nil {
-		return unposed(low, high), nil
+		return t.unposed(low, high), nil
 	}
 	start := make(box, len(t.system.species))
 	for k, i := range t.system.species {
@@ -82,6 +89,9 @@ func reach(b box) box {
 func newTask(p Problem) (*task, error) {
 	if p.Network == nil {
 		return nil, errors.New("no network")
+	}
+	if n := len(p.Network.Species); n > mostSpecies || len(p.Network.Reactions) > mostReactions {
+		return nil, fmt.Errorf("%w: %d species and %d reactions; a proof takes at most %d and %d", ErrLarge, n, len(p.Network.Reactions), mostSpecies, mostReactions)
 	}
 	t := &task{network: p.Network, totals: p.Network.Conserved(), width: p.Width, faces: map[string]*system{}}
 	if t.width == 0 {

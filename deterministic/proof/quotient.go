@@ -112,18 +112,26 @@ func (b *builder) falling(top monomial, n node) (rest monomial, id int, ok bool)
 }
 
 // saturating makes zⁿ/(1+zⁿ) or 1/(1+zⁿ) of the sum k + c yⁿ, where y is a
-// species or n is not whole, so that y ≥ 0.
+// species or n is not whole, so that y ≥ 0. Where n is negative, 1/(k + c yⁿ) is
+// the rising function with exponent −n, which at y = 0 has its limit, 0.
 func (b *builder) saturating(k kind, total node) (id int, ok bool) {
 	y, exponent := total.args[0], interval.Point(1)
 	switch n := b.nodes[y]; {
-	case n.kind == wholePower && n.n > 0 && b.nodes[n.args[0]].kind == variable:
+	case n.kind == wholePower && b.nodes[n.args[0]].kind == variable:
 		y, exponent = n.args[0], interval.Point(float64(n.n))
-	case n.kind == realPower && n.c.Lo > 0:
+	case n.kind == realPower:
 		y, exponent = n.args[0], n.c
 	case n.kind != variable:
 		return none, false
 	}
-	scale := divide(total.coef[0], total.c).Root(exponent)
+	size := divide(total.coef[0], total.c)
+	if exponent.Hi < 0 && k == fall {
+		k, exponent, size = rise, exponent.Neg(), divide(interval.Point(1), size)
+	}
+	if !(exponent.Lo > 0) {
+		return none, false
+	}
+	scale := size.Root(exponent)
 	if !scale.Bounded() || !(scale.Lo > 0) {
 		return none, false
 	}

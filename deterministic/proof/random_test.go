@@ -10,12 +10,10 @@ import (
 	"holdfast/model"
 )
 
-// A root list of a cubic: three real roots, or one and a pair b ± ic.
+// A cubic has three real roots, or one and a pair b ± ic.
 type cubic struct {
-	roots   []float64 // ascending: three, or one
-	b, c    float64
-	e       [3]float64 // the elementary symmetric functions of all three
-	spacing float64
+	roots []float64  // ascending: three, or one
+	e     [3]float64 // the elementary symmetric functions of all three
 }
 
 // anyCubic draws roots above 0 over three decades, no two nearer than the given
@@ -27,7 +25,7 @@ func anyCubic(r *rand.Rand, real bool, apart float64) cubic {
 		x, b := draw(), draw()
 		c := b * (0.05 + 2*r.Float64())
 		n := b*b + c*c
-		return cubic{roots: []float64{x}, b: b, c: c, e: [3]float64{x + 2*b, 2*x*b + n, x * n}}
+		return cubic{roots: []float64{x}, e: [3]float64{x + 2*b, 2*x*b + n, x * n}}
 	}
 	for {
 		x := []float64{draw(), draw(), draw()}

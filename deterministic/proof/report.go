@@ -24,7 +24,7 @@ func (o *outcome) result(low, high []float64, all bool) *Result {
 		heaps = pile(heaps, b)
 	}
 	for _, h := range heaps {
-		r.Unresolved = append(r.Unresolved, Unresolved{Box: s.amounts(h.hull), Boxes: h.boxes})
+		r.Unresolved = append(r.Unresolved, Unresolved{Box: s.amounts(h.hull), Boxes: h.boxes, Species: o.task.names()})
 	}
 	r.Complete = len(heaps) == 0 && o.ending == Finished
 	return r
@@ -39,10 +39,18 @@ func before(a, b interval.Interval) int {
 }
 
 // unposed is the result where the equations do not determine isolated states.
-func unposed(low, high []float64) *Result {
-	u := Unresolved{Boxes: 1}
+func (t *task) unposed(low, high []float64) *Result {
+	u := Unresolved{Boxes: 1, Species: t.names()}
 	for i := range low {
 		u.Box = append(u.Box, interval.Interval{Lo: low[i], Hi: high[i]})
 	}
 	return &Result{Low: low, High: high, Unresolved: []Unresolved{u}, Ending: Unposed}
+}
+
+func (t *task) names() []string {
+	var out []string
+	for _, s := range t.network.Species {
+		out = append(out, s.Name)
+	}
+	return out
 }

@@ -50,6 +50,8 @@ type Unresolved struct {
 	Box []interval.Interval // in amounts, one interval a species
 	// Boxes is the number of boxes of the search that it covers.
 	Boxes int
+	// Species are the species' names, in the same order.
+	Species []string
 }
 
 // A Result is a list of resting states, with what is proved about it.
@@ -106,7 +108,7 @@ func states(n int) string {
 func (u Unresolved) String() string {
 	parts := make([]string, len(u.Box))
 	for i, a := range u.Box {
-		parts[i] = fmt.Sprintf("%.9g to %.9g", a.Lo, a.Hi)
+		parts[i] = fmt.Sprintf("%s %.9g to %.9g", u.Species[i], a.Lo, a.Hi)
 	}
 	return strings.Join(parts, ", ")
 }

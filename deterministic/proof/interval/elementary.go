@@ -72,16 +72,31 @@ func powPoint(x, p float64) Interval {
 	return expPoint(t, p*logError+math.Abs(t.hi)*0x1p-100)
 }
 
-// Pow is the set of powers of the numbers of a with exponents from p. Where p is
-// one whole number negative bases count; otherwise only those not below 0 do.
+// Pow is the set of powers of the numbers of a with exponents from p. Negative
+// bases count with whole exponents only.
 func (a Interval) Pow(p Interval) Interval {
 	if p.IsPoint() && math.Abs(p.Lo) <= largestWhole && p.Lo == math.Trunc(p.Lo) {
 		return a.PowInt(int(p.Lo))
 	}
-	if !(a.Hi >= 0) || p.IsEmpty() {
+	if a.IsEmpty() || p.IsEmpty() {
 		return Empty()
 	}
-	a.Lo = max(a.Lo, 0)
+	out := Empty()
+	if a.Hi >= 0 {
+		out = powNonNegative(Interval{max(a.Lo, 0), a.Hi}, p)
+	}
+	if a.Lo < 0 && p.HasWhole() {
+		size := powNonNegative(Interval{max(-a.Hi, 0), -a.Lo}, p)
+		out = out.Hull(size.Hull(size.Neg()))
+	}
+	return out
+}
+
+// HasWhole tells whether a holds a whole number.
+func (a Interval) HasWhole() bool { return math.Ceil(a.Lo) <= a.Hi }
+
+// powNonNegative is a^p for a ≥ 0.
+func powNonNegative(a, p Interval) Interval {
 	switch {
 	case p.Lo >= 0:
 		return powPositive(a, p)

@@ -1,0 +1,129 @@
+package proof_test
+
+import (
+	"fmt"
+	"math"
+	"math/rand/v2"
+	"testing"
+
+	"gonum.org/v1/gonum/mat"
+
+	"holdfast/deterministic/proof"
+	"holdfast/model"
+)
+
+// mutual is k genes, each repressed by all others and, where self is above 0, fed
+// by itself: p′ = α (1 + 5 self pⁿ)/(1 + Σ others pⁿ + self pⁿ) − p.
+func mutual(t testing.TB, k int, alpha, n, self float64) *model.Network {
+	var names []string
+	for i := range k {
+		names = append(names, fmt.Sprintf("p%d", i))
+	}
+	d := newDesign(names...)
+	for i, me := range names {
+		below, above := num(1), num(1)
+		for j, other := range names {
+			if j != i {
+				below = plus(below, raised(d.x(other), n))
+			}
+		}
+		if self > 0 {
+			own := times(num(self), raised(d.x(me), n))
+			above, below = plus(num(1), times(num(5), own)), plus(below, own)
+		}
+		d.rate("", me, over(times(num(alpha), above), below)).mass(me, "", "", 1)
+	}
+	return d.network(t)
+}
+
+// newton runs Newton's method from x, with plain derivatives; ok is false where it
+// does not converge to non-negative amounts.
+func newton(n *model.Network, x []float64) (ok bool) {
+	s := len(x)
+	dx := make([]float64, s)
+	for range 60 {
+		f, j := mat.NewVecDense(s, nil), mat.NewDense(s, s, nil)
+		for r := range n.Reactions {
+			v := n.FluxGradient(r, x, dx)
+			for i := range s {
+				c := n.AmountChange(r, i)
+				f.SetVec(i, f.AtVec(i)+c*v)
+				for k := range s {
+					j.Set(i, k, j.At(i, k)+c*dx[k])
+				}
+			}
+		}
+		var step mat.VecDense
+		if step.SolveVec(j, f) != nil {
+			return false
+		}
+		for i := range x {
+			x[i] -= step.AtVec(i)
+			if !(x[i] >= 0 && x[i] < 1e6) {
+				return false
+			}
+		}
+		if mat.Norm(&step, 2) < 1e-12 {
+			return true
+		}
+	}
+	return false
+}
+
+// TestManyStates holds networks of many states against Newton's method from random
+// points: each of its states is in the proved list, and it finds every one of
+// them. With self-feeding each gene is on or off and nearly free: 2ᵏ⁺¹−1 states.
+func TestManyStates(t *testing.T) {
+	r := rand.New(rand.NewPCG(31, 32))
+	for _, c := range []struct {
+		name string
+		n    *model.Network
+		want int
+	}{
+		{"three that repress each other", mutual(t, 3, 6, 2, 0), 7},
+		{"four that repress each other", mutual(t, 4, 6, 2, 0), 9},
+		{"three that feed themselves", mutual(t, 3, 1, 2, 1), 7},
+		{"four that feed themselves", mutual(t, 4, 1, 2, 1), 15},
+		{"two with transcripts", twoGenes(t, 1, 2), 3},
+		{"two with transcripts, broken exponent", twoGenes(t, 1, 2.3), 3},
+	} {
+		p := prove(t, c.n, nil, nil)
+		if !p.Complete || !p.All || len(p.Roots) != c.want {
+			t.Errorf("%s: %v, want %d", c.name, p, c.want)
+			continue
+		}
+		hit := make([]bool, len(p.Roots))
+		x := make([]float64, len(c.n.Species))
+		for range 3000 {
+			for i := range x {
+				x[i] = 1.1 * p.High[i] * r.Float64()
+			}
+			if newton(c.n, x) {
+				k := member(p, x)
+				if k < 0 {
+					t.Fatalf("%s: the state at %v is not in the list", c.name, x)
+				}
+				hit[k] = true
+			}
+		}
+		for k, ok := range hit {
+			if !ok {
+				t.Errorf("%s: Newton's method never came to state %d at %v", c.name, k, p.Roots[k].Point)
+			}
+		}
+	}
+}
+
+// member gives the root that x is, to 1e-9, or -1.
+func member(p *proof.Result, x []float64) int {
+	for k, root := range p.Roots {
+		far := 0.0
+		for i, v := range x {
+			far = max(far, math.Abs(v-root.Point[i]))
+		}
+		if far < 1e-9 {
+			return k
+		}
+	}
+	return -1
+}
