@@ -8,6 +8,7 @@ import (
 	"testing"
 
 	"holdfast/deterministic/proof"
+	"holdfast/deterministic/proof/interval"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -217,4 +218,35 @@ func TestThreads(t *testing.T) {
 			}
 		}
 	}
+}
+
+// TestEdges: a state on the edge of the box is listed from either side.
+func TestEdges(t *testing.T) {
+	below := prove(t, zoo.Schlogl(), []float64{0}, []float64{220})
+	wantComplete(t, "up to 220", below, [][]float64{{100}, {220}}, rounding)
+	above := prove(t, zoo.Schlogl(), []float64{220}, []float64{1000})
+	wantComplete(t, "from 220", above, [][]float64{{220}, {400}}, rounding)
+	if below.Roots[0].Edge || above.Roots[1].Edge {
+		t.Errorf("edges: %v, %v", below.Roots, above.Roots)
+	}
+	for _, root := range []proof.Root{below.Roots[1], above.Roots[0]} {
+		if inside := root.Box[0].In(interval.Interval{Lo: 220, Hi: 1000}) || root.Box[0].In(interval.Interval{Hi: 220}); inside == root.Edge {
+			t.Errorf("edge %v for %v", root.Edge, root.Box)
+		}
+	}
+	if s := below.String(); !strings.HasPrefix(s, "complete (proved) in the box searched: 2 resting states") {
+		t.Errorf("says %q", s)
+	}
+	outside := prove(t, zoo.Schlogl(), []float64{221}, []float64{399})
+	wantComplete(t, "between", outside, nil, 0)
+}
+
+// TestTotals: the total may be set; P + 2 P2 = 50, 0.0005 P² = 0.01 P2.
+func TestTotals(t *testing.T) {
+	r, err := proof.Prove(context.Background(), proof.Problem{Network: zoo.Dimerisation(), Totals: []float64{50}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	p := (-1 + math.Sqrt(1+4*0.1*50)) / 0.2
+	wantComplete(t, "half the total", r, [][]float64{{p, (50 - p) / 2}}, rounding)
 }

@@ -127,3 +127,85 @@ func member(p *proof.Result, x []float64) int {
 	}
 	return -1
 }
+
+// anyCircuit draws two to four genes, each driven by one to three others or itself
+// through rising and falling Hill functions of any steepness, added or multiplied,
+// over four decades of constants; half of the circuits have transcripts.
+func anyCircuit(t testing.TB, r *rand.Rand) *model.Network {
+	k := 2 + r.IntN(3)
+	withRNA := r.IntN(2) == 0
+	var names []string
+	for i := range k {
+		names = append(names, fmt.Sprintf("p%d", i))
+		if withRNA {
+			names = append(names, fmt.Sprintf("m%d", i))
+		}
+	}
+	draw := func(decades float64) float64 { return math.Pow(10, decades*(r.Float64()-0.5)) }
+	d := newDesign(names...)
+	for i := range k {
+		law := num(0.05 * r.Float64() * draw(1))
+		for range 1 + r.IntN(3) {
+			op := []model.Op{model.OpHill, model.OpHillFall}[r.IntN(2)]
+			n := []float64{1, 2, 3, 5, 2 + 4*r.Float64()}[r.IntN(5)]
+			term := model.Call(op, d.x(fmt.Sprintf("p%d", r.IntN(k))), num(draw(2)), num(n))
+			if r.IntN(3) == 0 {
+				law = times(law, plus(num(0.1), times(num(10*draw(1)), term)))
+			} else {
+				law = plus(law, times(num(3*draw(2)), term))
+			}
+		}
+		p, m := fmt.Sprintf("p%d", i), fmt.Sprintf("m%d", i)
+		if withRNA {
+			d.rate("", m, law).mass(m, "", "", draw(1)).mass("", m, p, draw(1)).mass(p, "", "", draw(1))
+		} else {
+			d.rate("", p, law).mass(p, "", "", draw(1))
+		}
+	}
+	return d.network(t)
+}
+
+// TestRandomCircuits proves the lists of 150 random circuits of two to eight species
+// and looks for states that they lack, by Newton's method from random points. The
+// number of states is odd: all flow points into a large box, and so the signs of the
+// Jacobian's determinant at the states sum to ±1 (degree theory, common practice).
+func TestRandomCircuits(t *testing.T) {
+	r := rand.New(rand.NewPCG(41, 42))
+	many := 0
+	for k := range 150 {
+		n := anyCircuit(t, r)
+		p := prove(t, n, nil, nil)
+		if !p.Complete || !p.All || len(p.Roots)%2 == 0 {
+			t.Errorf("circuit %d: %v", k, p)
+			continue
+		}
+		if len(p.Roots) > 1 {
+			many++
+		}
+		x := make([]float64, len(n.Species))
+		for range 100 {
+			for i := range x {
+				x[i] = p.High[i] * math.Pow(10, -3*r.Float64())
+			}
+			if newton(n, x) && nearest(p, x) > 1e-6 {
+				t.Fatalf("circuit %d: the state at %v is not in the list", k, x)
+			}
+		}
+	}
+	if many < 10 {
+		t.Errorf("only %d circuits have several states", many)
+	}
+}
+
+// nearest is the least distance of x from a root, by the largest relative difference.
+func nearest(p *proof.Result, x []float64) float64 {
+	best := math.Inf(1)
+	for _, root := range p.Roots {
+		far := 0.0
+		for i, v := range x {
+			far = max(far, math.Abs(v-root.Point[i])/(1e-6+root.Point[i]))
+		}
+		best = min(best, far)
+	}
+	return best
+}
