@@ -17,7 +17,7 @@ type direct struct {
 }
 
 func newDirect(w *worker) *direct {
-	k := &direct{worker: w, place: make([]int, len(w.changes)), reaction: make([]int, len(w.groups)*groupWidth)}
+	k := &direct{worker: w, place: make([]int, len(w.Network.Reactions)), reaction: make([]int, len(w.groups)*groupWidth)}
 	for g, group := range w.groups {
 		for j := range groupWidth {
 			k.reaction[g*groupWidth+j] = -1
@@ -27,10 +27,10 @@ func newDirect(w *worker) *direct {
 			}
 		}
 	}
-	for r := range w.changes {
+	for r := range w.Network.Reactions {
 		touches := make([]bool, len(w.groups))
 		var groups []int
-		for _, d := range w.dependents[r] {
+		for _, d := range w.dependents.of(r) {
 			touches[k.place[d]/groupWidth] = true
 		}
 		for g, s := range touches {
@@ -126,13 +126,13 @@ func (k *direct) event(l *lane) bool {
 	}
 	l.time = t
 	r := k.choose(l, draw.Unit*total)
-	k.fire(l, r)
+	over := k.fire(l, r)
 	l.left--
-	for _, d := range k.dependents[r] {
+	for _, d := range k.dependents.of(r) {
 		l.values[k.place[d]] = k.value(l, int(d))
 	}
 	for _, g := range k.touched[r] {
 		l.resum(g)
 	}
-	return k.settle(l, l.total())
+	return k.goesOn(l, over, l.total())
 }

@@ -3,9 +3,14 @@ package ssa
 // sparseFrom is the number of reactions from which on Auto takes Sparse.
 const sparseFrom = 64
 
+// sparse tells whether the Sparse method is to be used.
+func (s *system) sparse() bool {
+	return s.Method == Sparse || s.Method == Auto && len(s.Network.Reactions) >= sparseFrom
+}
+
 // newKernel gives a worker the loop that fits its network.
 func newKernel(w *worker) kernel {
-	if w.Method == Sparse || w.Method == Auto && len(w.changes) >= sparseFrom {
+	if w.sparse() {
 		return newSparse(w)
 	}
 	if k := newLookup(w); k != nil {
@@ -37,10 +42,14 @@ func (k *lookup) rush() rush {
 // rushNone leaves all events to be done with care.
 func rushNone(_ *lookup, _ []lane, step, i int) (int, int) { return step, i }
 
-// lanes gives the number of runs that one goroutine advances in turn.
+// lanes gives the number of runs that one goroutine advances in turn: as many as
+// hide the latencies of each other where they are advanced event by event, else one.
 func (j *job) lanes() int {
-	if j.Lanes > 0 {
+	switch {
+	case j.Lanes > 0:
 		return j.Lanes
+	case j.sparse() || len(j.groups) == 0 || j.groups[0].species == nil:
+		return 1
 	}
 	return 8
 }

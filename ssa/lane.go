@@ -15,6 +15,7 @@ type lane struct {
 	next   float64
 	random stream.Draws  // two numbers an event
 	bursts stream.Stream // sizes of bursts
+	accept stream.Stream // acceptance in Sparse
 	left   int64         // events until the budget is spent
 	run    int           // −1: the lane has no run
 	sample int           // index of the next of Plan.Times
@@ -38,8 +39,9 @@ const never = 0x1p-960
 // These bits of a replicate tell a run's further streams from its first; they are
 // above any group.
 const (
-	edgeStream  = 1 << 62
-	burstStream = 1 << 63
+	edgeStream   = 1 << 62
+	burstStream  = 2 << 62
+	acceptStream = 3 << 62
 )
 
 // endOfTime is later than any time a run may reach, and earlier than any event of a
@@ -56,6 +58,7 @@ func (s *system) reset(l *lane, run int) {
 	l.random.Main = stream.New(s.Seed, s.Point, replicate)
 	l.random.Edge = stream.New(s.Seed, s.Point, replicate|edgeStream)
 	l.bursts = stream.New(s.Seed, s.Point, replicate|burstStream)
+	l.accept = stream.New(s.Seed, s.Point, replicate|acceptStream)
 	l.counts = append(l.counts[:0], s.Start...)
 	s.setNext(l)
 }
@@ -108,19 +111,20 @@ func (s *system) pass(l *lane, t float64) (horizon bool) {
 	return s.Until > 0 && t > s.Until
 }
 
-// fire changes counts by one firing of reaction r.
-func (s *system) fire(l *lane, r int) {
-	for _, c := range s.changes[r] {
-		l.counts[c.species] += c.by
+// fire changes counts by one firing of reaction r, and tells whether a count is
+// above the limit for it.
+func (s *system) fire(l *lane, r int) (over bool) {
+	for _, c := range s.changes.of(r) {
+		n := l.counts[c.species] + c.by
+		l.counts[c.species] = n
+		over = over || n > s.MaxCount
 	}
-	s.addBursts(l, r)
-}
-
-// addBursts changes counts by the geometric products of a firing of reaction r.
-func (s *system) addBursts(l *lane, r int) {
-	for _, b := range s.bursts[r] {
-		l.counts[b.species] += int64(min(l.bursts.Exp()*b.scale, maxCountLimit))
+	for _, b := range s.bursts.of(r) {
+		n := l.counts[b.species] + int64(min(l.bursts.Exp()*b.scale, maxCountLimit))
+		l.counts[b.species] = n
+		over = over || n > s.MaxCount
 	}
+	return over
 }
 
 // runaway tells whether a count is above the limit.

@@ -77,7 +77,7 @@ func (k *lookup) setReactions() {
 	for i, row := range k.rows {
 		for j, r := range row.reactions {
 			k.reaction[i*groupWidth+j] = r
-			for _, c := range k.changes[r] {
+			for _, c := range k.changes.of(r) {
 				k.steps[c.species] = max(k.steps[c.species], c.by)
 			}
 		}
@@ -118,7 +118,7 @@ func (k *lookup) setShifts() {
 		}
 		k.shifts[p] = k.shift(r)
 		k.back[last-p] = k.shifts[p]
-		if len(k.bursts[r]) > 0 {
+		if len(k.bursts.of(r)) > 0 {
 			k.bursty |= 1 << (last - p)
 		}
 	}
@@ -139,7 +139,7 @@ func (k *lookup) width() int {
 
 // shift is what a firing of reaction r, but for bursts, adds to a position.
 func (k *lookup) shift(r int) (shift position) {
-	for _, c := range k.changes[r] {
+	for _, c := range k.changes.of(r) {
 		for i, row := range k.rows {
 			if j := slices.Index(row.species, int(c.species)); j >= 0 {
 				shift[i/2] += uint64(c.by*row.strides[j]) << (32 * (i % 2))

@@ -22,12 +22,17 @@ const (
 // to the same bits as Network.Propensity. It has tables that it fills on demand,
 // so each goroutine has its own.
 type propensity struct {
-	shape  shape
-	n, m   int // species
 	factor float64
-	terms  []model.Term // reactants of a product, uses of a law
-	table  table
-	law    *program
+	n, m   int32 // species
+	shape  shape
+	law    *law // of the shapes from product on
+}
+
+// A law is what the less simple shapes need.
+type law struct {
+	terms   []model.Term // reactants of a product, uses of a general law
+	table   table
+	program *program
 }
 
 // newPropensity prepares reaction r of the network.
@@ -36,7 +41,7 @@ func newPropensity(net *model.Network, r int) propensity {
 	if !re.MassAction {
 		return newLaw(net, r)
 	}
-	p := propensity{shape: product, factor: net.MassActionFactor(r), terms: re.Reactants}
+	p := propensity{shape: product, factor: net.MassActionFactor(r), law: &law{terms: re.Reactants}}
 	order := 0
 	for _, t := range re.Reactants {
 		order += t.Count
@@ -45,9 +50,9 @@ func newPropensity(net *model.Network, r int) propensity {
 	case order == 0 || p.factor == 0:
 		p.shape = constant
 	case order == 1:
-		p.shape, p.n = linear, re.Reactants[0].Species
+		p.shape, p.n = linear, int32(re.Reactants[0].Species)
 	case order == 2 && len(re.Reactants) == 2:
-		p.shape, p.n, p.m = bilinear, re.Reactants[0].Species, re.Reactants[1].Species
+		p.shape, p.n, p.m = bilinear, int32(re.Reactants[0].Species), int32(re.Reactants[1].Species)
 	}
 	return p
 }
@@ -64,9 +69,9 @@ func newLaw(net *model.Network, r int) propensity {
 			counts[reads[0]] = n
 			return net.Propensity(r, counts)
 		}
-		return propensity{shape: tabled, n: reads[0], table: table{f: f}}
+		return propensity{shape: tabled, n: int32(reads[0]), law: &law{table: table{f: f}}}
 	}
-	return propensity{shape: general, factor: re.Scale, terms: re.Uses, law: compile(net, re.Law)}
+	return propensity{shape: general, factor: re.Scale, law: &law{terms: re.Uses, program: compile(net, re.Law)}}
 }
 
 // at gives the propensity at counts. It may be negative or not finite where the
@@ -82,19 +87,19 @@ func (p *propensity) at(counts []int64) float64 {
 	case product:
 		return p.product(counts)
 	case tabled:
-		return p.table.at(counts[p.n])
+		return p.law.table.at(counts[p.n])
 	}
-	for _, t := range p.terms {
+	for _, t := range p.law.terms {
 		if counts[t.Species] < int64(t.Count) {
 			return 0
 		}
 	}
-	return p.factor * p.law.at(counts)
+	return p.factor * p.law.program.at(counts)
 }
 
 func (p *propensity) product(counts []int64) float64 {
 	a := p.factor
-	for _, t := range p.terms {
+	for _, t := range p.law.terms {
 		n := counts[t.Species]
 		for j := range t.Count {
 			a *= float64(max(n-int64(j), 0))

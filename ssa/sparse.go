@@ -3,6 +3,8 @@ package ssa
 import (
 	"math"
 	"slices"
+
+	"holdfast/internal/stream"
 )
 
 // sparse is the Sparse method: composition–rejection (Slepoy, Thompson, Plimpton,
@@ -27,6 +29,7 @@ type classes struct {
 	used    []int32 // classes that have had members in this run, largest first
 	total   float64 // rate of all tries
 	changed bool    // a class has won or lost a member since total was summed
+	next    int     // of the lane's draws
 }
 
 // width is the rate at which each member of class c is tried.
@@ -38,11 +41,12 @@ func (k *sparse) leave(*lane) {}
 
 func (k *sparse) enter(l *lane) bool {
 	if l.classes == nil {
-		r := len(k.changes)
+		r := len(k.Network.Reactions)
 		l.classes = &classes{values: make([]float64, r), class: make([]int32, r), place: make([]int32, r)}
 	}
 	c := l.classes
 	c.clear()
+	c.next = blockSteps
 	ok := true
 	for r := range c.values {
 		ok = (!k.live(r) || c.set(int32(r), k.props[r].at(l.counts))) && ok
@@ -141,6 +145,16 @@ func (c *classes) lowest() (r int32, w float64) {
 	return 0, math.Inf(1) // never tried: total is positive
 }
 
+// draw gives the next of the lane's draws, which are made by the block.
+func (c *classes) draw(l *lane) *stream.Draw {
+	if c.next == blockSteps {
+		l.random.Fill(&l.draws)
+		c.next = 0
+	}
+	c.next++
+	return &l.draws[c.next-1]
+}
+
 func (k *sparse) advance(lanes []lane) {
 	for i := range lanes {
 		l := &lanes[i]
@@ -156,14 +170,14 @@ func (k *sparse) advance(lanes []lane) {
 // tells whether the run goes on.
 func (k *sparse) try(l *lane) bool {
 	c := l.classes
-	draw := l.random.Next()
+	draw := c.draw(l)
 	t := l.time + draw.Exp/c.total
 	if t > l.next && !k.late(l, t) {
 		return false
 	}
 	l.time = t
 	r, w := c.choose(draw.Unit * c.total)
-	if l.random.Main.Float64()*w >= c.values[r] {
+	if l.accept.Float64()*w >= c.values[r] {
 		return true
 	}
 	return k.fired(l, int(r))
@@ -171,11 +185,11 @@ func (k *sparse) try(l *lane) bool {
 
 // fired lets reaction r fire and tells whether the run goes on.
 func (k *sparse) fired(l *lane, r int) bool {
-	k.fire(l, r)
+	over := k.fire(l, r)
 	l.left--
 	ok := true
-	for _, d := range k.dependents[r] {
+	for _, d := range k.dependents.of(r) {
 		ok = l.classes.set(d, k.props[d].at(l.counts)) && ok
 	}
-	return k.settle(l, l.classes.rate(ok))
+	return k.goesOn(l, over, l.classes.rate(ok))
 }

@@ -11,11 +11,32 @@ import (
 // A system is a plan worked out: what the workers share and only read.
 type system struct {
 	Plan
-	changes    [][]change // of each reaction, by species
-	bursts     [][]burst
-	dependents [][]int32 // reactions whose propensity a firing may change
+	changes    lists[change] // of each reaction, by species
+	bursts     lists[burst]
+	dependents lists[int32] // reactions whose propensity a firing may change
 	targets    []target
 	groups     []group
+}
+
+// lists are as many lists as there are reactions, end to end: a network of
+// thousands of reactions should stay in the cache.
+type lists[T any] struct {
+	items []T
+	ends  []int32
+}
+
+func (l *lists[T]) add(items []T) {
+	l.items = append(l.items, items...)
+	l.ends = append(l.ends, int32(len(l.items)))
+}
+
+// of gives the list of reaction r.
+func (l *lists[T]) of(r int) []T {
+	first := int32(0)
+	if r > 0 {
+		first = l.ends[r-1]
+	}
+	return l.items[first:l.ends[r]]
 }
 
 // A change is what one firing adds to a species' count.
@@ -68,9 +89,9 @@ func (s *system) addReaction(re *model.Reaction, readers [][]int32) {
 		dependents = append(dependents, readers[t.Species]...)
 	}
 	slices.Sort(dependents)
-	s.changes = append(s.changes, changes)
-	s.bursts = append(s.bursts, bursts)
-	s.dependents = append(s.dependents, slices.Compact(dependents))
+	s.changes.add(changes)
+	s.bursts.add(bursts)
+	s.dependents.add(slices.Compact(dependents))
 }
 
 // A target is a core that ends a run. Its bounds are tested in the order that is

@@ -115,6 +115,15 @@ func (w *worker) late(l *lane, t float64) bool {
 	return false
 }
 
+// goesOn is settle for a lane of which only what the last firing changed need be
+// looked at: over tells whether it took a count above the limit.
+func (w *worker) goesOn(l *lane, over bool, total float64) bool {
+	if !over && total >= never && total <= math.MaxFloat64 && l.left != 0 && w.entered(l.counts) < 0 {
+		return true
+	}
+	return w.settle(l, total)
+}
+
 // settle tells whether a run goes on from the lane's counts, whose propensities
 // sum to total; if not, it is recorded. A NaN total means that a rate is bad.
 func (w *worker) settle(l *lane, total float64) bool {
