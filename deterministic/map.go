@@ -14,6 +14,9 @@ type Options struct {
 	// CoreShare is the share of a state's linear-noise law that its core holds
 	// before it is shrunk, between 0 and 1; 0: 0.6827, one standard deviation's share.
 	CoreShare float64
+	// Seeds are further Newton starts, amounts by species, each near a state that is
+	// known to exist. An amount of exactly 0 stays 0.
+	Seeds [][]float64
 }
 
 // A Search says how the list of states was found: how far it can be trusted.

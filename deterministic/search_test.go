@@ -218,10 +218,11 @@ func TestCancelled(t *testing.T) {
 func TestWarnings(t *testing.T) {
 	m := survey(t, zoo.Latch(100))
 	all := strings.Join(m.Warnings, "\n")
-	for _, want := range []string{"low has fewer than 10 molecules", "not proved", "multi-start"} {
-		if !strings.Contains(all, want) {
-			t.Errorf("no %q in %q", want, all)
-		}
+	if want := "low has fewer than 10 molecules"; !strings.Contains(all, want) {
+		t.Errorf("no %q in %q", want, all)
+	}
+	if text := m.Search.String(); !strings.Contains(text, "multi-start") || !strings.Contains(text, "add up") {
+		t.Errorf("search %q", text)
 	}
 	m = survey(t, zoo.LeaklessLatch(0.5*(1-1e-9), 1, 1000))
 	if !strings.Contains(strings.Join(m.Warnings, "\n"), "nearly merge") {
@@ -231,4 +232,26 @@ func TestWarnings(t *testing.T) {
 	if !strings.Contains(strings.Join(m.Warnings, "\n"), "degenerate") {
 		t.Errorf("warnings %q", m.Warnings)
 	}
+}
+
+// TestSeeds: the states that few starts miss are found from seeds near them, and no
+// seed adds a state twice or one that is not there.
+func TestSeeds(t *testing.T) {
+	net := zoo.LeaklessLatch(0.4, 1, 100)
+	saddle, sink := zoo.LeaklessStates(0.4, 1)
+	var seeds [][]float64
+	for _, x := range []float64{0, saddle * 1.001, sink * 0.999, sink} {
+		seed := make([]float64, 2)
+		seed[net.SpeciesIndex("protein")], seed[net.SpeciesIndex("mrna")] = x, 0.4*x
+		seeds = append(seeds, seed)
+	}
+	m, err := Survey(context.Background(), net, Options{Starts: 1, Seeds: append(seeds, []float64{7, 0}, []float64{1})})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(m.States) != 3 || m.States[0].Amounts[0] != 0 {
+		t.Fatalf("%d states: %v", len(m.States), m.States)
+	}
+	near(t, "sink", m.States[1].Amounts[net.SpeciesIndex("protein")], sink, 1e-12)
+	near(t, "saddle", m.States[2].Amounts[net.SpeciesIndex("protein")], saddle, 1e-12)
 }

@@ -1,6 +1,9 @@
 package deterministic
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // primes are the bases of the Halton sequence, one a species; beyond them the
 // species take turns with a shift.
@@ -145,4 +148,27 @@ func (c *class) projectionRows() (rows [][]float64, totals []float64) {
 		}
 	}
 	return rows, totals
+}
+
+// plant starts Newton at the seeds of the options, each on the faces that freeze
+// none of its amounts but those of 0.
+func (f *finder) plant(faces []face) {
+	for _, seed := range f.options.Seeds {
+		for _, c := range faces {
+			if len(seed) == c.n && c.present(seed) {
+				f.starts++
+				f.tryRoot(c.class, slices.Clone(seed))
+			}
+		}
+	}
+}
+
+// present tells whether the species that x lacks are those that the class freezes.
+func (c *class) present(x []float64) bool {
+	for i, v := range x {
+		if c.frozen[i] != (v == 0) {
+			return false
+		}
+	}
+	return true
 }

@@ -28,6 +28,7 @@ func (m *Map) search(ctx context.Context, o Options) (*finder, error) {
 		f.searchFace(face.class)
 		f.loosen(face)
 	}
+	f.plant(list)
 	f.farFlows()
 	if err := ctx.Err(); err != nil {
 		return nil, err
