@@ -60,7 +60,7 @@ func TestOrderOfSpeciesAndStates(t *testing.T) {
 
 // The same problem on one thread and on three gives the same bits.
 func TestThreads(t *testing.T) {
-	p := latchProblem(30, 1)
+	p := latchProblem(20, 1)
 	p.Threads = 1
 	one := solve(t, p)
 	p.Threads = 3
@@ -80,8 +80,8 @@ func TestLargerBox(t *testing.T) {
 	at := func(high int64) *Solution {
 		return solve(t, Problem{Network: n, Cores: cores, Low: []int64{0, 0}, High: []int64{high, high}, Fixed: true})
 	}
-	wide := at(120)
-	for _, high := range []int64{36, 42, 50, 60} {
+	wide := at(90)
+	for _, high := range []int64{36, 46, 60} {
 		s := at(high)
 		for a := range cores {
 			short := (wide.Mean[a] - s.Mean[a]) / s.Mean[a]
@@ -99,7 +99,7 @@ func TestLargerBox(t *testing.T) {
 // a rare switch agree to a few times the slowest relaxation inside a basin, which
 // is 5.7 min (the Jacobian's eigenvalue at the high state), over the dwell time.
 func TestRareConsistency(t *testing.T) {
-	s := solve(t, latchProblem(60, 1))
+	s := solve(t, latchProblem(40, 1))
 	tolerance := 10 * 5.7 / min(s.Mean[0], s.Mean[1])
 	for a := range s.Mean {
 		if relative(1/s.Escape[a], s.Mean[a]) > tolerance {

@@ -88,7 +88,7 @@ func TestBadRate(t *testing.T) {
 func TestRunaway(t *testing.T) {
 	n := bind(t, draft{species: []string{"a"}, reactions: []draftReaction{{needs: counts{0: 1}, makes: counts{0: 1}, k: 2}, {uses: counts{0: 1}, k: 1}, {makes: counts{0: 1}, k: 1}}}, 1)
 	at := func(k int64) []int64 { return []int64{k} }
-	err := refusal(t, Problem{Network: n, MaxMemory: 1 << 30, Cores: []model.Core{box("low", at(2), at(2), at(2)), box("high", at(9), at(9), at(9))}}, "")
+	err := refusal(t, Problem{Network: n, MaxMemory: 64 << 20, Cores: []model.Core{box("low", at(2), at(2), at(2)), box("high", at(9), at(9), at(9))}}, "")
 	var boxed *BoxError
 	var large *TooLargeError
 	if !errors.As(err, &boxed) && !errors.As(err, &large) {
@@ -98,7 +98,7 @@ func TestRunaway(t *testing.T) {
 
 func TestCancel(t *testing.T) {
 	ctx, cancel := context.WithCancel(context.Background())
-	p := latchProblem(60, 1)
+	p := latchProblem(30, 1)
 	p.Progress = func(stage string, _ float64) {
 		if stage == "eliminating" {
 			cancel()
@@ -110,7 +110,7 @@ func TestCancel(t *testing.T) {
 }
 
 func TestEstimate(t *testing.T) {
-	p := latchProblem(60, 1)
+	p := latchProblem(30, 1)
 	e, err := p.Estimate(context.Background())
 	if err != nil {
 		t.Fatal(err)

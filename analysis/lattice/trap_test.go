@@ -39,7 +39,7 @@ func meanByLU(p Problem, s *Solution, a int) float64 {
 // for it alone. The dwell is short, so that LU in double precision has at
 // least 10 digits.
 func TestLeaklessLatch(t *testing.T) {
-	const copies = 4
+	const copies = 3
 	_, x := zoo.LeaklessStates(0.35, 1)
 	on := []int64{int64(math.Round(0.35 * x * copies)), int64(math.Round(x * copies))}
 	p := Problem{
@@ -48,7 +48,7 @@ func TestLeaklessLatch(t *testing.T) {
 			{State: "low", Start: []int64{0, 0}, Low: []int64{0, 0}, High: []int64{0, 0}},
 			{State: "high", Start: on, Low: on, High: on},
 		},
-		Truncation: 1e-8, Low: []int64{0, 0}, High: []int64{14, 30},
+		Truncation: 1e-8, Low: []int64{0, 0}, High: []int64{12, 26},
 	}
 	s := solve(t, p)
 	if !s.Never[0] || !math.IsInf(s.Mean[0], 1) || s.End[0][1] != 0 || !math.IsInf(s.Pair[0][1], 1) || s.Quasi[0] != nil {

@@ -111,7 +111,7 @@ def main():
                 print(f"copies {copies}, {m.shape[0]} states, direction {a}: {t:.10g}, {time.time() - begin:.2f} s")
         return
     out = {"versions": {"python": sys.version.split()[0], "numpy": np.__version__, "scipy": scipy.__version__}, "cases": []}
-    cases = [("latch", c, shape, latch(c, shape)) for c, shape in ((20, (61, 131)), (40, (91, 191)), (60, (121, 251)), (100, (181, 381)))]
+    cases = [("latch", c, shape, latch(c, shape)) for c, shape in ((20, (61, 131)), (40, (91, 191)), (80, (151, 311)))]
     cases.append(("trio", 5, (17, 16, 15), trio(5, (17, 16, 15))))
     for name, copies, shape, (m, cores, starts, fastest) in cases:
         means, ends = zip(*(dwell(m, cores, starts, a) for a in range(len(cores))))
