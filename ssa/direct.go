@@ -91,18 +91,17 @@ func (l *lane) total() float64 {
 }
 
 // choose gives the reaction at u, 0 ≤ u < total, along the running sums: the
-// first whose sum is above u. A sum that equals the one before it, as that of a
-// zero propensity does, is never the first above u.
+// first whose sum is above u, found by counting, without a branch. A sum that
+// equals the one before it, as that of a zero propensity does, is never the first
+// above u.
 func (k *direct) choose(l *lane, u float64) int {
-	g := 0
-	for g < len(k.groups)-1 && l.ends[g+1] <= u {
-		g++
+	bits, g := math.Float64bits(u), 0
+	for _, end := range l.ends[1 : len(l.ends)-1] {
+		g += 1 - int(above(end, bits))
 	}
-	p := g * groupWidth
-	for p < g*groupWidth+groupWidth-1 && l.ends[g]+l.sums[p] <= u {
-		p++
-	}
-	return k.reaction[p]
+	before, s := l.ends[g], (*[groupWidth]float64)(l.sums[g*groupWidth:])
+	p := above(before+s[0], bits) + above(before+s[1], bits) + above(before+s[2], bits)
+	return k.reaction[(g+1)*groupWidth-1-int(p)]
 }
 
 func (k *direct) advance(lanes []lane) {
@@ -119,7 +118,7 @@ func (k *direct) advance(lanes []lane) {
 // event advances a lane by one event and tells whether its run goes on.
 func (k *direct) event(l *lane) bool {
 	total := l.ends[len(l.ends)-1]
-	draw := l.random.Next()
+	draw := l.draw()
 	t := l.time + draw.Exp/total
 	if t > l.next && !k.late(l, t) {
 		return false

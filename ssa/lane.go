@@ -26,6 +26,7 @@ type lane struct {
 	draws  [blockSteps]stream.Draw
 	before stream.Draws
 	first  int
+	drawn  int
 
 	values, sums, ends []float64 // see direct
 	classes            *classes  // see sparse
@@ -51,7 +52,7 @@ const endOfTime = 0x1p800
 // reset puts a run at its start.
 func (s *system) reset(l *lane, run int) {
 	replicate := s.Group<<40 | (s.FirstReplicate + uint64(run))
-	l.run, l.time, l.sample, l.left = run, 0, 0, s.MaxEvents
+	l.run, l.time, l.sample, l.left, l.drawn = run, 0, 0, s.MaxEvents, blockSteps
 	if s.MaxEvents == 0 {
 		l.left = math.MaxInt64
 	}
@@ -71,6 +72,17 @@ func (s *system) events(l *lane) int64 {
 	return s.MaxEvents - l.left
 }
 
+// draw gives the next of the lane's draws, for kernels that go through them lane by
+// lane; drawn tells how many of the block have been used.
+func (l *lane) draw() *stream.Draw {
+	if l.drawn == blockSteps {
+		l.random.Fill(&l.draws)
+		l.drawn = 0
+	}
+	l.drawn++
+	return &l.draws[l.drawn-1]
+}
+
 // redraw makes the draws of a block from a step on.
 func (l *lane) redraw(step int) {
 	l.before, l.first = l.random, step
@@ -85,7 +97,7 @@ func (l *lane) redraw(step int) {
 
 // rewind takes back the draws for a step of a block and later ones.
 func (l *lane) rewind(step int) {
-	l.random = l.before
+	l.random, l.drawn = l.before, blockSteps
 	for range step - l.first {
 		l.random.Next()
 	}

@@ -3,8 +3,6 @@ package ssa
 import (
 	"math"
 	"slices"
-
-	"holdfast/internal/stream"
 )
 
 // sparse is the Sparse method: composition–rejection (Slepoy, Thompson, Plimpton,
@@ -19,21 +17,24 @@ type sparse struct {
 	*worker
 }
 
-// classes is the state of the method in one lane. Class c is that of floats whose
-// exponent bits are c.
+// classes is the state of the method in one lane.
 type classes struct {
 	values  []float64 // the propensities
-	class   []int32   // of each reaction; 0: cannot fire
+	class   []int32   // of each reaction: the exponent bits of its propensity; 0: cannot fire
 	place   []int32   // of each reaction among the members of its class
-	members [2047][]int32
-	used    []int32 // classes that have had members in this run, largest first
+	bins    []bin     // classes that have had members in this run, widest first
+	bin     [2047]int32
 	total   float64 // rate of all tries
 	changed bool    // a class has won or lost a member since total was summed
-	next    int     // of the lane's draws
 }
 
-// width is the rate at which each member of class c is tried.
-func width(c int32) float64 { return math.Float64frombits(uint64(c+1) << 52) }
+// A bin is a class in use.
+type bin struct {
+	members []int32
+	width   float64 // the rate at which each member is tried
+	inverse float64 // 1/width
+	class   int32
+}
 
 func newSparse(w *worker) *sparse { return &sparse{w} }
 
@@ -46,7 +47,6 @@ func (k *sparse) enter(l *lane) bool {
 	}
 	c := l.classes
 	c.clear()
-	c.next = blockSteps
 	ok := true
 	for r := range c.values {
 		ok = (!k.live(r) || c.set(int32(r), k.props[r].at(l.counts))) && ok
@@ -58,10 +58,7 @@ func (k *sparse) enter(l *lane) bool {
 func (c *classes) clear() {
 	clear(c.values)
 	clear(c.class)
-	for _, u := range c.used {
-		c.members[u] = c.members[u][:0]
-	}
-	c.used = c.used[:0]
+	c.bins = c.bins[:0]
 	c.changed = true
 }
 
@@ -72,37 +69,49 @@ func (c *classes) set(r int32, a float64) bool {
 	if a >= never {
 		to = int32(math.Float64bits(a) >> 52)
 	}
-	if to != c.class[r] && !bad(a) {
+	if bad(a) {
+		return false
+	}
+	if to != c.class[r] {
 		c.move(r, to)
 	}
-	return !bad(a)
+	return true
 }
 
 // move puts reaction r into another class.
 func (c *classes) move(r, to int32) {
 	if from := c.class[r]; from != 0 {
-		m := c.members[from]
-		last := m[len(m)-1]
-		m[c.place[r]] = last
+		b := &c.bins[c.bin[from]]
+		end := len(b.members) - 1
+		last := b.members[end]
+		b.members[c.place[r]] = last
 		c.place[last] = c.place[r]
-		c.members[from] = m[:len(m)-1]
+		b.members = b.members[:end]
 	}
 	if to != 0 {
-		if len(c.members[to]) == 0 {
-			c.use(to)
-		}
-		c.place[r] = int32(len(c.members[to]))
-		c.members[to] = append(c.members[to], r)
+		b := c.use(to)
+		c.place[r] = int32(len(b.members))
+		b.members = append(b.members, r)
 	}
 	c.class[r] = to
 	c.changed = true
 }
 
-func (c *classes) use(class int32) {
-	i, found := slices.BinarySearchFunc(c.used, class, func(a, b int32) int { return int(b - a) })
-	if !found {
-		c.used = slices.Insert(c.used, i, class)
+// use gives the bin of a class, a new one if it has none.
+func (c *classes) use(class int32) *bin {
+	if i := int(c.bin[class]); i < len(c.bins) && c.bins[i].class == class {
+		return &c.bins[i]
 	}
+	width := math.Float64frombits(uint64(class+1) << 52)
+	i := 0
+	for i < len(c.bins) && c.bins[i].class > class {
+		i++
+	}
+	c.bins = slices.Insert(c.bins, i, bin{width: width, inverse: 1 / width, class: class})
+	for ; i < len(c.bins); i++ {
+		c.bin[c.bins[i].class] = int32(i)
+	}
+	return &c.bins[c.bin[class]]
 }
 
 // rate gives the rate of all tries, NaN if not ok.
@@ -114,45 +123,28 @@ func (c *classes) rate(ok bool) float64 {
 		return c.total
 	}
 	c.changed, c.total = false, 0
-	for _, u := range c.used {
-		c.total += float64(len(c.members[u])) * width(u)
+	for i := range c.bins {
+		c.total += float64(len(c.bins[i].members)) * c.bins[i].width
 	}
 	return c.total
 }
 
-// choose gives the reaction tried at u, 0 ≤ u < total, and its class' width.
-func (c *classes) choose(u float64) (r int32, w float64) {
-	for _, class := range c.used {
-		m := c.members[class]
-		w = width(class)
-		if all := float64(len(m)) * w; u >= all {
-			u -= all
-			continue
+// choose gives the reaction tried at u, 0 ≤ u < total, and the width of its class.
+func (c *classes) choose(u float64) (r int32, width float64) {
+	var last *bin
+	for i := range c.bins {
+		b := &c.bins[i]
+		n := float64(len(b.members))
+		if place := u * b.inverse; place < n {
+			return b.members[int(place)], b.width
 		}
-		return m[min(int(u/w), len(m)-1)], w
-	}
-	return c.lowest()
-}
-
-// lowest is the last member of the lowest class with members: the reaction at u
-// where rounding has put u at the end of all.
-func (c *classes) lowest() (r int32, w float64) {
-	for _, class := range slices.Backward(c.used) {
-		if m := c.members[class]; len(m) > 0 {
-			return m[len(m)-1], width(class)
+		u -= n * b.width
+		if n > 0 {
+			last = b
 		}
 	}
-	return 0, math.Inf(1) // never tried: total is positive
-}
-
-// draw gives the next of the lane's draws, which are made by the block.
-func (c *classes) draw(l *lane) *stream.Draw {
-	if c.next == blockSteps {
-		l.random.Fill(&l.draws)
-		c.next = 0
-	}
-	c.next++
-	return &l.draws[c.next-1]
+	// Rounding has put u at the end of all: the last member is meant.
+	return last.members[len(last.members)-1], last.width
 }
 
 func (k *sparse) advance(lanes []lane) {
@@ -170,7 +162,7 @@ func (k *sparse) advance(lanes []lane) {
 // tells whether the run goes on.
 func (k *sparse) try(l *lane) bool {
 	c := l.classes
-	draw := c.draw(l)
+	draw := l.draw()
 	t := l.time + draw.Exp/c.total
 	if t > l.next && !k.late(l, t) {
 		return false
