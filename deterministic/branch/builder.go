@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"slices"
 
+	"holdfast/deterministic"
 	"holdfast/model"
 )
 
@@ -39,8 +40,12 @@ func newBuilder(ctx context.Context, n *model.Network, k Knob, samples []sample,
 func (b *builder) build(samples []sample) error {
 	for _, s := range samples {
 		for _, st := range s.states {
-			if _, _, err := b.place(st.Amounts, s.value); err != nil {
+			_, ok, err := b.place(st.Amounts, s.value)
+			if err != nil {
 				return err
+			}
+			if !ok && st.Kind != deterministic.Degenerate {
+				b.say("state %s at %s = %.6g could not be followed: %s", st.Name, b.knob.Name, s.value, b.reason(st.Amounts, s.value))
 			}
 		}
 	}
@@ -52,11 +57,23 @@ func (b *builder) build(samples []sample) error {
 	return nil
 }
 
+// reason says why a state cannot be followed.
+func (b *builder) reason(x []float64, value float64) string {
+	u := append(slices.Clone(x), value)
+	if b.outside(u) {
+		return "it lies outside the box"
+	}
+	if r := b.f.rough(u); r != "" {
+		return r
+	}
+	return "the equations are singular there"
+}
+
 // place finds a state's place on the branches, tracing a new one if need be; ok is
-// false where the state is degenerate.
+// false where the state is degenerate or outside the box.
 func (b *builder) place(x []float64, value float64) (a anchor, ok bool, err error) {
 	u := append(slices.Clone(x), value)
-	if !b.hold(u, b.ruler.weights(u), b.f.n, value) {
+	if !b.hold(u, b.ruler.weights(u), b.f.n, value) || b.outside(u) {
 		return a, false, nil
 	}
 	if a, ok := b.covered(u); ok {
@@ -75,6 +92,11 @@ func (b *builder) place(x []float64, value float64) (a anchor, ok bool, err erro
 // both traces a branch to both sides of its start and gives the index before which,
 // or at which, the start stands.
 func (b *builder) both(start *place) (int, error) {
+	for _, k := range b.kinks {
+		if b.f.along(k, start.u) {
+			b.say("a branch through %s = %.6g runs along a kink: %s", b.knob.Name, start.u[b.f.n], b.f.text(k))
+		}
+	}
 	forth, err := b.trace(start)
 	if err != nil {
 		return 0, err
@@ -145,7 +167,12 @@ func (b *builder) warn(m *Mark) {
 	default:
 		return
 	}
-	if !slices.Contains(b.warnings, text) {
+	b.say("%s", text)
+}
+
+// say adds a warning, once.
+func (b *builder) say(format string, a ...any) {
+	if text := fmt.Sprintf(format, a...); !slices.Contains(b.warnings, text) {
 		b.warnings = append(b.warnings, text)
 	}
 }

@@ -11,13 +11,16 @@ import (
 // that have a state at one of the samples or cross such a branch, with their
 // special points, and the window of each stable state of today.
 //
-// Errors are *OutsideError where today's setting is not in the range,
+// Errors are *OutsideError where today's setting is not in the range, *BoxError,
 // *NoStateError, and ctx's.
 func Follow(ctx context.Context, n *model.Network, k Knob, o Options) (*Diagram, error) {
 	o = o.withDefaults()
 	today := k.Today(n)
 	if today < k.Low || today > k.High {
 		return nil, &OutsideError{k.Name, today, k.Low, k.High}
+	}
+	if err := o.checkBox(n); err != nil {
+		return nil, err
 	}
 	samples, err := surveyAll(ctx, n, k, settings(k, today, o.Samples))
 	if err != nil {
@@ -80,5 +83,5 @@ func (s *spot) singular() bool {
 	for _, v := range s.values {
 		size = max(size, abs(real(v)))
 	}
-	return len(s.values) > 0 && slowRate(s.values) <= 1e-9*size
+	return len(s.values) > 0 && slowRate(s.values) <= 1e-13*size
 }

@@ -77,3 +77,14 @@ type SharedKnobError struct{ First, Second string }
 func (e *SharedKnobError) Error() string {
 	return fmt.Sprintf("%s and %s turn the same thing; give two knobs that have nothing in common", e.First, e.Second)
 }
+
+// A BoxError says that a species has no sensible upper edge in the box of amounts.
+type BoxError struct {
+	Species string
+	High    []float64
+}
+
+// Error gives the message, one sentence.
+func (e *BoxError) Error() string {
+	return fmt.Sprintf("the box of amounts needs one finite upper edge above 0 for each species; %s has none in %v", e.Species, e.High)
+}

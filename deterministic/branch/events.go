@@ -8,7 +8,7 @@ import (
 )
 
 // events lists what happens inside a segment, in the order in which it runs;
-// before and after are the eigenvalues at its ends.
+// before and after are the eigenvalues at its ends, nil at a corner.
 func (t *tracer) events(g segment, before, after []complex128) []spot {
 	var out []spot
 	meeting := t.meetingOn(g)
@@ -24,6 +24,11 @@ func (t *tracer) events(g segment, before, after []complex128) []spot {
 	}
 	for _, k := range t.kinks {
 		if s, ok := t.kinkOn(g, k); ok {
+			out = append(out, s)
+		}
+	}
+	if len(out) == 0 && before != nil && unstable(before) != unstable(after) {
+		if s, ok := t.changeOn(g, unstable(before)); ok {
 			out = append(out, s)
 		}
 	}
@@ -115,6 +120,10 @@ func (t *tracer) foldSpot(d *fold) spot {
 
 func (d *fold) weightIn(r *ruler) []float64 { return r.weights(d.u) }
 
+// leastFrequency is the frequency, relative to the fastest rate, below which a pair
+// counts as real: rounding splits a double eigenvalue into a pair by about its root.
+const leastFrequency = 1e-7
+
 // hopfOn finds the point of the segment where a complex pair crosses.
 func (t *tracer) hopfOn(g segment, before, after []complex128) (spot, bool) {
 	a, _ := pairs(before)
@@ -131,11 +140,43 @@ func (t *tracer) hopfOn(g segment, before, after []complex128) (spot, bool) {
 	}
 	s := t.spotAt(p.u, p.weight)
 	_, frequency := pairs(s.values)
-	if frequency == 0 { // two real ones of opposite sign: nothing happens
+	fastest := 0.0
+	for _, v := range s.values {
+		fastest = max(fastest, math.Hypot(real(v), imag(v)))
+	}
+	if frequency <= leastFrequency*fastest { // real ones: of opposite sign, or both 0
 		return spot{}, false
 	}
 	s.mark = t.endMark(p.u, Hopf, "")
 	s.mark.Frequency = frequency
+	return s, true
+}
+
+// changeOn finds, by bisection, where the number of unstable directions changes and
+// neither a determinant nor a pair tells why: several eigenvalues pass 0 at once, as
+// they do where symmetric branches meet. before is the number at the segment's start.
+func (t *tracer) changeOn(g segment, before int) (spot, bool) {
+	low, high := 0.0, 1.0
+	var at *place
+	for high-low > 1e-12 {
+		mid := (low + high) / 2
+		p, ok := t.within(g, mid)
+		if !ok {
+			break
+		}
+		at = p
+		if unstable(t.f.eigenvalues(p.u, p.weight)) == before {
+			low = mid
+		} else {
+			high = mid
+		}
+	}
+	if at == nil {
+		return spot{}, false
+	}
+	s := t.spotAt(at.u, at.weight)
+	s.mark = t.endMark(at.u, Crossing, "")
+	s.mark.Text = "several eigenvalues pass 0 at once"
 	return s, true
 }
 

@@ -74,7 +74,7 @@ type FoldDiagram struct {
 // followed by the equations of a fold with both knobs free (Moore and Spence, SIAM
 // J. Numer. Anal. 17 (1980) 567).
 //
-// Errors are *SharedKnobError, *OutsideError, *NoStateError and ctx's. No fold at
+// Errors are *SharedKnobError, *OutsideError, *BoxError, *NoStateError and ctx's. No fold at
 // all is no error: Curves is then empty.
 func FoldCurves(ctx context.Context, n *model.Network, first, second Knob, o Options) (*FoldDiagram, error) {
 	o = o.withDefaults()
@@ -87,6 +87,9 @@ func FoldCurves(ctx context.Context, n *model.Network, first, second Knob, o Opt
 			return nil, &OutsideError{k.Name, d.Today[i], k.Low, k.High}
 		}
 	}
+	if err := o.checkBox(n); err != nil {
+		return nil, err
+	}
 	folds, high, floor, err := foldsOver(ctx, n, first, second, o)
 	if err != nil {
 		return nil, err
@@ -94,7 +97,26 @@ func FoldCurves(ctx context.Context, n *model.Network, first, second Knob, o Opt
 	if o.High != nil {
 		high = o.High
 	}
-	return d, newFoldTracer(ctx, n, d, high, floor, o).traceAll(folds)
+	if err := newFoldTracer(ctx, n, d, high, floor, o).traceAll(folds); err != nil {
+		return nil, err
+	}
+	d.warn()
+	return d, nil
+}
+
+// warn says what a reader should know of the curves.
+func (d *FoldDiagram) warn() {
+	if len(d.Curves) == 0 {
+		d.Warnings = append(d.Warnings, fmt.Sprintf("no fold in %s at any of the settings of %s that were looked at", d.First.Name, d.Second.Name))
+	}
+	for _, c := range d.Curves {
+		for i, e := range c.Ends {
+			if e.Kind == Lost || e.Kind == BoxEdge {
+				p := c.Points[i*(len(c.Points)-1)]
+				d.Warnings = append(d.Warnings, fmt.Sprintf("a fold curve ends at %s = %.6g, %s = %.6g: %v", d.First.Name, p.First, d.Second.Name, p.Second, e))
+			}
+		}
+	}
 }
 
 // foldsOver finds the folds of the first knob at the samples of the second, as

@@ -154,6 +154,9 @@ func (r *run) visit(g segment) bool {
 	r.points, r.cusps = append(r.points, g.to.u), append(r.cusps, false)
 	if e != nil {
 		r.end = CurveEnd{Kind: e.kind, Species: t.species(e)}
+		if e.kind == Lost {
+			r.end.Text = "the edge just ahead cannot be reached"
+		}
 		if e.kind == RangeEnd {
 			r.end.Knob = t.knobs[e.unknown-t.f.n].Name
 		}

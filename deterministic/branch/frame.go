@@ -44,15 +44,18 @@ func (t *frame) species(e *edge) string {
 }
 
 // boundary cuts the segment where it first leaves the knobs' ranges or the box; nil
-// where it does not leave.
+// where it does not leave. Where the edge itself cannot be reached, the segment is
+// cut to nothing and the edge's kind is Lost.
 func (t *frame) boundary(g *segment) *edge {
 	first := t.firstEdge(g)
 	if first == nil {
 		return nil
 	}
-	if q, ok := t.edgePlace(*g, first); ok {
-		*g = segment{g.from, q, g.length * min(max(g.share(q.u), 0), 1)}
+	q, ok := t.edgePlace(*g, first)
+	if !ok {
+		q, first.kind = g.from, Lost
 	}
+	*g = segment{g.from, q, g.length * min(max(g.share(q.u), 0), 1)}
 	return first
 }
 

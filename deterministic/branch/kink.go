@@ -2,6 +2,7 @@ package branch
 
 import (
 	"fmt"
+	"math"
 
 	"holdfast/model"
 )
@@ -35,6 +36,28 @@ func (f *field) side(k kink, u []float64) float64 {
 		v -= k.node.Args[1].Eval(u[:f.n], f.constants)
 	}
 	return v
+}
+
+// along tells whether u lies on the kink to within rounding.
+func (f *field) along(k kink, u []float64) bool {
+	size := 0.0
+	for _, a := range k.node.Args {
+		size = max(size, math.Abs(a.Eval(u[:f.n], f.constants)))
+	}
+	return math.Abs(f.side(k, u)) <= 1e-12*size
+}
+
+// rough says which law has no finite derivative at u; empty where all have.
+func (f *field) rough(u []float64) string {
+	f.turn(u[f.n:])
+	for i := range f.channels {
+		c := &f.channels[i]
+		v := c.law.Gradient(u[:f.n], f.constants, f.dx, f.dc)
+		if math.IsInf(largest(f.dx), 1) || math.IsInf(v, 0) || math.IsNaN(v) {
+			return fmt.Sprintf("the law of reaction %q has no finite derivative there", f.net.Reactions[c.index].Name)
+		}
+	}
+	return ""
 }
 
 // sideGradient gives side and writes its derivatives in the unknowns into grad.

@@ -1,5 +1,11 @@
 package branch
 
+import (
+	"math"
+
+	"holdfast/model"
+)
+
 // Options steers Follow and FoldCurves. The zero value is right for nearly all
 // designs.
 type Options struct {
@@ -22,4 +28,17 @@ func (o Options) withDefaults() Options {
 		o.Steps = 4000
 	}
 	return o
+}
+
+// checkBox sees that the box, if there is one, has a positive edge for each species.
+func (o Options) checkBox(n *model.Network) error {
+	if o.High == nil {
+		return nil
+	}
+	for i, s := range n.Species {
+		if i >= len(o.High) || !(o.High[i] > 0) || math.IsInf(o.High[i], 0) {
+			return &BoxError{s.Name, o.High}
+		}
+	}
+	return nil
 }

@@ -64,7 +64,8 @@ type Window struct {
 	// State is the state's name and Amounts its amounts today.
 	State   string
 	Amounts []float64
-	// Branch is the index of its branch in Diagram.Branches.
+	// Branch is the index of its branch in Diagram.Branches; −1 where the state could
+	// not be followed, the ends then being Lost, at NaN.
 	Branch    int
 	Low, High End
 }

@@ -61,6 +61,7 @@ func (t *tracer) trace(start *place) (*path, error) {
 			s := t.spotAt(mark.u, mark.weight)
 			s.mark = mark.mark
 			p.push(s)
+			p.last.values = nil // they are another on either side
 			at = next
 		}
 	}
@@ -133,7 +134,11 @@ func (t *tracer) cut(g *segment) *Mark {
 	if e == nil {
 		return nil
 	}
-	return t.endMark(g.to.u, e.kind, t.species(e))
+	m := t.endMark(g.to.u, e.kind, t.species(e))
+	if e.kind == Lost {
+		m.Text = "the edge just ahead cannot be reached: a law is not finite or not smooth there"
+	}
+	return m
 }
 
 // corner is a sharp turn of the branch at a kink.

@@ -1,7 +1,6 @@
 package branch
 
 import (
-	"fmt"
 	"math"
 	"slices"
 
@@ -13,7 +12,10 @@ func (b *builder) window(s deterministic.State, today float64) Window {
 	w := Window{State: s.Name, Amounts: slices.Clone(s.Amounts), Branch: -1}
 	a, ok, _ := b.place(s.Amounts, today)
 	if !ok {
-		b.warnings = append(b.warnings, fmt.Sprintf("state %s could not be placed on a branch", s.Name))
+		lost := b.endMark(append(slices.Clone(s.Amounts), today), Lost, "")
+		lost.Text = b.reason(s.Amounts, today)
+		w.Low = End{*lost, math.NaN(), math.NaN()}
+		w.High = w.Low
 		return w
 	}
 	w.Branch = a.branch
