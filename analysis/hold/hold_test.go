@@ -258,3 +258,38 @@ func TestReportIsPlainJSON(t *testing.T) {
 		}
 	}
 }
+
+// Of 200 seeds at each of three copy numbers, the runs' 95 % interval holds the
+// lattice value 91 to 99 % of the time, and 93 to 97 % of the 600 together
+// (calibration). The dwells of the two states are independent, so that each copy
+// number gives two counts of 200.
+func TestRunsCoverTheLattice(t *testing.T) {
+	const seeds = 200
+	total := map[string]int{}
+	for _, copies := range []float64{12, 16, 20} {
+		n := demo(t, "latch", copies)
+		exact := run(t, n, hold.Options{Route: hold.Lattice})
+		held := map[string]int{}
+		for seed := range uint64(seeds) {
+			r := run(t, n, hold.Options{Seed: seed + 1, Route: hold.Runs, Precision: 0.2})
+			for i, d := range r.Dwells {
+				truth := exact.Dwells[i].Mean
+				if d.Low <= truth && truth <= d.High {
+					held[d.From]++
+					total[d.From]++
+				}
+			}
+		}
+		for _, from := range []string{"low", "high"} {
+			if k := held[from]; k < 182 || k > 198 {
+				t.Errorf("%v copies, %s: %d of %d intervals hold the lattice value; want 182 to 198", copies, from, k, seeds)
+			}
+		}
+	}
+	for _, from := range []string{"low", "high"} {
+		if k := total[from]; k < 558 || k > 582 {
+			t.Errorf("%s: %d of 600 intervals hold the lattice value; want 558 to 582", from, k)
+		}
+	}
+	t.Logf("held: %v of 600", total)
+}

@@ -73,9 +73,18 @@ func (j *job) addLattice(s *lattice.Solution, from int) {
 	}
 }
 
+// rounding bounds the relative error of the arithmetic: sums and products of
+// positive numbers alone. The tests of package lattice hold it to a thousandth of
+// this against extended precision.
+const rounding = 1e-9
+
 // addExact adds one row; mean is +Inf for a pair that does not occur.
 func (j *job) addExact(s *lattice.Solution, from, to int, mean float64) {
 	b := s.Bound[from]
+	if to >= 0 {
+		b = s.PairBound[from][to]
+	}
+	b += rounding
 	row := DwellReport{
 		From: s.Names[from], To: j.recordName(to), Route: Lattice, Bound: Value(b), Mean: Value(mean), Low: Value(mean * (1 - b)), High: Value(mean * (1 + b)),
 		Exposure: Value(math.NaN()), PerGeneration: Value(math.NaN()), PerGenerationLow: Value(math.NaN()), PerGenerationHigh: Value(math.NaN()),
