@@ -12,7 +12,8 @@ import (
 )
 
 // randomGenes is a network of genes that switch each other on or off by Hill laws
-// with random constants; the first constant, "turn", is the first gene's drive.
+// with random constants; the first, "turn", is the first gene's drive, the second, "half", the
+// half-amount of what drives it.
 func randomGenes(t testing.TB, r *rand.Rand) *model.Network {
 	t.Helper()
 	s := newSketch(50)
@@ -31,7 +32,11 @@ func randomGenes(t testing.TB, r *rand.Rand) *model.Network {
 			op = model.OpHillFall
 		}
 		by := genes[(i+1)%count]
-		law := model.Call(op, by, num(0.5+r.Float64()), num(float64(2+r.IntN(3))))
+		half := num(0.5 + r.Float64())
+		if i == 0 {
+			half = s.constant("half", half.Value)
+		}
+		law := model.Call(op, by, half, num(float64(2+r.IntN(3))))
 		if r.IntN(3) == 0 { // and itself too
 			law = plus(law, model.Call(model.OpHill, x, num(0.5+2*r.Float64()), num(4)))
 		}
@@ -122,4 +127,80 @@ func compareStates(t *testing.T, what string, got [][]float64, m *deterministic.
 			t.Errorf("%s: no branch passes %.4g, the nearest state is %.2g away", what, s.Amounts, best)
 		}
 	}
+}
+
+// At settings of the second knob that were not sampled, the fold curves hold just the
+// folds that following the first knob finds there.
+func TestFoldCurvesHoldTheFoldsBetweenSamples(t *testing.T) {
+	const seed, networks = 8, 5
+	r := rand.New(rand.NewPCG(seed, 0))
+	compared := 0
+	for k := range networks {
+		n := randomGenes(t, r)
+		d := foldCurves(t, n, "turn", 0.1, 10, "half", 0.3, 2)
+		for _, v := range []float64{0.6, 1.33} {
+			second := d.Second
+			bound, ok := rebind(n, second, v)
+			if !ok {
+				t.Fatal("cannot be bound")
+			}
+			want := follow(t, bound, "turn", 0.1, 10).Folds()
+			if nearCusp(d, v) {
+				continue
+			}
+			got := foldsAt(d, v)
+			compared += len(want)
+			if len(got) != len(want) {
+				t.Errorf("network %d: the curves have %d folds %.6g at %g, following finds %d: %v", k, len(got), got, v, len(want), knobsOf(want))
+			}
+			for _, m := range want {
+				best := math.Inf(1)
+				for _, x := range got {
+					best = min(best, math.Abs(x-m.Knob)/m.Knob)
+				}
+				if len(got) == len(want) && best > 0.01 { // a chord of a step
+					t.Errorf("network %d: no curve passes the fold at %g, %g", k, m.Knob, v)
+				}
+			}
+		}
+	}
+	if compared < networks {
+		t.Errorf("%d folds compared only", compared)
+	}
+}
+
+// foldsAt gives the first knob where the curves have the second at v.
+func foldsAt(d *FoldDiagram, v float64) []float64 {
+	var out []float64
+	for _, c := range d.Curves {
+		for i := 1; i < len(c.Points); i++ {
+			p, q := c.Points[i-1], c.Points[i]
+			if (p.Second < v) != (q.Second < v) {
+				out = append(out, p.First+(v-p.Second)/(q.Second-p.Second)*(q.First-p.First))
+			}
+		}
+	}
+	return out
+}
+
+// nearCusp tells whether a curve turns back in the second knob within 1 % of v: two
+// folds are nearly one there.
+func nearCusp(d *FoldDiagram, v float64) bool {
+	for _, c := range d.Curves {
+		for i := 1; i < len(c.Points)-1; i++ {
+			p, q, r := c.Points[i-1].Second, c.Points[i].Second, c.Points[i+1].Second
+			if (q-p)*(r-q) <= 0 && math.Abs(q-v) < 0.01*v {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+func knobsOf(list []Mark) []float64 {
+	var out []float64
+	for _, m := range list {
+		out = append(out, m.Knob)
+	}
+	return out
 }
