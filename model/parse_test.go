@@ -197,6 +197,28 @@ func TestOneProblem(t *testing.T) {
 	}
 }
 
+// TestAfterSyntaxErrors checks that reading goes on after a syntax error: names that
+// it may have cost are not reported, all others are.
+func TestAfterSyntaxErrors(t *testing.T) {
+	for _, c := range []struct{ old, new string }{
+		// h is lost; w never was there
+		{"h = 1.5\n", "h = .5\n"},
+		// a table that is not closed loses every name in it, over several lines
+		{"y = { start = 2, readout = true }\n", "y = { start = 2,\n  readout = true\ng = { start = 1 }\n"},
+	} {
+		text, _, _ := changed(t, c.old, c.new)
+		text = strings.Replace(text, "hill(x, h, 2)", "hill(x, h, w)", 1)
+		_, err := Parse("t.toml", []byte(text))
+		var problems Problems
+		if !errors.As(err, &problems) {
+			t.Fatal(err)
+		}
+		if len(problems) != 2 || !strings.Contains(problems[1].Message, `"w"`) {
+			t.Errorf("%q:\n%v", c.new, err)
+		}
+	}
+}
+
 // TestGoodDesign checks everything that the good design states.
 func TestGoodDesign(t *testing.T) {
 	d, err := Parse("t.toml", []byte(good))
@@ -222,6 +244,10 @@ lose y: 2 y + (y) → ∅; 0.5*y^3; scale 10; 34.2 at the start
 	want = strings.Replace(want, "1 at the start", "6.154 at the start", 1)
 	if got != want {
 		t.Errorf("got\n%swant\n%s", got, want)
+	}
+	// make y in bursts of mean 4: 4 Ω/Ω a firing; lose y: −2; g is read only.
+	if a, b, c := n.AmountChange(0, 1), n.AmountChange(2, 1), n.AmountChange(0, 2); a != 4 || b != -2 || c != 0 {
+		t.Errorf("amount changes %v, %v, %v", a, b, c)
 	}
 	if fmt.Sprint(n.Declared) != "[{high [{0 4 9223372036854775807} {1 1 9}]}]" {
 		t.Errorf("declared cores %v", n.Declared)

@@ -49,9 +49,10 @@ func TestPositions(t *testing.T) {
 
 // TestNearNames checks the suggestions; the distances are counted by hand.
 func TestNearNames(t *testing.T) {
-	names := []string{"protein", "mrna", "k", "copies", "half"}
+	names := []string{"protein", "mrna", "k", "copies", "half", "proteins"}
 	for typed, want := range map[string]string{
 		"protien":  "protein", // two letters swapped: 1
+		"protei":   "protein", // one letter short, and two of proteins
 		"Protein":  "protein", // case only: 0
 		"portien":  "protein", // two swaps: 2 of 7
 		"mRNA":     "mrna",

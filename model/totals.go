@@ -47,17 +47,13 @@ func (n *Network) directions() []sparse {
 	var out []sparse
 	for _, r := range n.Reactions {
 		var d sparse
-		burst := map[int]bool{}
-		for _, t := range r.Bursts {
-			burst[t.Species] = true
-			out = append(out, sparse{{t.Species, big.NewInt(1)}})
-		}
 		for _, t := range r.Net {
-			if !burst[t.Species] {
-				d = append(d, entry{t.Species, big.NewInt(int64(t.Count))})
-			}
+			d = append(d, entry{t.Species, big.NewInt(int64(t.Count))})
 		}
 		out = append(out, d)
+		for _, t := range r.Bursts {
+			out = append(out, sparse{{t.Species, big.NewInt(1)}})
+		}
 	}
 	out = slices.DeleteFunc(out, func(d sparse) bool { return len(d) == 0 })
 	for _, d := range out {
