@@ -77,7 +77,13 @@ func (m *Map) stateWarnings() {
 	name := m.Network.Species[r].Name
 	for i := range m.States {
 		s := &m.States[i]
+		kink := ""
+		if s.Kind == Degenerate {
+			kink = m.kinkAt(s.Amounts)
+		}
 		switch {
+		case kink != "":
+			m.warn("%s lies at a kink, and its stability is not told: %s", s.Name, kink)
 		case s.Kind == Degenerate:
 			m.warn("%s is degenerate: an eigenvalue is 0 to within rounding, so the design sits on a fold or a branch point; move a constant to see which way it falls", s.Name)
 		case !s.Kind.Stable():

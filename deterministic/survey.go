@@ -162,7 +162,11 @@ func (m *Map) noStates(f *finder) error {
 		i := f.ranAway[0]
 		return &RunawayError{m.Network.Species[i].Name, f.limit[i]}
 	case degenerate > 0:
-		return fmt.Errorf("%w: the design sits on a fold or branch point, at %v; move a constant a little", ErrNoRestingState, m.States[len(m.States)-1].Amounts)
+		at := m.States[len(m.States)-1].Amounts
+		if kink := m.kinkAt(at); kink != "" {
+			return fmt.Errorf("%w whose stability is known: at %v, %s; move a constant a little", ErrNoRestingState, at, kink)
+		}
+		return fmt.Errorf("%w: the design sits on a fold or branch point, at %v; move a constant a little", ErrNoRestingState, at)
 	case f.unsettled > 0:
 		return fmt.Errorf("%w: amounts keep moving, as in an oscillator", ErrNoRestingState)
 	}
