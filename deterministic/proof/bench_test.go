@@ -40,3 +40,7 @@ func BenchmarkTwoGenes(b *testing.B)      { benchmark(b, twoGenes(b, 1, 2), 3) }
 func BenchmarkTwoGenesReal(b *testing.B)  { benchmark(b, twoGenes(b, 1, 2.3), 3) }
 func BenchmarkInducible(b *testing.B)     { benchmark(b, zoo.InducibleRepression(0, 1), 3) }
 func BenchmarkDimerSwitch(b *testing.B)   { benchmark(b, zoo.DimerSwitch(), 3) }
+
+// BenchmarkSixGenes is six genes that feed themselves and repress each other: 63
+// states in six dimensions.
+func BenchmarkSixGenes(b *testing.B) { benchmark(b, mutual(b, 6, 1, 2, 1), 63) }

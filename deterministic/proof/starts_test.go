@@ -70,9 +70,9 @@ func newton(n *model.Network, x []float64) (ok bool) {
 	return false
 }
 
-// TestManyStates holds networks of many states against Newton's method from random
-// points: each of its states is in the proved list, and it finds every one of
-// them. With self-feeding each gene is on or off and nearly free: 2ᵏ⁺¹−1 states.
+// TestManyStates holds networks of many states against Newton's method: each state
+// that it finds from random points is in the proved list, and from a thousandth
+// beside each state of the list it finds that state. With self-feeding each gene is on or off and nearly free: 2ᵏ⁺¹−1 states.
 func TestManyStates(t *testing.T) {
 	r := rand.New(rand.NewPCG(31, 32))
 	for _, c := range []struct {
@@ -92,24 +92,27 @@ func TestManyStates(t *testing.T) {
 			t.Errorf("%s: %v, want %d", c.name, p, c.want)
 			continue
 		}
-		hit := make([]bool, len(p.Roots))
-		x := make([]float64, len(c.n.Species))
-		for range 3000 {
-			for i := range x {
-				x[i] = 1.1 * p.High[i] * r.Float64()
-			}
-			if newton(c.n, x) {
-				k := member(p, x)
-				if k < 0 {
-					t.Fatalf("%s: the state at %v is not in the list", c.name, x)
-				}
-				hit[k] = true
-			}
+		compare(t, c.name, c.n, p, r)
+	}
+}
+
+func compare(t *testing.T, name string, n *model.Network, p *proof.Result, r *rand.Rand) {
+	t.Helper()
+	x := make([]float64, len(n.Species))
+	for range 1000 {
+		for i := range x {
+			x[i] = 1.1 * p.High[i] * r.Float64()
 		}
-		for k, ok := range hit {
-			if !ok {
-				t.Errorf("%s: Newton's method never came to state %d at %v", c.name, k, p.Roots[k].Point)
-			}
+		if newton(n, x) && member(p, x) < 0 {
+			t.Fatalf("%s: the state at %v is not in the list", name, x)
+		}
+	}
+	for k, root := range p.Roots {
+		for i, v := range root.Point {
+			x[i] = v * (1 + 1e-3*r.Float64())
+		}
+		if !newton(n, x) || member(p, x) != k {
+			t.Errorf("%s: Newton's method from beside state %d at %v came to %v", name, k, root.Point, x)
 		}
 	}
 }
@@ -165,14 +168,14 @@ func anyCircuit(t testing.TB, r *rand.Rand) *model.Network {
 	return d.network(t)
 }
 
-// TestRandomCircuits proves the lists of 150 random circuits of two to eight species
+// TestRandomCircuits proves the lists of 80 random circuits of two to eight species
 // and looks for states that they lack, by Newton's method from random points. The
 // number of states is odd: all flow points into a large box, and so the signs of the
 // Jacobian's determinant at the states sum to ±1 (degree theory, common practice).
 func TestRandomCircuits(t *testing.T) {
 	r := rand.New(rand.NewPCG(41, 42))
 	many := 0
-	for k := range 150 {
+	for k := range 80 {
 		n := anyCircuit(t, r)
 		p := prove(t, n, nil, nil)
 		if !p.Complete || !p.All || len(p.Roots)%2 == 0 {
@@ -183,7 +186,7 @@ func TestRandomCircuits(t *testing.T) {
 			many++
 		}
 		x := make([]float64, len(n.Species))
-		for range 100 {
+		for range 50 {
 			for i := range x {
 				x[i] = p.High[i] * math.Pow(10, -3*r.Float64())
 			}
@@ -192,7 +195,7 @@ func TestRandomCircuits(t *testing.T) {
 			}
 		}
 	}
-	if many < 10 {
+	if many < 6 {
 		t.Errorf("only %d circuits have several states", many)
 	}
 }
