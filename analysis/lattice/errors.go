@@ -18,6 +18,7 @@ type RateError struct {
 	Value    float64
 }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *RateError) Error() string {
 	return fmt.Sprintf("reaction %q has the rate %v at %s; rates must be finite and not negative",
 		e.Reaction, e.Value, place(e.Species, e.Counts))
@@ -41,6 +42,7 @@ type DimensionError struct {
 	Species    []string // the species with long ranges
 }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *DimensionError) Error() string {
 	return fmt.Sprintf("the lattice route serves one to three independent species; this design has %d (%v): use exact runs or staged runs",
 		e.Dimensions, e.Species)
@@ -55,6 +57,7 @@ type TooLargeError struct {
 	AtLeast bool
 }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *TooLargeError) Error() string {
 	some := ""
 	if e.AtLeast {
@@ -71,6 +74,7 @@ func gib(bytes int64) float64 { return float64(bytes) / (1 << 30) }
 // core nor left for one.
 type UnreachableError struct{ State string }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *UnreachableError) Error() string {
 	return fmt.Sprintf("no path of reactions joins the core of state %q to another core, either way: its conserved totals differ, or the core is wrong", e.State)
 }
@@ -78,12 +82,14 @@ func (e *UnreachableError) Error() string {
 // A CoreError tells that a core cannot serve as a start or a target.
 type CoreError struct{ State, Why string }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *CoreError) Error() string { return fmt.Sprintf("core of state %q: %s", e.State, e.Why) }
 
 // A RangeError tells that a dwell time, or a probability, is beyond what numbers
 // of double precision hold.
 type RangeError struct{ State string }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *RangeError) Error() string {
 	return fmt.Sprintf("the mean dwell time of state %q is beyond about 1e280 and cannot be held in double precision: use the weak-noise limit", e.State)
 }
@@ -95,6 +101,7 @@ type BoxError struct {
 	Bound, Asked float64
 }
 
+// Error says what is wrong and, where something helps, what to do.
 func (e *BoxError) Error() string {
 	return fmt.Sprintf("the box %v still leaves a truncation error of %.2g where %.2g was asked: the counts may grow without limit", e.Box, e.Bound, e.Asked)
 }

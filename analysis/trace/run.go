@@ -23,7 +23,13 @@ type Summary struct {
 	Sketch   *Sketch // of the first path
 	Rows     int64
 	Warnings []string
+	// Interrupted tells that the context was done before the last path was; what is
+	// here and in the records are whole paths.
+	Interrupted bool
 }
+
+// ErrNothingDone is returned when the context was done before any path was.
+var ErrNothingDone = errors.New("stopped before the first path was done: nothing is kept")
 
 // Run makes sample paths of the network and writes them to the table paths, beside
 // the table states. A design with one resting state or none is traced too; that
@@ -33,7 +39,7 @@ func Run(ctx context.Context, network *model.Network, o Options, out Output) (*S
 	s := &Summary{}
 	if err != nil {
 		if ctx.Err() != nil {
-			return nil, err
+			return nil, ErrNothingDone
 		}
 		s.Warnings = append(s.Warnings, err.Error())
 	}
@@ -56,9 +62,13 @@ func Run(ctx context.Context, network *model.Network, o Options, out Output) (*S
 		}
 		return w.add(r)
 	})
-	if err != nil {
+	switch {
+	case err != nil && ctx.Err() == nil:
 		return nil, hold.Explain(network, err)
+	case err != nil && s.Rows == 0:
+		return nil, ErrNothingDone
 	}
+	s.Interrupted = err != nil
 	return s, w.finish(s)
 }
 
@@ -107,7 +117,11 @@ func (w *writer) finish(s *Summary) error {
 	if w == nil {
 		return nil
 	}
-	return w.folder.Finish(records.Outcome{Events: s.Paths.Events, Warnings: s.Warnings})
+	o := records.Outcome{Events: s.Paths.Events, Warnings: s.Warnings, CutShort: s.Interrupted}
+	if o.CutShort {
+		o.Reason = "interrupted"
+	}
+	return w.folder.Finish(o)
 }
 
 func (w *writer) abandon() {

@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"errors"
 	"fmt"
 
 	"github.com/spf13/pflag"
@@ -56,6 +57,9 @@ func runTrace(ctx context.Context, t terminal, path string, design *designChoice
 	writeWarnings(t.out, s.Warnings)
 	if out.Folder != "" {
 		fmt.Fprintln(t.err, "records are in", out.Folder)
+	}
+	if s.Interrupted {
+		return errors.New("stopped before it was done; what is here are the whole paths made by then")
 	}
 	return nil
 }
