@@ -1,11 +1,7 @@
 package model
 
 import (
-	"fmt"
-	"math"
 	"slices"
-
-	"github.com/pelletier/go-toml/v2/unstable"
 )
 
 // designer turns a TOML tree into a draft; what is wrong goes to the reporter.
@@ -117,92 +113,6 @@ func (d *designer) required(root *tomlTable) {
 func (d *designer) unknownKey(e *tomlEntry, known []string) {
 	d.errorf(e.at, nearHint(e.key, known), "unknown key %q", e.key)
 }
-
-// table gives the table of an entry that must be one.
-func (d *designer) table(e *tomlEntry, hint string) *tomlTable {
-	if e.value.table == nil {
-		d.errorf(e.value.at, hint, "%s must be a table, not %s", e.key, e.value.valueKind())
-		return nil
-	}
-	return e.value.table
-}
-
-// text gives the string of an entry that must be one.
-func (d *designer) text(e *tomlEntry) (string, bool) {
-	if e.value.kind != unstable.String {
-		d.errorf(e.value.at, "write it in quotes: "+e.key+` = "…"`, "%s must be a text, not %s", e.key, e.value.valueKind())
-		return "", false
-	}
-	return e.value.text, true
-}
-
-// flag gives the value of an entry that must be true or false.
-func (d *designer) flag(e *tomlEntry) bool {
-	if e.value.kind != unstable.Bool {
-		d.errorf(e.value.at, "write "+e.key+" = true, without quotes, or leave it out", "%s must be true or false, not %s", e.key, e.value.valueKind())
-		return false
-	}
-	return e.value.text == "true"
-}
-
-// span is what a number may be.
-type span struct {
-	allowed string
-	within  func(v float64) bool
-}
-
-var (
-	positive    = span{"a finite number above 0", func(v float64) bool { return v > 0 }}
-	wholeCount  = span{"a whole number, not below 0", func(v float64) bool { return v >= 0 }}
-	notNegative = span{"a finite number, not below 0", func(v float64) bool { return v >= 0 }}
-)
-
-// number gives the value of an entry that must be a finite number within s.
-func (d *designer) number(e *tomlEntry, s span) (float64, bool) {
-	v, ok := d.anyNumber(e.key, &e.value, s.allowed)
-	if !ok {
-		return 0, false
-	}
-	if math.IsNaN(v) || math.IsInf(v, 0) || !s.within(v) {
-		d.errorf(e.value.at, "it must be "+s.allowed, "%s = %s is not allowed", e.key, e.value.text)
-		return 0, false
-	}
-	return v, true
-}
-
-// anyNumber reads a number, finite or not.
-func (d *designer) anyNumber(key string, v *tomlValue, want string) (float64, bool) {
-	if v.kind != unstable.Integer && v.kind != unstable.Float {
-		hint := "it must be " + want
-		if v.kind == unstable.String && looksNumeric(v.text) {
-			hint = "leave out the quotes: " + key + " = " + v.text
-		}
-		d.errorf(v.at, hint, "%s must be a number, not %s", key, v.valueKind())
-		return 0, false
-	}
-	x, err := parseNumber(v)
-	if err != nil {
-		d.errorf(v.at, "it must be "+want, "%s = %s is too large", key, v.text)
-		return 0, false
-	}
-	return x, true
-}
-
-// whole gives the value of an entry that must be a whole number, not below 0.
-func (d *designer) whole(e *tomlEntry) (int64, bool) {
-	v, ok := d.number(e, wholeCount)
-	if !ok {
-		return 0, false
-	}
-	if v != math.Trunc(v) || math.Abs(v) > largestWhole {
-		d.errorf(e.value.at, fmt.Sprintf("it must be a whole number of molecules, at most %d", int64(largestWhole)), "%s = %s is not a whole number that can be counted", e.key, e.value.text)
-		return 0, false
-	}
-	return int64(v), true
-}
-
-// largestWhole is the largest count that a float64 still tells from the next one.
-const largestWhole = 1 << 53
 
 // declare enters a name, or reports why it cannot be one.
 func (d *designer) declare(e *tomlEntry, thing namedThing) {

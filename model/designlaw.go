@@ -1,7 +1,6 @@
 package model
 
 import (
-	"math"
 	"slices"
 
 	"github.com/pelletier/go-toml/v2/unstable"
@@ -26,8 +25,8 @@ func (d *designer) constantFormula(e *tomlEntry, s span) *Node {
 	for i, c := range d.draft.Constants {
 		values[i] = c.Value
 	}
-	if v := tree.Eval(nil, values); math.IsNaN(v) || math.IsInf(v, 0) || !s.within(v) {
-		d.errorf(e.value.at, "it must be "+s.allowed, "%s is %v with the constants of this file", e.key, v)
+	if v := tree.Eval(nil, values); !s.holds(v) {
+		d.errorf(e.value.at, "it must be "+s.String(), "%s is %v with the constants of this file", e.key, v)
 		return nil
 	}
 	return tree
