@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"runtime"
+	"slices"
 
 	"holdfast/deterministic/proof/interval"
 	"holdfast/model"
@@ -24,8 +25,8 @@ type Problem struct {
 	// MaxBoxes limits the work; the default, for 0, is 200,000 boxes.
 	MaxBoxes int
 	// Width is the width at which a box that can neither be excluded nor proved to
-	// hold one state is given up, as a share of its amounts (of a thousandth of
-	// High, for amounts below that). The default, for 0, is 1e-8.
+	// hold one state is given up, as a share of its amounts (of a millionth of the
+	// largest, for amounts below that). The default, for 0, is 1e-8.
 	Width float64
 	// Threads is the number of goroutines; the default, for 0, is one a processor.
 	// The result does not depend on it.
@@ -62,17 +63,23 @@ func Prove(ctx context.Context, p Problem) (*Result, error) {
 	for k, i := range t.system.species {
 		start[k] = iv{Lo: low[i], Hi: high[i]}
 	}
-	t.bounds = start
-	t.reach = reach(start)
-	threads, limit := p.Threads, p.MaxBoxes
-	if threads <= 0 {
-		threads = runtime.GOMAXPROCS(0)
-	}
-	if limit <= 0 {
-		limit = 200_000
-	}
-	out := t.search(ctx, append(box(nil), start...), limit, threads)
+	t.bounds, t.reach = start, reach(start)
+	out := t.search(ctx, slices.Clone(start), p.limit(), p.threads())
 	return out.result(low, high, all), nil
+}
+
+func (p *Problem) limit() int {
+	if p.MaxBoxes <= 0 {
+		return 200_000
+	}
+	return p.MaxBoxes
+}
+
+func (p *Problem) threads() int {
+	if p.Threads <= 0 {
+		return runtime.GOMAXPROCS(0)
+	}
+	return p.Threads
 }
 
 // reach is the box widened by a hundredth, not below 0.

@@ -32,7 +32,7 @@ func (e *examiner) split(b box, heaps []heap) report {
 
 // wide tells whether the unknown may be cut further.
 func (e *examiner) wide(a iv, i int) bool {
-	scale := max(a.Mag(), 1e-3*e.t.bounds[i].Hi)
+	scale := max(a.Mag(), 1e-6*e.t.most[i])
 	m := a.Lo + 0.4873*(a.Hi-a.Lo)
 	return a.Width() > e.t.width*scale && a.Lo < m && m < a.Hi
 }

@@ -14,8 +14,9 @@ type task struct {
 	network *model.Network
 	totals  []model.Total
 	values  []float64
-	bounds  box // what is searched
-	reach   box // a little more, so that a state on an edge can be enclosed
+	bounds  box       // what is searched
+	reach   box       // a little more, so that a state on an edge can be enclosed
+	most    []float64 // the largest amounts that come into question
 	width   float64
 	system  *system
 
@@ -60,12 +61,20 @@ func (t *task) buildFace(absent []bool) *system {
 // number of threads.
 const batch = 32
 
-// search examines boxes until none are left, or the limit is reached.
+// search examines the parts of the box start, which it changes, until none are
+// left, or the limit is reached.
 func (t *task) search(ctx context.Context, start box, limit, threads int) (out *outcome) {
 	out = &outcome{task: t}
 	workers := make([]*examiner, threads)
 	for i := range workers {
 		workers[i] = &examiner{newWorker(t.system), t}
+	}
+	if workers[0].narrow(start, 1e-3, 1000) {
+		return out
+	}
+	t.most = make([]float64, len(start))
+	for i, a := range start {
+		t.most[i] = a.Hi
 	}
 	stack := []box{start}
 	for len(stack) > 0 {
