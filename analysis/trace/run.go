@@ -24,7 +24,8 @@ type Summary struct {
 	Rows     int64
 	Warnings []string
 	// Interrupted tells that the context was done before the last path was; what is
-	// here and in the records are whole paths.
+	// here and in the records are whole paths, or, of paths too long for memory, whole
+	// segments.
 	Interrupted bool
 }
 

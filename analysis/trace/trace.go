@@ -6,6 +6,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"slices"
 
 	"holdfast/deterministic"
 	"holdfast/model"
@@ -15,8 +16,12 @@ import (
 const (
 	defaultSamples = 1000
 	// mostSamples bounds the rows of one run.
-	mostSamples = 1 << 30
-	// blockNumbers is the most counts that are in memory at once, but for a single run.
+	mostSamples = 1 << 40
+	// segment is the most samples of one run that are in memory at once. A longer run
+	// is made in segments, each from where the last one ended with random numbers of
+	// its own: the process has no memory, so that the law is the same.
+	segment = 1 << 18
+	// blockNumbers is about the most counts that are in memory at once.
 	blockNumbers = 1 << 22
 	blockRuns    = 64
 )
@@ -60,7 +65,7 @@ type Paths struct {
 
 	options Options
 	start   []int64
-	times   []float64
+	samples int64 // of one run
 }
 
 // New plans paths through the network that survey describes. Errors state the
@@ -83,12 +88,12 @@ func New(network *model.Network, survey *deterministic.Map, o Options) (*Paths, 
 	case o.Runs < 0 || o.Runs > 1<<31:
 		return nil, fmt.Errorf("runs is %d; it must be from 1 to 2³¹", o.Runs)
 	}
-	p.times = make([]float64, int(math.Floor(p.Until/p.Every*(1+1e-12)))+1)
-	for k := range p.times {
-		p.times[k] = math.Min(float64(k)*p.Every, p.Until)
-	}
+	p.samples = int64(math.Floor(p.Until/p.Every*(1+1e-12))) + 1
 	return p, p.setStart(o.From)
 }
+
+// time is that of sample k.
+func (p *Paths) time(k int64) float64 { return math.Min(float64(k)*p.Every, p.Until) }
 
 // defaultUntil is 20 generations, or 200 of the longest correlation time.
 func (p *Paths) defaultUntil() float64 {
@@ -119,49 +124,16 @@ func (p *Paths) setStart(from string) error {
 }
 
 // Make makes the paths and gives every sample to row, run by run and in order of
-// time; an error of row stops it. If ctx is done first, the error is its cause,
-// and the rows given so far are whole runs.
+// time; an error of row stops it. If ctx is done first, the error is its cause. The
+// rows given by then are whole runs, unless a run is longer than is kept in memory.
 func (p *Paths) Make(ctx context.Context, row func(Row) error) error {
-	species := len(p.start)
-	size := min(max(blockNumbers/(species*len(p.times)), 1), blockRuns)
-	b := block{paths: p, counts: make([]int64, min(size, p.Runs)*len(p.times)*species), reached: make([]int, size)}
-	for first := 0; first < p.Runs; first += size {
-		if err := b.make(ctx, first, min(size, p.Runs-first)); err != nil {
-			return err
-		}
-		if err := b.give(first, min(size, p.Runs-first), row); err != nil {
-			return err
-		}
+	runs := min(max(blockNumbers/(len(p.start)*int(min(p.samples, segment))), 1), blockRuns)
+	if p.samples > segment {
+		runs = 1
 	}
-	return nil
-}
-
-// A block is some runs held in memory: counts by run, time and species, and how
-// many samples each run reached.
-type block struct {
-	paths   *Paths
-	counts  []int64
-	reached []int
-}
-
-func (b *block) make(ctx context.Context, first, runs int) error {
-	p := b.paths
-	clear(b.reached)
-	species := len(p.start)
-	result, err := ssa.Run(ctx, ssa.Plan{
-		Network: p.Network, Start: p.start, From: -1, Runs: runs, FirstReplicate: uint64(first), Seed: p.options.Seed,
-		Group: traceGroup, Until: p.Until, Times: p.times, Threads: p.options.Threads,
-		Sample: func(run, k int, _ float64, counts []int64) {
-			copy(b.counts[(run*len(p.times)+k)*species:], counts)
-			b.reached[run] = k + 1
-		},
-	})
-	if err != nil {
-		return err
-	}
-	p.Events += result.Events
-	for i := range result.Outcomes {
-		if err := result.Outcomes[i].Err(); err != nil {
+	for first := 0; first < p.Runs; first += runs {
+		b := &block{paths: p, first: first, runs: min(runs, p.Runs-first), row: row}
+		if err := b.give(ctx); err != nil {
 			return err
 		}
 	}
@@ -171,16 +143,74 @@ func (b *block) make(ctx context.Context, first, runs int) error {
 // traceGroup keeps the random numbers of paths apart from those of hold's runs.
 const traceGroup = 1 << 21
 
-func (b *block) give(first, runs int, row func(Row) error) error {
+// A block is some runs, of which a segment at a time is in memory: counts by run,
+// sample and species.
+type block struct {
+	paths       *Paths
+	first, runs int
+	row         func(Row) error
+	counts      []int64
+	state       []int // last label, by run
+}
+
+func (b *block) give(ctx context.Context) error {
 	p := b.paths
-	species := len(p.start)
-	for r := range runs {
-		state := -1
-		for k := range b.reached[r] {
-			at := (r*len(p.times) + k) * species
+	start := p.start
+	b.state = slices.Repeat([]int{-1}, b.runs)
+	for from := int64(0); from < p.samples; from += segment {
+		to := min(from+segment, p.samples)
+		result, err := ssa.Run(ctx, b.plan(start, from, to))
+		if err != nil {
+			return err
+		}
+		p.Events += result.Events
+		for i := range result.Outcomes {
+			if err := result.Outcomes[i].Err(); err != nil {
+				return err
+			}
+		}
+		if err := b.rows(from, to); err != nil {
+			return err
+		}
+		start = result.Outcomes[0].Counts // a block of several runs has one segment
+	}
+	return nil
+}
+
+// plan is that of the samples from, up to but without to.
+func (b *block) plan(start []int64, from, to int64) ssa.Plan {
+	p := b.paths
+	n, species := int(to-from), len(start)
+	begun := p.time(from)
+	end := p.Until - begun
+	if to < p.samples {
+		end = p.time(to) - begun
+	}
+	if end <= 0 { // the last sample alone: 0 would be no horizon
+		end = p.Every
+	}
+	times := make([]float64, n)
+	for k := range times {
+		times[k] = math.Min(p.time(from+int64(k))-begun, end)
+	}
+	b.counts = make([]int64, b.runs*n*species)
+	return ssa.Plan{
+		Network: p.Network, Start: start, From: -1, Runs: b.runs, FirstReplicate: uint64(b.first), Seed: p.options.Seed,
+		Point: uint64(from / segment), Group: traceGroup, Until: end, Times: times, Threads: p.options.Threads,
+		Sample: func(run, k int, _ float64, counts []int64) { copy(b.counts[(run*n+k)*species:], counts) },
+	}
+}
+
+// rows gives the samples in memory.
+func (b *block) rows(from, to int64) error {
+	p := b.paths
+	n, species := int(to-from), len(p.start)
+	for r := range b.runs {
+		for k := range n {
+			at := (r*n + k) * species
 			counts := b.counts[at : at+species]
-			state = p.label(state, counts)
-			if err := row(Row{first + r, p.times[k], counts, state}); err != nil {
+			b.state[r] = p.label(b.state[r], counts)
+			if err := b.row(Row{b.first + r, p.time(from + int64(k)), counts, b.state[r]}); err != nil {
 				return err
 			}
 		}

@@ -127,6 +127,7 @@ func TestBadOptions(t *testing.T) {
 		{Until: 10, Every: 20},
 		{Until: 10, Every: -1},
 		{Until: 1e9, Every: 1e-9},
+		{Until: 1, Every: math.NaN()},
 		{Runs: -1, Until: 1},
 		{From: "hihg", Until: 1},
 	} {
@@ -179,5 +180,35 @@ func TestCancelledTraceLeavesNothing(t *testing.T) {
 	}
 	if _, err := os.Stat(folder); !os.IsNotExist(err) {
 		t.Errorf("the folder is there: %v", err)
+	}
+}
+
+// A run longer than a segment goes on from where the last one ended: no step is
+// larger than one event can make it between samples this dense, and the times run on.
+func TestLongRunsGoOn(t *testing.T) {
+	const every = 1e-5
+	// 262,145 samples end in a segment of one sample.
+	short := paths(t, zoo.ImmigrationDeath(1, 0.1), trace.Options{Until: 262_144 * every, Every: every, Seed: 2})
+	if err := short.Make(context.Background(), func(trace.Row) error { return nil }); err != nil {
+		t.Fatal(err)
+	}
+	p := paths(t, zoo.ImmigrationDeath(1, 0.1), trace.Options{Until: 6, Every: every, Seed: 2})
+	rows, last := 0, []int64{0}
+	err := p.Make(context.Background(), func(r trace.Row) error {
+		if math.Abs(r.Time-every*float64(rows)) > 1e-9 {
+			t.Fatalf("row %d is at %v", rows, r.Time)
+		}
+		if d := r.Counts[0] - last[0]; d > 2 || d < -2 {
+			t.Fatalf("a step of %d at %v", d, r.Time)
+		}
+		copy(last, r.Counts)
+		rows++
+		return nil
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if rows != 600_001 {
+		t.Errorf("%d rows, want 600001", rows)
 	}
 }

@@ -59,7 +59,7 @@ func runTrace(ctx context.Context, t terminal, path string, design *designChoice
 		fmt.Fprintln(t.err, "records are in", out.Folder)
 	}
 	if s.Interrupted {
-		return errors.New("stopped before it was done; what is here are the whole paths made by then")
+		return errors.New("stopped before it was done; what is here was made by then")
 	}
 	return nil
 }
