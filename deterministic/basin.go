@@ -48,6 +48,7 @@ func (m *Map) BasinContext(ctx context.Context, x []float64) (state int, err err
 	if err := m.checkPoint(x); err != nil {
 		return 0, err
 	}
+	m.sinksOnce.Do(m.makeSinks)
 	x = slices.Clone(x)
 	g := newIntegrator(newWorkspace(m.sys), basinTolerance, m.resolution)
 	label, stuck := m.inSink(x), m.onUnstable(x)
@@ -156,7 +157,8 @@ func (s *sink) value(c *class, x []float64) float64 {
 // makeSinks finds a sink about each stable state: AᵀP + PA = −1 makes V = uᵀPu fall
 // near the state (Lyapunov); its level is halved, from a quarter of the nearest
 // other state's, until V falls at every sampled point of shells inside it.
-func (m *Map) makeSinks(w *workspace) {
+func (m *Map) makeSinks() {
+	w := newWorkspace(m.sys)
 	for k, c := range m.roots {
 		if !c.kind.Stable() {
 			break
@@ -248,11 +250,14 @@ func (m *Map) fallsAt(w *workspace, s *sink, u *mat.VecDense, reach float64) boo
 	return slope < 0
 }
 
+// mostPairs is the largest dimension in which directions between axes are sampled.
+const mostPairs = 16
+
 // shell lists unit vectors along the axes and between each two of them.
 func shell(d int) [][]float64 {
 	var out [][]float64
 	for i := range d {
-		for j := i; j < d; j++ {
+		for j := i; j < d && (j == i || d <= mostPairs); j++ {
 			for _, signs := range [][2]float64{{1, 1}, {1, -1}, {-1, 1}, {-1, -1}} {
 				v := make([]float64, d)
 				v[i] += signs[0]

@@ -65,9 +65,16 @@ func absInt(k int64) int64 {
 	return k
 }
 
+// mostReduced is the largest basis that is reduced. Longer ones stay in echelon
+// form: the points found with them are near, but not always the nearest.
+const mostReduced = 64
+
 // reduceBasis makes a basis of short, nearly orthogonal vectors of the same
 // lattice, in place (Lenstra, Lenstra, Lovász, Math. Ann. 261 (1982) 515).
 func reduceBasis(basis [][]int64) [][]int64 {
+	if len(basis) > mostReduced {
+		return basis
+	}
 	for k := 1; k < len(basis); {
 		_, mu, _ := gramSchmidt(basis[:k+1])
 		for j := k - 1; j >= 0; j-- {

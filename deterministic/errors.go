@@ -66,13 +66,15 @@ type CoreError struct {
 
 func (e *CoreError) Error() string { return fmt.Sprintf("[core.%s]: %s", e.Core, e.Problem) }
 
-// A RateError tells that a law is negative or not finite at a point of the search.
+// A RateError tells that a law is negative or not finite at the start or at a
+// resting state.
 type RateError struct {
 	Reaction string
+	Place    string // where that is, in words
 	Amounts  []float64
 	Value    float64
 }
 
 func (e *RateError) Error() string {
-	return fmt.Sprintf("reaction %q has rate %v at amounts %v: it must be finite and not below 0", e.Reaction, e.Value, e.Amounts)
+	return fmt.Sprintf("reaction %q has rate %v at %s, amounts %v: it must be finite and not below 0", e.Reaction, e.Value, e.Place, e.Amounts)
 }

@@ -1,6 +1,7 @@
 package deterministic
 
 import (
+	"encoding/binary"
 	"math"
 	"slices"
 
@@ -49,7 +50,7 @@ func (s *system) faces(totals []model.Total, high []float64) (out []face, comple
 		queue = append(queue, frozen)
 	}
 	slices.SortStableFunc(out, func(a, b face) int { return countTrue(a.frozen) - countTrue(b.frozen) })
-	return out, len(queue) == 0
+	return out, len(queue) == 0 && probe.steps <= probeSteps
 }
 
 func (s *system) newFace(p *probe, totals []model.Total, frozen []bool) (face, bool) {
@@ -68,10 +69,15 @@ func (s *system) newFace(p *probe, totals []model.Total, frozen []bool) (face, b
 type probe struct {
 	s      *system
 	points [12][]float64
+	known  map[string]bool // by reaction and which of the species it reads are absent
+	steps  int
 }
 
+// probeSteps bounds the search for siphons.
+const probeSteps = 100_000
+
 func newProbe(s *system, high []float64) *probe {
-	p := &probe{s: s}
+	p := &probe{s: s, known: map[string]bool{}}
 	for k := range p.points {
 		p.points[k] = make([]float64, s.n)
 		for i := range s.n {
@@ -85,19 +91,43 @@ func newProbe(s *system, high []float64) *probe {
 // absent.
 func (p *probe) running(frozen []bool) []bool {
 	out := make([]bool, len(p.s.changes))
+	for r := range out {
+		out[r] = p.runs(r, frozen)
+	}
+	return out
+}
+
+func (p *probe) runs(r int, frozen []bool) bool {
+	key := make([]byte, 0, 16)
+	key = binary.AppendUvarint(key, uint64(r))
+	for _, i := range p.s.reads[r] {
+		key = append(key, '0')
+		if frozen[i] {
+			key[len(key)-1] = '1'
+		}
+	}
+	runs, ok := p.known[string(key)]
+	if !ok {
+		runs = p.evaluate(r, frozen)
+		p.known[string(key)] = runs
+	}
+	return runs
+}
+
+// evaluate tells whether the rate is not 0 at some point.
+func (p *probe) evaluate(r int, frozen []bool) bool {
 	x := make([]float64, p.s.n)
 	for _, point := range p.points {
-		for i, v := range point {
-			x[i] = v
-			if frozen[i] {
+		for _, i := range p.s.reads[r] {
+			if x[i] = point[i]; frozen[i] {
 				x[i] = 0
 			}
 		}
-		for r := range out {
-			out[r] = out[r] || p.s.net.Flux(r, x) != 0
+		if p.s.net.Flux(r, x) != 0 {
+			return true
 		}
 	}
-	return out
+	return false
 }
 
 // starve adds to the frozen species those that are lost and not made while the
@@ -160,7 +190,7 @@ func (p *probe) extensions(frozen []bool) [][]bool {
 // running reaction that does, one of the species that its law reads must be
 // absent too, each in its turn.
 func (p *probe) complete(frozen []bool, out *[][]bool, depth int) {
-	if len(*out) >= maxFaces || depth > p.s.n {
+	if p.steps++; p.steps > probeSteps || len(*out) >= maxFaces || depth > p.s.n {
 		return
 	}
 	runs := p.running(frozen)

@@ -2,6 +2,7 @@ package deterministic
 
 import (
 	"context"
+	"sync"
 
 	"holdfast/model"
 )
@@ -54,7 +55,9 @@ type Map struct {
 	class *class
 	roots []*candidate // the resting states, in the order in which they were named
 	names []string     // their names
-	sinks []sink
+
+	sinksOnce sync.Once
+	sinks     []sink
 
 	limit, resolution []float64
 }
@@ -83,7 +86,9 @@ func Survey(ctx context.Context, net *model.Network, o Options) (*Map, error) {
 		return nil, err
 	}
 	m.states(f)
-	m.makeSinks(f.w)
+	if err := m.checkRates(); err != nil {
+		return nil, err
+	}
 	if err := m.noStates(f); err != nil {
 		return nil, err
 	}

@@ -94,11 +94,17 @@ func inMolecules(s *system, c *class, reduced []float64) []float64 {
 	return full
 }
 
+// mostDirect is the largest dimension whose Lyapunov equation is solved directly.
+const mostDirect = 16
+
 // lyapunov solves A C + C Aᵀ + D = 0 for the symmetric C, all m×m row-major, as
 // m(m+1)/2 linear equations in the entries on and above the diagonal.
 func lyapunov(a, d []float64, m int) ([]float64, bool) {
-	if m == 0 {
+	switch {
+	case m == 0:
 		return nil, true
+	case m > mostDirect:
+		return lyapunovBySign(a, d, m)
 	}
 	index := func(i, j int) int {
 		if i > j {

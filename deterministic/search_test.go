@@ -206,6 +206,30 @@ func TestThresholds(t *testing.T) {
 	}
 }
 
+// TestBadRates: a law that is negative or not finite at the start or at a state.
+func TestBadRates(t *testing.T) {
+	x, num := model.SpeciesRef(0), model.Number
+	less := func(by float64) *model.Node { return model.Call(model.OpSub, x, num(by)) }
+	for _, c := range []struct {
+		law           *model.Node
+		source, start float64
+		want          string
+	}{
+		{less(50), 100, 0, "at the start"}, // x' = 50 − x, with −50 at 0
+		{less(60), 110, 100, "at the state only"},
+		{model.Call(model.OpDiv, num(1), x), 1, 0, "rate +Inf at the start"},
+	} {
+		d := newDraft(1, "x").law(nil, terms(0), c.law)
+		d.Species[0].Start = c.start
+		n := d.add(nil, nil, terms(0), c.source).add(terms(0), nil, nil, 2).network(t)
+		_, err := Survey(context.Background(), n, Options{})
+		var rate *RateError
+		if !errors.As(err, &rate) || rate.Reaction != "reaction 0" || !strings.Contains(err.Error(), c.want) {
+			t.Errorf("%s: error %v", c.want, err)
+		}
+	}
+}
+
 func TestCancelled(t *testing.T) {
 	ctx, cancel := context.WithCancel(context.Background())
 	cancel()
