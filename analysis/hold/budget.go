@@ -23,6 +23,7 @@ const (
 type allowance struct {
 	runs   int
 	events int64 // most events of one run; 0: no limit
+	expect int64 // events that all of them are likely to take; 0: not known
 	again  bool  // what is left of the budget afterwards goes into more runs
 }
 
@@ -46,7 +47,7 @@ func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
 	if seenFlips >= pilotFlips {
 		perDwell := float64(seenEvents) / float64(seenFlips)
 		runs := min(float64(flips), math.Max(1, math.Floor(left/perDwell)))
-		return allowance{runs: int(runs), events: int64(math.Ceil(perDwell * capDwells))}
+		return allowance{runs: int(runs), events: int64(math.Ceil(perDwell * capDwells)), expect: int64(perDwell * runs)}
 	}
 	return longRuns(int64(left))
 }
@@ -54,5 +55,5 @@ func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
 // longRuns shares so many events among a few long runs.
 func longRuns(events int64) allowance {
 	runs := min(max(events/spareEvents, 1), pilotRuns)
-	return allowance{runs: int(runs), events: max(1, events/runs), again: true}
+	return allowance{runs: int(runs), events: max(1, events/runs), expect: events, again: true}
 }

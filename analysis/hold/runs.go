@@ -68,7 +68,7 @@ func (j *job) runState(ctx context.Context, s int, events int64) (*stateRuns, er
 func (j *job) spend(ctx context.Context, r *stateRuns, allowed allowance) error {
 	for done := 0; done < allowed.runs && !r.interrupted; done += block {
 		p := j.runPlan(r.state, uint64(r.made), min(block, allowed.runs-done), allowed.events)
-		p.Progress = j.progressOf(r.state, done, allowed.runs)
+		p.Progress = j.progressOf(r, done, allowed)
 		if err := j.count(ctx, r, p); err != nil {
 			return err
 		}
