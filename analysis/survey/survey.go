@@ -1,17 +1,17 @@
 // Package survey reports the deterministic map of a design: its resting states and
-// saddles, their stability, linear noise, cores and basins.
+// saddles and what is proved of their list, stability, linear noise, cores and basins;
+// and, as one or two knobs are turned, the windows of the states and what ends them.
 package survey
 
 import (
 	"context"
 	"errors"
 	"fmt"
-	"math"
-	"path/filepath"
 
 	"holdfast/analysis/hold"
-	"holdfast/analysis/records"
+	"holdfast/analysis/survey/resting"
 	"holdfast/deterministic"
+	"holdfast/deterministic/branch"
 	"holdfast/model"
 )
 
@@ -23,12 +23,23 @@ type Report struct {
 	Generation hold.Value `json:"generation"`
 	Copies     float64    `json:"copies"`
 	Species    []string   `json:"species"`
+	Readout    string     `json:"readout"`
 	Box        []Interval `json:"box"` // of amounts, one a species
 	States     []State    `json:"states"`
+	// List says what is proved of the list of states.
+	List List `json:"list"`
 	// Start says which state the design's own start belongs to.
-	Start    string   `json:"start"`
-	Search   string   `json:"search"` // how the states were found, in a sentence
-	Warnings []string `json:"warnings"`
+	Start  string `json:"start"`
+	Search string `json:"search"` // how the states were found, in a sentence
+	// Basins are the shares of the box, where there are two stable states or more;
+	// Separatrices the curves between them, where two amounts are free.
+	Basins       *Basins      `json:"basins,omitempty"`
+	Separatrices []Separatrix `json:"separatrices,omitempty"`
+	// Diagram follows the states over the knob, where one is given; FoldDiagram has
+	// the fold curves, where two are.
+	Diagram     *Diagram     `json:"diagram,omitempty"`
+	FoldDiagram *FoldDiagram `json:"fold_diagram,omitempty"`
+	Warnings    []string     `json:"warnings"`
 }
 
 // An Interval is a range of amounts.
@@ -38,129 +49,137 @@ type Interval struct {
 	Basis string     `json:"basis"` // why no resting state lies beyond
 }
 
-// A State is one resting state or saddle, values by species in the order of
-// Report.Species. Deviation, CV and Fano are those of linear noise.
-type State struct {
-	Name            string       `json:"name"`
-	Kind            string       `json:"type"`
-	Absorbing       bool         `json:"absorbing"`
-	Amounts         []hold.Value `json:"amounts"`
-	Molecules       []hold.Value `json:"molecules"`
-	Deviation       []hold.Value `json:"sd_molecules"`
-	CV              []hold.Value `json:"cv"`
-	Fano            []hold.Value `json:"fano"`
-	Eigenvalues     [][2]float64 `json:"eigenvalues"` // real and imaginary part, in 1/TimeUnit
-	CorrelationTime hold.Value   `json:"correlation_time"`
-	Core            *Core        `json:"core,omitempty"`
+// A List is what is proved of the list of states.
+type List struct {
+	Proved bool `json:"proved"`
+	// Text says 'complete (proved)', 'not proved' with the box that resisted and why,
+	// or 'multi-start, not proved'.
+	Text string `json:"text"`
 }
 
-// A Core is the region that a path must enter to count as having reached a state.
-type Core struct {
-	Start    []int64 `json:"start"` // where a dwell begins
-	Low      []int64 `json:"low"`
-	High     []int64 `json:"high"` // both in molecules, one a species
-	Declared bool    `json:"declared"`
+// A Knob is a quantity of the design and the range to turn it over: a constant, a
+// product of constants such as "a*b", "copies", or a conserved total ("total", or
+// "total1", … where there are several).
+type Knob struct {
+	Name      string
+	Low, High float64
 }
 
-// Options say where a map is written to.
+// Options say what is mapped beside the states, and where it is written to.
 type Options struct {
-	// Folder receives the table states; empty: nothing is written. Command is what
-	// the records carry as the command that made them.
+	// Knobs are turned: none, one or two.
+	Knobs []Knob
+	// Folder receives the tables; empty: nothing is written. Command is what the
+	// records carry as the command that made them.
 	Folder, Command string
 }
 
-// Run surveys the network. With one stable state only the report comes together with a
-// *deterministic.OneStateError; other errors are those of deterministic.Survey and
-// of the records.
+// A KnobError is a knob that cannot be turned as asked.
+type KnobError struct{ Err error }
+
+// Error says what is wrong with it.
+func (e *KnobError) Error() string { return e.Err.Error() }
+
+// Unwrap gives the error of package branch.
+func (e *KnobError) Unwrap() error { return e.Err }
+
+// A job is one map in the making.
+type job struct {
+	network *model.Network
+	options Options
+	knobs   []branch.Knob
+	survey  *deterministic.Map // nil where there is no stable state
+	report  *Report
+}
+
+// Run maps the network. Errors are a *KnobError, those of deterministic.Survey and of
+// the records.
+//
+// With one stable state only, or with states that share a lattice point, the report
+// comes together with the *deterministic.OneStateError or IndistinctError. With
+// knobs it does not: the diagram is an answer, and the error's sentence stands
+// among the warnings; so does that of a design that has no stable state at all.
 func Run(ctx context.Context, network *model.Network, o Options) (*Report, error) {
-	m, err := deterministic.Survey(ctx, network, deterministic.Options{})
-	if m == nil {
+	j := &job{network: network, options: o, report: newReport(network)}
+	if err := j.makeKnobs(); err != nil {
 		return nil, err
 	}
-	report := newReport(ctx, m)
-	return report, errors.Join(err, write(m, report, o))
+	state, err := j.findStates(ctx)
+	if err != nil {
+		return nil, err
+	}
+	if err := j.turn(ctx); err != nil {
+		return nil, err
+	}
+	if err := ctx.Err(); err != nil {
+		return nil, err
+	}
+	return j.report, errors.Join(state, j.write())
 }
 
-func newReport(ctx context.Context, m *deterministic.Map) *Report {
-	n := m.Network
-	r := &Report{
-		Design: n.Title, Digest: n.Digest, TimeUnit: n.TimeUnit, Generation: hold.Value(n.Generation), Copies: n.Copies,
-		Start: startState(ctx, m), Search: searchText(m), Warnings: append([]string{}, m.Warnings...),
+// makeKnobs reads the knobs and sees that today's setting is in their ranges.
+func (j *job) makeKnobs() error {
+	if len(j.options.Knobs) > 2 {
+		return &KnobError{fmt.Errorf("%d knobs are given; turn one, or two for the fold curve", len(j.options.Knobs))}
 	}
-	if r.Design == "" {
-		r.Design = filepath.Base(n.File)
-	}
-	if n.Generation == 0 {
-		r.Generation = hold.Value(math.NaN())
-	}
-	for i, s := range n.Species {
-		r.Species = append(r.Species, s.Name)
-		r.Box = append(r.Box, Interval{hold.Value(m.Low[i]), hold.Value(m.High[i]), m.Basis[i].String()})
-	}
-	for i := range m.States {
-		s := newState(&m.States[i])
-		if i < len(m.Cores) {
-			s.Core = newCore(n, &m.Cores[i])
+	for _, o := range j.options.Knobs {
+		k, err := branch.NewKnob(j.network, o.Name, o.Low, o.High)
+		if err != nil {
+			return &KnobError{err}
 		}
-		r.States = append(r.States, s)
+		if today := k.Today(j.network); today < k.Low || today > k.High {
+			return &KnobError{&branch.OutsideError{Knob: k.Name, Today: today, Low: k.Low, High: k.High}}
+		}
+		j.knobs = append(j.knobs, k)
 	}
-	return r
+	return nil
 }
 
-func newState(s *deterministic.State) State {
-	out := State{Name: s.Name, Kind: s.Kind.String(), Absorbing: s.Absorbing, CorrelationTime: hold.Value(s.CorrelationTime())}
-	for i := range s.Molecules {
-		out.Amounts = append(out.Amounts, hold.Value(s.Amounts[i]))
-		out.Molecules = append(out.Molecules, hold.Value(s.Molecules[i]))
-		out.Deviation = append(out.Deviation, hold.Value(s.SD(i)))
-		out.CV = append(out.CV, hold.Value(s.CV(i)))
-		out.Fano = append(out.Fano, hold.Value(s.Fano(i)))
+// findStates lists the states, their proof and their basins. state is what the survey
+// has to say of a design that is no switch; with knobs to turn that is a warning.
+func (j *job) findStates(ctx context.Context) (state, err error) {
+	list, state := resting.States(ctx, j.network)
+	if list == nil && (len(j.knobs) == 0 || !turnable(state)) {
+		return nil, state
 	}
-	for _, e := range s.Eigenvalues {
-		out.Eigenvalues = append(out.Eigenvalues, [2]float64{real(e), imag(e)})
+	if list != nil {
+		j.survey = list.Map
+		j.report.addStates(ctx, list)
+		j.addBasins(ctx)
+	}
+	if state != nil && len(j.knobs) > 0 {
+		j.warn("at today's setting: %v", state)
+		state = nil
+	}
+	return state, nil
+}
+
+// turnable tells whether a design with this error may have states at other settings.
+func turnable(err error) bool {
+	var away *deterministic.RunawayError
+	var line *deterministic.ContinuumError
+	return errors.Is(err, deterministic.ErrNoRestingState) || errors.As(err, &away) || errors.As(err, &line)
+}
+
+// turn follows the states over the knob, or traces the fold curve of two.
+func (j *job) turn(ctx context.Context) error {
+	switch len(j.knobs) {
+	case 1:
+		return j.follow(ctx)
+	case 2:
+		return j.foldCurves(ctx)
+	}
+	return nil
+}
+
+func (j *job) warn(format string, a ...any) {
+	j.report.Warnings = append(j.report.Warnings, fmt.Sprintf(format, a...))
+}
+
+func values(v []float64) []hold.Value {
+	out := make([]hold.Value, len(v))
+	for i, x := range v {
+		out[i] = hold.Value(x)
 	}
 	return out
-}
-
-func newCore(n *model.Network, c *model.Core) *Core {
-	out := &Core{Start: c.Start, Low: c.Low, High: c.High}
-	for _, d := range n.Declared {
-		out.Declared = out.Declared || d.State == c.State
-	}
-	return out
-}
-
-// startState names the state that the flow from the design's start leads to.
-func startState(ctx context.Context, m *deterministic.Map) string {
-	label, err := m.BasinContext(ctx, m.Network.Amounts(nil, m.Network.StartCounts()))
-	if err != nil {
-		return err.Error()
-	}
-	return m.States[label].Name
-}
-
-func searchText(m *deterministic.Map) string {
-	text := fmt.Sprintf("multi-start Newton, %d starts and %d flows", m.Search.Starts, m.Search.Flows)
-	switch {
-	case m.Search.Scanned:
-		text += ", and a scan along the one free direction"
-	case m.Search.Balanced:
-		text += "; the indices of the states balance"
-	}
-	return text + "; that none is missing is not proved"
-}
-
-func write(m *deterministic.Map, r *Report, o Options) error {
-	if o.Folder == "" {
-		return nil
-	}
-	folder, err := records.Create(o.Folder, hold.Provenance(m.Network, 0, o.Command))
-	if err != nil {
-		return err
-	}
-	defer folder.Abandon()
-	if err := hold.WriteStates(folder, m); err != nil {
-		return err
-	}
-	return folder.Finish(records.Outcome{Warnings: r.Warnings})
 }

@@ -11,13 +11,13 @@ import (
 // numbers nor bytes. The same work so has the same records, whatever the number
 // of threads, the folder, or the order in which the options were typed.
 func canonical(command, path string, f *pflag.FlagSet) string {
-	silent := map[string]bool{"threads": true, "out": true, "json": true, "quiet": true, "with": true}
+	silent := map[string]bool{"threads": true, "out": true, "json": true, "quiet": true, "with": true, "knob": true}
 	parts := []string{"holdfast", command, path}
 	f.VisitAll(func(flag *pflag.Flag) {
 		if flag.Changed && !silent[flag.Name] {
 			parts = append(parts, "--"+flag.Name, flag.Value.String())
 		}
-		if s, ok := flag.Value.(settings); ok {
+		if s, ok := flag.Value.(interface{ words() []string }); ok {
 			parts = append(parts, s.words()...)
 		}
 	})

@@ -13,27 +13,43 @@ import (
 	"holdfast/analysis/survey"
 )
 
-const mapAbout = `Prints the deterministic map: every resting state and saddle found, in amounts and
+const mapAbout = `Prints the deterministic map: every resting state and saddle, in amounts and
 molecules, with its stability, its eigenvalues, the noise that the linear approximation
-predicts, the core that a path must enter to count as having reached it, and the state
-that the design's start belongs to.`
+predicts, and the core that a path must enter to count as having reached it; whether the
+list of states is proved complete (tried up to six free amounts); the state that the
+design's start belongs to, and each basin's share of the box of amounts.
+
+--knob b=0.2:0.8 turns b over that range: for each stable state, the window in which it
+exists, what ends it on either side, how far today's setting is from there, and the
+linear noise on the way, which is a guide only while the deviation is small against the
+way to the saddle. A knob is a constant, a product of constants (a*b, each scaled
+alike), copies, or a conserved total (total, in molecules; total1, total2 where there are
+several). Given twice, --knob traces the curve of folds in the two. --out has all points
+of it in Arrow tables, --json in one object.
+
+Shares are cut out by the separatrix where two amounts are free; elsewhere they are
+sampled, with 200 flows (2000 where one amount is free), and their error says so.
+
+The exit status is 1 where there is one stable state only. With --knob it is 0 then: the
+diagram shows where the switch is born, and the map says that it is none today.`
 
 func mapCommand() command {
-	return command{name: "map", args: "FILE", summary: "resting states, saddles, stability, linear noise, basins", about: mapAbout, setup: setupMap}
+	return command{name: "map", args: "FILE", summary: "resting states, proved complete; windows, folds, basins, linear noise", about: mapAbout, setup: setupMap}
 }
 
 func setupMap(f *pflag.FlagSet) work {
 	design := designFlags(f)
-	var folder string
+	var o survey.Options
 	var asJSON bool
-	f.StringVar(&folder, "out", "", "`folder` to write the Arrow table of states and manifest.json to")
+	f.Var(knobs{&o.Knobs}, "knob", "turn a constant, a product a*b, copies or a total over a range;\ngive it twice for the fold curve of two")
+	f.StringVar(&o.Folder, "out", "", "`folder` to write the Arrow tables and manifest.json to: states,\nseparatrix, branches and folds, or fold_curve")
 	f.BoolVar(&asJSON, "json", false, "print one JSON object instead of tables")
 	return func(ctx context.Context, t terminal, args []string) error {
 		path, err := oneFile("map", args)
 		if err != nil {
 			return err
 		}
-		o := survey.Options{Folder: folder, Command: canonical("map", path, f)}
+		o.Command = canonical("map", path, f)
 		return runMap(ctx, t, path, design, o, asJSON)
 	}
 }
@@ -44,6 +60,10 @@ func runMap(ctx context.Context, t terminal, path string, design *designChoice, 
 		return err
 	}
 	report, err := survey.Run(ctx, network, o)
+	var knob *survey.KnobError
+	if errors.As(err, &knob) {
+		return misusef("map: --knob: %v", knob)
+	}
 	if report == nil {
 		return err
 	}
@@ -55,7 +75,26 @@ func runMap(ctx context.Context, t terminal, path string, design *designChoice, 
 }
 
 func writeMap(w io.Writer, r *survey.Report) error {
-	fmt.Fprintf(w, "%s: copies %s, time in %s\n\nResting states\n", r.Design, number(r.Copies), r.TimeUnit)
+	fmt.Fprintf(w, "%s: copies %s, time in %s\n", r.Design, number(r.Copies), r.TimeUnit)
+	parts := []func(io.Writer, *survey.Report) error{writeStates, writeBasins, writeDiagram, writeFoldDiagram}
+	for _, write := range parts {
+		if err := write(w, r); err != nil {
+			return err
+		}
+	}
+	if len(r.Warnings) > 0 {
+		fmt.Fprintln(w)
+	}
+	writeWarnings(w, r.Warnings)
+	return nil
+}
+
+// writeStates prints the states, where there are any.
+func writeStates(w io.Writer, r *survey.Report) error {
+	if len(r.States) == 0 {
+		return nil
+	}
+	fmt.Fprintf(w, "\nResting states: %s\n", r.List.Text)
 	if err := mapTable(r).write(w); err != nil {
 		return err
 	}
@@ -67,11 +106,35 @@ func writeMap(w io.Writer, r *survey.Report) error {
 	if err := coreTable(r).write(w); err != nil {
 		return err
 	}
-	fmt.Fprintf(w, "\nThe design's start leads to: %s\nSearch: %s\n", r.Start, r.Search)
+	fmt.Fprintf(w, "\nSearch: %s\n", r.Search)
 	for i, name := range r.Species {
-		fmt.Fprintf(w, "  %s from %s to %s, by %s\n", name, number(float64(r.Box[i].Low)), number(float64(r.Box[i].High)), r.Box[i].Basis)
+		fmt.Fprintf(w, "  %s from %s to %s, by %s\n", name, value(r.Box[i].Low), value(r.Box[i].High), r.Box[i].Basis)
 	}
-	writeWarnings(w, r.Warnings)
+	return nil
+}
+
+// writeBasins prints the shares of the basins and the curves between them.
+func writeBasins(w io.Writer, r *survey.Report) error {
+	if r.Start != "" {
+		fmt.Fprintf(w, "\nThe design's start leads to: %s\n", r.Start)
+	}
+	if r.Basins == nil {
+		return nil
+	}
+	fmt.Fprintf(w, "Basins' shares of the box from 0 to those upper ends, %s:\n", r.Basins.Method)
+	t := &table{}
+	for _, s := range r.Basins.Shares {
+		t.add(s.State, percent(s.Share), "± "+digits(float64(s.Error), 1)+" %")
+	}
+	if r.Basins.Unlabelled > 0 {
+		t.add("none", percent(r.Basins.Unlabelled))
+	}
+	if err := t.write(w); err != nil {
+		return err
+	}
+	for _, s := range r.Separatrices {
+		fmt.Fprintf(w, "Separatrix through %s: %d points, from the %s to the %s\n", s.Saddle, len(s.Points), s.Ends[0], s.Ends[1])
+	}
 	return nil
 }
 
