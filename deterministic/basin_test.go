@@ -5,6 +5,7 @@ import (
 	"errors"
 	"math"
 	"math/rand/v2"
+	"sync"
 	"testing"
 
 	"holdfast/internal/zoo"
@@ -56,6 +57,25 @@ func TestBasinStiff(t *testing.T) {
 	if _, err := m.Basin([]float64{20, 10, 19, 10, 1, 1, 0, 0}); err == nil {
 		t.Error("no error for two operators")
 	}
+}
+
+// TestBasinParallel: one map serves many goroutines.
+func TestBasinParallel(t *testing.T) {
+	m := survey(t, zoo.Schlogl())
+	var wait sync.WaitGroup
+	for k := range 8 {
+		wait.Go(func() {
+			x := 30 + 60*float64(k)
+			want := 0
+			if x > 220 {
+				want = 1
+			}
+			if got, err := m.Basin([]float64{x}); err != nil || got != want {
+				t.Errorf("basin of %v: %d, %v; want %d", x, got, err, want)
+			}
+		})
+	}
+	wait.Wait()
 }
 
 func TestBasinErrors(t *testing.T) {

@@ -97,6 +97,7 @@ func TestKnownStates(t *testing.T) {
 			for k, want := range c.amounts {
 				near(t, fmt.Sprint("state ", k), got[k], want, c.tolerance)
 			}
+			checkErrorBounds(t, m, c)
 			for _, s := range m.States {
 				if s.Quality.Residual > 1e-14 || s.Quality.Isolation > 1e-6 {
 					t.Errorf("%s: residual %g, isolation %g", s.Name, s.Quality.Residual, s.Quality.Isolation)
@@ -106,6 +107,23 @@ func TestKnownStates(t *testing.T) {
 				t.Error("the indices do not add up")
 			}
 		})
+	}
+}
+
+// checkErrorBounds checks that each state known to full precision lies within its
+// own error bound, and half a unit in the last place of the known value.
+func checkErrorBounds(t *testing.T, m *Map, c knownStates) {
+	t.Helper()
+	if c.tolerance > 1e-13 {
+		return
+	}
+	for _, want := range c.amounts {
+		inside := slices.ContainsFunc(m.States, func(s State) bool {
+			return math.Abs(s.Amounts[c.species]-want) <= s.Quality.Error[c.species]+2*epsilon*want
+		})
+		if !inside {
+			t.Errorf("no state holds %.17g within its error bound", want)
+		}
 	}
 }
 

@@ -2,6 +2,7 @@ package deterministic
 
 import (
 	"context"
+	"fmt"
 	"sync"
 
 	"holdfast/model"
@@ -18,6 +19,17 @@ type Options struct {
 	// Seeds are further Newton starts, amounts by species, each near a state that is
 	// known to exist. An amount of exactly 0 stays 0.
 	Seeds [][]float64
+}
+
+// check refuses settings that make no sense.
+func (o *Options) check() error {
+	if o.Starts < 0 {
+		return fmt.Errorf("starts = %d: must not be below 0", o.Starts)
+	}
+	if !(o.CoreShare >= 0 && o.CoreShare < 1) {
+		return fmt.Errorf("core share = %v: must be a part of 1, not below 0", o.CoreShare)
+	}
+	return nil
 }
 
 // A Search says how the list of states was found: how far it can be trusted.
@@ -38,9 +50,10 @@ type Map struct {
 	// a species; Basis says why High holds.
 	Low, High []float64
 	Basis     []Basis
-	// States lists the stable resting states by the readout ascending, then the
-	// declared ones that are no resting state, then saddles, unstable and
-	// degenerate ones.
+	// States lists the states that have a core first: the stable resting states by
+	// the readout ascending, then the declared ones that are no resting state. Then
+	// come stable resting states that declared cores have displaced, saddles,
+	// unstable and degenerate ones.
 	States []State
 	// Cores has one core for each of Stable(), in the same order.
 	Cores []model.Core
@@ -74,6 +87,9 @@ func (m *Map) Stable() []State { return m.States[:len(m.Cores)] }
 // *IndistinctError. Other errors are ErrNoRestingState, *RunawayError,
 // *ContinuumError, *CoreError, *RateError, and ctx's.
 func Survey(ctx context.Context, net *model.Network, o Options) (*Map, error) {
+	if err := o.check(); err != nil {
+		return nil, err
+	}
 	s := newSystem(net)
 	totals := net.Conserved()
 	whole, ok := newClass(s, totals, make([]bool, s.n))

@@ -136,7 +136,7 @@ func (f *finder) multiStart(c *class) {
 	hits := 0
 	next := 0
 	for target := leastStarts; ; target *= 2 {
-		for ; next < target && f.ctx.Err() == nil; next++ {
+		for ; next < min(target, f.most()) && f.ctx.Err() == nil; next++ {
 			if f.newtonStart(c, seeds.point(next)) {
 				hits++
 			}

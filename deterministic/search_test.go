@@ -230,6 +230,18 @@ func TestBadRates(t *testing.T) {
 	}
 }
 
+func TestOptions(t *testing.T) {
+	for _, o := range []Options{{Starts: -1}, {CoreShare: 1}, {CoreShare: -0.1}, {CoreShare: math.NaN()}} {
+		if _, err := Survey(context.Background(), zoo.Latch(100), o); err == nil {
+			t.Errorf("no error for %+v", o)
+		}
+	}
+	m, err := Survey(context.Background(), zoo.Latch(100), Options{Starts: 5})
+	if err != nil || len(m.States) != 3 {
+		t.Errorf("few starts: %v", err)
+	}
+}
+
 func TestCancelled(t *testing.T) {
 	ctx, cancel := context.WithCancel(context.Background())
 	cancel()
