@@ -36,13 +36,16 @@ func newBuilder(ctx context.Context, n *model.Network, k Knob, samples []sample,
 	return &builder{tracer: &tracer{frame: frame{line, f, []Knob{k}, high}, ctx: ctx, knob: k, kinks: f.kinks()}}
 }
 
-// build traces the branches of all states, then those that cross them.
+// build traces the branches of all states, today's first, then those that cross them.
 func (b *builder) build(samples []sample) error {
-	for _, s := range samples {
+	for i, s := range samples {
 		for _, st := range s.states {
 			_, ok, err := b.place(st.Amounts, s.value)
 			if err != nil {
 				return err
+			}
+			if st.Kind == deterministic.Degenerate && i == 0 {
+				b.say("today's setting lies on a fold, or where branches meet, to within rounding: at %.6g", st.Amounts)
 			}
 			if !ok && st.Kind != deterministic.Degenerate {
 				b.say("state %s at %s = %.6g could not be followed: %s", st.Name, b.knob.Name, s.value, b.reason(st.Amounts, s.value))

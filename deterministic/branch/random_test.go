@@ -70,7 +70,7 @@ func statesAt(d *Diagram, v float64) [][]float64 {
 // At settings that were not sampled, the branches hold just the states that a
 // survey finds there, unless one lies within 1 % of a fold, where two are nearly one.
 func TestBranchesHoldTheStatesBetweenSamples(t *testing.T) {
-	const seed, networks = 5, 12
+	const seed, networks = 5, 8
 	r := rand.New(rand.NewPCG(seed, 0))
 	compared := 0
 	for k := range networks {
@@ -132,7 +132,7 @@ func compareStates(t *testing.T, what string, got [][]float64, m *deterministic.
 // At settings of the second knob that were not sampled, the fold curves hold just the
 // folds that following the first knob finds there.
 func TestFoldCurvesHoldTheFoldsBetweenSamples(t *testing.T) {
-	const seed, networks = 8, 5
+	const seed, networks = 8, 3
 	r := rand.New(rand.NewPCG(seed, 0))
 	compared := 0
 	for k := range networks {

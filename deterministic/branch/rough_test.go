@@ -89,3 +89,30 @@ func TestBoxWithoutAnEdge(t *testing.T) {
 		t.Errorf("error %v, want *BoxError of protein", err)
 	}
 }
+
+// β = 2 is the fold of x' = βx²/(1+x²) − x, at x = 1: today's setting is on it.
+func TestTodayOnAFold(t *testing.T) {
+	d := follow(t, zoo.SelfActivator(2, 1, 1, 2, 100), "beta", 1, 3)
+	near(t, "fold", one(t, d, Fold).Knob, 2, located)
+	if said := strings.Join(d.Warnings, "\n"); !strings.Contains(said, "today's setting lies on a fold") {
+		t.Errorf("no warning that today's setting lies on the fold: %q", said)
+	}
+	if len(d.Windows) != 1 || d.Windows[0].Amounts[0] != 0 {
+		t.Errorf("windows %v, want that of the empty state only", d.Windows)
+	}
+}
+
+// A fold on the end of the knob's range by rounding is not put outside it: x' = s +
+// x²/(1+x²) − x/2 folds at s = 0, x = 1.
+func TestFoldOnTheEndOfTheRange(t *testing.T) {
+	d := follow(t, zoo.LeakyActivator(0.5, 1e-3, 100), "s", 0, 1)
+	for _, m := range d.Folds() {
+		if m.Knob < 0 {
+			t.Errorf("fold at s = %g", m.Knob)
+		}
+	}
+	w := windowOf(t, d, "high")
+	if w.Low.Knob > 1e-15 {
+		t.Errorf("the high state ends at s = %g, want 0", w.Low.Knob)
+	}
+}

@@ -73,7 +73,15 @@ func (t *tracer) leaving(p *place) bool {
 	return (v >= t.knob.High && d > 0) || (v <= t.knob.Low && d < 0)
 }
 
+// push takes in a spot; a knob that rounding has put outside its range is put back.
 func (p *path) push(s spot) {
+	n, k := p.t.f.n, p.t.knob
+	if v := min(max(s.u[n], k.Low), k.High); v != s.u[n] {
+		s.u[n] = v
+		if s.mark != nil {
+			s.mark.Knob = v
+		}
+	}
 	p.spots = append(p.spots, s)
 	p.last = s
 }
