@@ -10,6 +10,8 @@ type Diagram struct {
 	Low   hold.Value `json:"low"`
 	High  hold.Value `json:"high"`
 	Today hold.Value `json:"today"`
+	// Box has the upper edges of the amounts that states were followed in.
+	Box []hold.Value `json:"box_high"`
 	// Windows has one entry for each stable state of today.
 	Windows []Window `json:"windows"`
 	// Specials are the folds, Hopf points, pitchforks and the like, by the knob

@@ -34,7 +34,7 @@ func (j *job) follow(ctx context.Context) error {
 	t := &turning{
 		job: j, d: d, refiner: branch.NewRefiner(j.network, d), extra: map[piece][]branch.Point{},
 		out: &Diagram{
-			Knob: k.Name, Low: hold.Value(k.Low), High: hold.Value(k.High), Today: hold.Value(d.Today),
+			Knob: k.Name, Low: hold.Value(k.Low), High: hold.Value(k.High), Today: hold.Value(d.Today), Box: values(d.High),
 			Windows: []Window{}, Specials: []Special{}, Noise: []Noise{},
 		},
 	}

@@ -40,7 +40,7 @@ func writeDiagram(w io.Writer, r *survey.Report) error {
 func stableStates(n int) string {
 	switch n {
 	case 0:
-		return "no stable state"
+		return "no stable state in the box"
 	case 1:
 		return "1 stable state"
 	}
@@ -95,7 +95,7 @@ func specialNote(r *survey.Report, s *survey.Special) string {
 	case value(s.Frequency) != "–":
 		return fmt.Sprintf("oscillates at %s rad/%s", value(s.Frequency), r.TimeUnit)
 	}
-	return s.Text
+	return "" // a kink's text is among the warnings
 }
 
 func noiseTable(r *survey.Report, n *survey.Noise) *table {
