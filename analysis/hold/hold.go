@@ -5,6 +5,7 @@ import (
 	"time"
 
 	"holdfast/analysis/records"
+	"holdfast/analysis/survey/resting"
 	"holdfast/deterministic"
 	"holdfast/model"
 )
@@ -32,12 +33,14 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	if err != nil {
 		return nil, err
 	}
-	survey, err := deterministic.Survey(ctx, network, deterministic.Options{})
+	list, err := resting.States(ctx, network)
 	if err != nil {
 		return nil, err
 	}
-	j := &job{network: network, options: options, survey: survey}
+	j := &job{network: network, options: options, survey: list.Map}
 	j.newReport()
+	j.report.List = list.String()
+	j.report.Warnings = append(j.report.Warnings, list.Warnings...)
 	if err := j.openSink(); err != nil {
 		return nil, err
 	}

@@ -37,6 +37,9 @@ type Report struct {
 
 	// Species are the names of the species, in the design's order.
 	Species []string `json:"-"`
+	// List says how far the list of states can be trusted: "complete (proved)", or
+	// what is not proved.
+	List string `json:"-"`
 	// Route says which route was taken and why, in a line.
 	Route string `json:"-"`
 	// Interrupted tells that the job was stopped before it was done; what had

@@ -93,16 +93,16 @@ func writeJSON(w io.Writer, report any) error {
 
 func writeHold(w io.Writer, r *hold.Report) error {
 	fmt.Fprintf(w, "%s: copies %s, time in %s%s, seed %d\n", r.Design, number(r.Copies), r.TimeUnit, generationText(r), r.Seed)
-	fmt.Fprintf(w, "route: %s\n\nStates\n", r.Route)
+	fmt.Fprintf(w, "route: %s\n\nStates: %s\n", r.Route, r.List)
 	if err := stateTable(r).write(w); err != nil {
 		return err
 	}
-	fmt.Fprintf(w, "\nHold times, with 95 %% intervals\n")
+	fmt.Fprintf(w, "\nHold times: [95 %% interval], or ± error bound\n")
 	if err := dwellTable(r).write(w); err != nil {
 		return err
 	}
 	if t := holdsTable(r); len(t.rows) > 1 {
-		fmt.Fprintf(w, "\nChance of holding, with 95 %% intervals\n")
+		fmt.Fprintf(w, "\nChance of holding: [95 %% interval], or [what the bounds leave open]\n")
 		if err := t.write(w); err != nil {
 			return err
 		}
