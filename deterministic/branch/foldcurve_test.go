@@ -131,3 +131,54 @@ func TestFoldCurvesNeedTwoKnobs(t *testing.T) {
 		t.Errorf("error %v, want *SharedKnobError", err)
 	}
 }
+
+// x' = x (1 − (x−2)² − (p−2)² − (q−2)²) has, besides x = 0, the unit sphere about (2, 2,
+// 2) of states: its folds are the circle about (2, 2) in p and q, x = 2 (algebra).
+func TestClosedFoldCurve(t *testing.T) {
+	s := newSketch(30)
+	x := s.species("x", 1)
+	p, q := s.constant("p", 2.2), s.constant("q", 1.9)
+	linear, square := num(1), num(12)
+	for _, v := range []*model.Node{x, p, q} {
+		linear = plus(linear, model.Call(model.OpMul, num(4), v))
+		square = plus(square, raise(v, num(2)))
+	}
+	s.law("make", model.Call(model.OpMul, x, linear), nil, turn{x})
+	s.law("lose", model.Call(model.OpMul, x, square), turn{x}, nil)
+	d := foldCurves(t, s.network(t), "p", 0.5, 4, "q", 0.5, 4)
+	if len(d.Curves) != 1 {
+		t.Fatalf("%d curves, want 1", len(d.Curves))
+	}
+	c := d.Curves[0]
+	if c.Ends[0].Kind != Closed || c.Ends[1].Kind != Closed || len(c.Cusps()) != 0 {
+		t.Errorf("ends %v and %d cusps, want a loop without cusps", c.Ends, len(c.Cusps()))
+	}
+	for _, v := range c.Points {
+		near(t, "radius", math.Hypot(v.First-2, v.Second-2), 1, located)
+		near(t, "x", v.Amounts[0], 2, located)
+	}
+	if first, last := c.Points[0], c.Points[len(c.Points)-1]; first.First != last.First || first.Second != last.Second {
+		t.Errorf("the loop runs from %v to %v", first, last)
+	}
+}
+
+func TestNoFoldCurve(t *testing.T) {
+	d := foldCurves(t, zoo.LeaklessLatch(0.3, 0.3, 100), "a", 0.1, 0.4, "b", 0.1, 0.4)
+	if len(d.Curves) != 0 || len(d.Warnings) != 1 {
+		t.Errorf("%d curves, warnings %q; want none, and one that says so", len(d.Curves), d.Warnings)
+	}
+}
+
+func TestCurveEndsInWords(t *testing.T) {
+	for want, e := range map[string]CurveEnd{
+		"end of the range of a":          {Kind: RangeEnd, Knob: "a"},
+		"protein at the edge of the box": {Kind: BoxEdge, Species: "protein"},
+		"protein reaches 0":              {Kind: Emptied, Species: "protein"},
+		"lost: no step succeeds":         {Kind: Lost, Text: "no step succeeds"},
+		"closed":                         {Kind: Closed},
+	} {
+		if e.String() != want {
+			t.Errorf("%q, want %q", e.String(), want)
+		}
+	}
+}
