@@ -45,7 +45,7 @@ func (b *builder) build(samples []sample) error {
 				return err
 			}
 			if st.Kind == deterministic.Degenerate && i == 0 {
-				b.say("today's setting lies on a fold, or where branches meet, to within rounding: at %.6g", st.Amounts)
+				b.say("%s", b.degenerate(append(slices.Clone(st.Amounts), s.value)))
 			}
 			if !ok && st.Kind != deterministic.Degenerate {
 				b.say("state %s at %s = %.6g could not be followed: %s", st.Name, b.knob.Name, s.value, b.reason(st.Amounts, s.value))
@@ -58,6 +58,16 @@ func (b *builder) build(samples []sample) error {
 		}
 	}
 	return nil
+}
+
+// degenerate says what a degenerate state of today is.
+func (b *builder) degenerate(u []float64) string {
+	for _, k := range b.kinks {
+		if b.f.along(k, u) {
+			return fmt.Sprintf("today's setting lies on a kink: at %.6g %s", u[:b.f.n], b.f.text(k))
+		}
+	}
+	return fmt.Sprintf("today's setting lies on a fold, or where branches meet, to within rounding: at %.6g", u[:b.f.n])
 }
 
 // reason says why a state cannot be followed.

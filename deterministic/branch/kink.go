@@ -40,6 +40,7 @@ func (f *field) side(k kink, u []float64) float64 {
 
 // along tells whether u lies on the kink to within rounding.
 func (f *field) along(k kink, u []float64) bool {
+	f.turn(u[f.n:])
 	size := 0.0
 	for _, a := range k.node.Args {
 		size = max(size, math.Abs(a.Eval(u[:f.n], f.constants)))
