@@ -95,12 +95,12 @@ func (l *lane) total() float64 {
 // equals the one before it, as that of a zero propensity does, is never the first
 // above u.
 func (k *direct) choose(l *lane, u float64) int {
-	bits, g := math.Float64bits(u), 0
+	g := 0
 	for _, end := range l.ends[1 : len(l.ends)-1] {
-		g += 1 - int(above(end, bits))
+		g += 1 - int(above(end, u))
 	}
 	before, s := l.ends[g], (*[groupWidth]float64)(l.sums[g*groupWidth:])
-	p := above(before+s[0], bits) + above(before+s[1], bits) + above(before+s[2], bits)
+	p := above(before+s[0], u) + above(before+s[1], u) + above(before+s[2], u)
 	return k.reaction[(g+1)*groupWidth-1-int(p)]
 }
 

@@ -37,7 +37,7 @@ func TestFrozen(t *testing.T) {
 
 const frozen = `one-gene latch, dense: 86 at 670.01950189393892
 one-species chain with two states, dense: 154 at 0.34317085893514876
-two genes, dimers, two overlapping operators, dense: 22 at 50.422396879121742
+two genes, dimers, two overlapping operators, dense: 22 at 52.350181351071669
 chain of one-way conversions, dense: 3400 at 7.3951350118220445
 expression in bursts, dense: 275 at 144.20573312817638
 one-gene latch, sparse: 70 at 409.23649246141355

@@ -1,8 +1,6 @@
 package ssa
 
-import (
-	"slices"
-)
+import "slices"
 
 const (
 	// groupWidth is the most reactions in a group of the Dense method.
@@ -12,6 +10,8 @@ const (
 	keySpecies = 3
 	// tabledGroups is the most groups that a network with tables may have.
 	tabledGroups = 8
+	// fewGroups are so few that no fewer would be faster.
+	fewGroups = 4
 )
 
 // A group is a few reactions whose propensities Dense sums on their own.
@@ -25,20 +25,19 @@ type group struct {
 // group puts the live reactions in groups. Where few groups are enough, those
 // that read the same few species are together, so that their running sums can be
 // looked up by the counts; otherwise they go together in the order they stand.
-// The groups depend on the network only: they settle which reaction a random
-// number chooses.
+//
+// The groups settle which reaction a random number chooses, so they depend on the
+// plan's network and start only.
 func (s *system) group() []group {
-	keys := s.keys()
-	var groups []group
-	for r := range s.Network.Reactions {
-		if !s.live(r) {
-			continue
+	sets := s.sets()
+	if slices.ContainsFunc(sets, func(g group) bool { return len(g.species) > keySpecies }) {
+		return s.consecutive()
+	}
+	groups := absorb(sets)
+	if len(groups) > fewGroups {
+		if fewer := s.merge(sets); len(fewer) < len(groups) {
+			groups = fewer
 		}
-		k := slices.IndexFunc(keys, func(key []int) bool { return subset(s.Network.Reads(r), key) })
-		if k < 0 {
-			return s.consecutive()
-		}
-		groups = join(groups, r, keys[k])
 	}
 	if len(groups) > tabledGroups {
 		return s.consecutive()
@@ -46,24 +45,31 @@ func (s *system) group() []group {
 	return groups
 }
 
-// keys lists the sets of species read by reactions that are not within another
-// one, in the order met. Sets of too many species are left out.
-func (s *system) keys() [][]int {
-	var sets [][]int
+// sets puts live reactions that read the same species together, in the order met.
+func (s *system) sets() (sets []group) {
 	for r := range s.Network.Reactions {
-		reads := s.Network.Reads(r)
-		if s.live(r) && len(reads) <= keySpecies && !slices.ContainsFunc(sets, func(k []int) bool { return slices.Equal(k, reads) }) {
-			sets = append(sets, reads)
+		if s.live(r) {
+			sets = join(sets, r, s.Network.Reads(r))
 		}
 	}
-	var keys [][]int
-	for _, k := range sets {
-		within := func(other []int) bool { return len(other) > len(k) && subset(k, other) }
-		if !slices.ContainsFunc(sets, within) {
-			keys = append(keys, k)
+	return sets
+}
+
+// absorb puts sets of reactions into groups whose species are not within those of
+// another set.
+func absorb(sets []group) (groups []group) {
+	for _, set := range sets {
+		key := set.species
+		for _, other := range sets {
+			if len(other.species) > len(key) && subset(key, other.species) {
+				key = other.species
+			}
+		}
+		for _, r := range set.reactions {
+			groups = join(groups, r, key)
 		}
 	}
-	return keys
+	return groups
 }
 
 // join adds reaction r to the first group of this key that has room, or to a new one.
@@ -78,8 +84,7 @@ func join(groups []group, r int, key []int) []group {
 }
 
 // consecutive puts the live reactions into groups as they stand.
-func (s *system) consecutive() []group {
-	var groups []group
+func (s *system) consecutive() (groups []group) {
 	for r := range s.Network.Reactions {
 		if s.live(r) {
 			groups = join(groups, r, nil)

@@ -21,12 +21,14 @@ type lane struct {
 	sample int           // index of the next of Plan.Times
 	counts []int64
 
-	// draws are those of a block; before is random as it was at step first of the
+	// draws are those of a block; undrawn is random as it was at step first of the
 	// block, when those from there on were made. See blocks.
-	draws  [blockSteps]stream.Draw
-	before stream.Draws
-	first  int
-	drawn  int
+	draws   [blockSteps]stream.Draw
+	undrawn stream.Draws
+	first   int
+	drawn   int
+
+	before [maxRows]float64 // scratch of rushes: sums of all rows before each; that before the first is 0
 
 	values, sums, ends []float64 // see direct
 	classes            *classes  // see sparse
@@ -85,7 +87,7 @@ func (l *lane) draw() *stream.Draw {
 
 // redraw makes the draws of a block from a step on.
 func (l *lane) redraw(step int) {
-	l.before, l.first = l.random, step
+	l.undrawn, l.first = l.random, step
 	if step == 0 {
 		l.random.Fill(&l.draws)
 		return
@@ -97,7 +99,7 @@ func (l *lane) redraw(step int) {
 
 // rewind takes back the draws for a step of a block and later ones.
 func (l *lane) rewind(step int) {
-	l.random, l.drawn = l.before, blockSteps
+	l.random, l.drawn = l.undrawn, blockSteps
 	for range step - l.first {
 		l.random.Next()
 	}

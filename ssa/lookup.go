@@ -34,10 +34,7 @@ type lookup struct {
 	// reaction at each place, groupWidth to a row; −1: none
 	reaction [maxRows * groupWidth]int
 
-	// Where place p of n rows is counted from the end, as a rush counts: changes of
-	// position, and bits of the reactions that have bursts.
-	back   [maxRows * groupWidth]position
-	bursty uint64
+	bursty uint64 // bits of the places whose reactions have bursts
 
 	spilled bool // a state is beyond any row: the lanes need another kernel
 }
@@ -111,15 +108,13 @@ func (k *lookup) hold(counts []int64) bool {
 }
 
 func (k *lookup) setShifts() {
-	last := k.width()*groupWidth - 1
 	for p, r := range k.reaction {
 		if r < 0 {
 			continue
 		}
 		k.shifts[p] = k.shift(r)
-		k.back[last-p] = k.shifts[p]
 		if len(k.bursts.of(r)) > 0 {
-			k.bursty |= 1 << (last - p)
+			k.bursty |= 1 << p
 		}
 	}
 }

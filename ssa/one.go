@@ -1,7 +1,5 @@
 package ssa
 
-import "math"
-
 // rushOne is the rush of one row, the shape of one species.
 func rushOne(k *lookup, lanes []lane, step, i int) (int, int) {
 	entries, bursty := k.entries, k.bursty
@@ -14,13 +12,13 @@ func rushOne(k *lookup, lanes []lane, step, i int) (int, int) {
 			if e.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := math.Float64bits(draw.Unit * e.total)
-			p := above(e.sums[0], u) + above(e.sums[1], u) + above(e.sums[2], u)
+			u := draw.Unit * e.total
+			p := 3 - (above(e.sums[0], u) + above(e.sums[1], u) + above(e.sums[2], u))
 			if bursty>>p&1 != 0 {
 				return step, i
 			}
 			l.time = t
-			l.at[0] = at + k.back[p&3][0]
+			l.at[0] = at + k.shifts[p&3][0]
 		}
 		i = 0
 	}

@@ -1,7 +1,5 @@
 package ssa
 
-import "math"
-
 // rushPair is the rush of two rows of at most two reactions each, the shape of a
 // gene with its transcript or of two genes.
 //
@@ -19,7 +17,7 @@ func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
 			if x.cores&y.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := math.Float64bits(draw.Unit * total)
+			u := draw.Unit * total
 			r := above(x.sums[0], u) + above(x.total, u) + above(x.total+y.sums[0], u)
 			l.time = t
 			l.at[0] = at + shifts[r&3]
@@ -29,6 +27,10 @@ func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
 	return step, 0
 }
 
-// above is 1 where sum is above the number with bits u, neither of them negative,
-// and else 0, without a branch: bits are in the order of the numbers.
-func above(sum float64, u uint64) uint64 { return (u - math.Float64bits(sum)) >> 63 }
+// above is 1 where sum is above u, and else 0, without a branch.
+func above(sum, u float64) uint64 {
+	if sum > u {
+		return 1
+	}
+	return 0
+}

@@ -5,8 +5,10 @@ const (
 	// one of several.
 	rowEntries   = 1 << 18
 	crossEntries = 1 << 16
-	// firstCounts is the number of counts that a row begins with in each species.
+	// firstCounts is the number of counts that a row of one species begins with, and
+	// crossCounts that of each species of several.
 	firstCounts = 64
+	crossCounts = 2
 )
 
 // An entry is what a row knows of one combination of its species' counts. An
@@ -39,7 +41,10 @@ type row struct {
 func newRow(g group) *row {
 	r := &row{group: g, counts: make([]int64, len(g.species)), strides: make([]int64, len(g.species))}
 	for i := range r.counts {
-		r.counts[i] = firstCounts
+		r.counts[i] = crossCounts
+		if len(r.counts) == 1 {
+			r.counts[i] = firstCounts
+		}
 	}
 	return r
 }

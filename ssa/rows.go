@@ -1,11 +1,9 @@
 package ssa
 
-import "math"
-
 // The rushes of up to four, six and eight rows go the same way: of the sums of all
-// rows up to each, those above u are counted, which gives the row, from the end;
-// then those above u within it, which gives the place. Row and place are looked up
-// rather than branched on.
+// rows up to each, those above u are counted, which gives the row; then those above
+// u within it, which gives the place. Row and place are looked up rather than
+// branched on.
 
 // rushFour is the rush of up to four rows.
 func rushFour(k *lookup, lanes []lane, step, i int) (int, int) {
@@ -25,17 +23,16 @@ func rushFour(k *lookup, lanes []lane, step, i int) (int, int) {
 			if e0.cores&e1.cores&e2.cores&e3.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := math.Float64bits(draw.Unit * total)
-			g := above(end0, u) + above(end1, u) + above(end2, u)
-			before := [8]float64{end2, end1, end0}
-			at := [8]uint64{w1 >> 32, uint64(uint32(w1)), w0 >> 32, uint64(uint32(w0))}
-			b, sums := before[g&7], &entries[at[g&7]].sums
-			p := (g<<2 + above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u)) & (maxRows*groupWidth - 1)
+			u := draw.Unit * total
+			l.before[1], l.before[2], l.before[3] = end0, end1, end2
+			g := 3 - (above(end0, u) + above(end1, u) + above(end2, u))
+			b, sums := l.before[g&7], &entries[uint32(l.at[g>>1&3]>>(g<<5&32))].sums
+			p := (g<<2 + 3 - (above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u))) & (maxRows*groupWidth - 1)
 			if bursty>>p&1 != 0 {
 				return step, i
 			}
 			l.time = t
-			shift := &k.back[p]
+			shift := &k.shifts[p]
 			l.at[0], l.at[1] = w0+shift[0], w1+shift[1]
 		}
 		i = 0
@@ -64,17 +61,16 @@ func rushSix(k *lookup, lanes []lane, step, i int) (int, int) {
 			if e0.cores&e1.cores&e2.cores&e3.cores&e4.cores&e5.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := math.Float64bits(draw.Unit * total)
-			g := above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u)
-			before := [8]float64{end4, end3, end2, end1, end0}
-			at := [8]uint64{w2 >> 32, uint64(uint32(w2)), w1 >> 32, uint64(uint32(w1)), w0 >> 32, uint64(uint32(w0))}
-			b, sums := before[g&7], &entries[at[g&7]].sums
-			p := (g<<2 + above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u)) & (maxRows*groupWidth - 1)
+			u := draw.Unit * total
+			l.before[1], l.before[2], l.before[3], l.before[4], l.before[5] = end0, end1, end2, end3, end4
+			g := 5 - (above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u))
+			b, sums := l.before[g&7], &entries[uint32(l.at[g>>1&3]>>(g<<5&32))].sums
+			p := (g<<2 + 3 - (above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u))) & (maxRows*groupWidth - 1)
 			if bursty>>p&1 != 0 {
 				return step, i
 			}
 			l.time = t
-			shift := &k.back[p]
+			shift := &k.shifts[p]
 			l.at[0], l.at[1], l.at[2] = w0+shift[0], w1+shift[1], w2+shift[2]
 		}
 		i = 0
@@ -106,17 +102,16 @@ func rushEight(k *lookup, lanes []lane, step, i int) (int, int) {
 			if e0.cores&e1.cores&e2.cores&e3.cores&e4.cores&e5.cores&e6.cores&e7.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := math.Float64bits(draw.Unit * total)
-			g := above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u) + above(end5, u) + above(end6, u)
-			before := [8]float64{end6, end5, end4, end3, end2, end1, end0}
-			at := [8]uint64{w3 >> 32, uint64(uint32(w3)), w2 >> 32, uint64(uint32(w2)), w1 >> 32, uint64(uint32(w1)), w0 >> 32, uint64(uint32(w0))}
-			b, sums := before[g&7], &entries[at[g&7]].sums
-			p := (g<<2 + above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u)) & (maxRows*groupWidth - 1)
+			u := draw.Unit * total
+			l.before[1], l.before[2], l.before[3], l.before[4], l.before[5], l.before[6], l.before[7] = end0, end1, end2, end3, end4, end5, end6
+			g := 7 - (above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u) + above(end5, u) + above(end6, u))
+			b, sums := l.before[g&7], &entries[uint32(l.at[g>>1&3]>>(g<<5&32))].sums
+			p := (g<<2 + 3 - (above(b+sums[0], u) + above(b+sums[1], u) + above(b+sums[2], u))) & (maxRows*groupWidth - 1)
 			if bursty>>p&1 != 0 {
 				return step, i
 			}
 			l.time = t
-			shift := &k.back[p]
+			shift := &k.shifts[p]
 			l.at[0], l.at[1], l.at[2], l.at[3] = w0+shift[0], w1+shift[1], w2+shift[2], w3+shift[3]
 		}
 		i = 0
