@@ -9,6 +9,14 @@
 // near a fold, at a degenerate state or along a continuum, where the honest answer
 // is 'not proved'.
 //
+// A state in which species are absent lies on a face of the box, where no box around
+// it can be searched. It is proved on the face, as a state of the network without
+// those species, once it is shown that they stay at exactly 0 there; and no other
+// state is near since the rates of change tell all points near it apart.
+//
+// Species that all rates are linear in (transcripts, most often) are never cut: they
+// follow from the others by narrowing. So it is the other species that cost.
+//
 // The numbers of a design are taken as they are in floating point, and the rates
 // of the exact real-number laws with those numbers are what the proof is about.
 //
