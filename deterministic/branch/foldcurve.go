@@ -3,7 +3,6 @@ package branch
 import (
 	"context"
 	"fmt"
-	"slices"
 
 	"holdfast/model"
 )
@@ -70,7 +69,8 @@ type FoldDiagram struct {
 }
 
 // FoldCurves gives the curves of folds in two knobs, within both ranges: those that
-// hold a fold of the first knob at one of the samples of the second. The curve is
+// reach an end of either range, and those that hold a fold of the first knob at one of
+// the samples of the second; a small loop between them may be missed. A curve is
 // followed by the equations of a fold with both knobs free (Moore and Spence, SIAM
 // J. Numer. Anal. 17 (1980) 567).
 //
@@ -90,14 +90,15 @@ func FoldCurves(ctx context.Context, n *model.Network, first, second Knob, o Opt
 	if err := o.checkBox(n); err != nil {
 		return nil, err
 	}
-	folds, high, floor, err := foldsOver(ctx, n, first, second, o)
+	found, err := d.search(ctx, n, o)
 	if err != nil {
 		return nil, err
 	}
+	high, floor := boxOf(found.samples, len(n.Species))
 	if o.High != nil {
 		high = o.High
 	}
-	if err := newFoldTracer(ctx, n, d, high, floor, o).traceAll(folds); err != nil {
+	if err := newFoldTracer(ctx, n, d, high, floor, o).traceAll(found.folds); err != nil {
 		return nil, err
 	}
 	d.warn()
@@ -117,51 +118,4 @@ func (d *FoldDiagram) warn() {
 			}
 		}
 	}
-}
-
-// foldsOver finds the folds of the first knob at the samples of the second, as
-// points with both knobs, and the box and floors for all.
-func foldsOver(ctx context.Context, n *model.Network, first, second Knob, o Options) (folds [][]float64, high, floor []float64, err error) {
-	var all []sample
-	var none error
-	for _, v := range settings(second, second.Today(n), o.Samples) {
-		turned, ok := rebind(n, second, v)
-		if !ok {
-			continue
-		}
-		samples, err := surveyAll(ctx, turned, first, settings(first, first.Today(n), o.Samples))
-		if ctx.Err() != nil {
-			return nil, nil, nil, ctx.Err()
-		}
-		if err != nil {
-			none = err
-			continue
-		}
-		all = append(all, samples...)
-		b := newBuilder(ctx, turned, first, samples, o)
-		if err := b.build(samples); err != nil {
-			return nil, nil, nil, err
-		}
-		for _, u := range b.folds() {
-			folds = append(folds, append(u, second.Today(turned)))
-		}
-	}
-	if len(all) == 0 {
-		return nil, nil, nil, none
-	}
-	high, floor = boxOf(all, len(n.Species))
-	return folds, high, floor, nil
-}
-
-// folds lists the folds of the branches, amounts and knob.
-func (b *builder) folds() [][]float64 {
-	var out [][]float64
-	for _, t := range b.branches {
-		for _, s := range t.spots {
-			if s.mark != nil && s.mark.Kind == Fold {
-				out = append(out, slices.Clone(s.u))
-			}
-		}
-	}
-	return out
 }
