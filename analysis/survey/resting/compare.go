@@ -57,14 +57,29 @@ func seeds(roots []proof.Root) [][]float64 {
 	return out
 }
 
+// points are the amounts of the states of a map.
+func points(m *deterministic.Map) [][]float64 {
+	var out [][]float64
+	for i := range m.States {
+		if m.States[i].Kind != deterministic.Declared {
+			out = append(out, m.States[i].Amounts)
+		}
+	}
+	return out
+}
+
 // reportMissed says which states the survey had missed, and which it misses still.
 func (l *List) reportMissed(missed []proof.Root) {
+	var found []string
 	for _, r := range missed {
 		if s := l.within(r.Box); s != nil {
-			l.Warnings = append(l.Warnings, fmt.Sprintf("the multi-start search had missed %s; the proof found it", s.Name))
+			found = append(found, s.Name)
 			continue
 		}
 		l.Warnings = append(l.Warnings, fmt.Sprintf("a resting state at %s is proved but is not in the list: its stability could not be worked out", l.amounts(r.Point)))
+	}
+	if len(found) > 0 {
+		l.Warnings = append(l.Warnings, "the multi-start search had missed what the proof found: "+strings.Join(found, ", "))
 	}
 }
 

@@ -15,8 +15,8 @@ import (
 // proof is tried.
 const MostFree = 6
 
-// mostBoxes over the square of the free amounts limits the boxes of a proof, so that
-// it takes a few seconds at most: a box of six free amounts costs about a
+// mostBoxes over the number of free amounts limits the boxes of a proof, so that it
+// takes a few seconds at most: a box of six free amounts costs up to half a
 // millisecond, one of two a tenth of that.
 const mostBoxes = 60_000
 
@@ -49,14 +49,25 @@ func States(ctx context.Context, n *model.Network) (*List, error) {
 		return l, err
 	}
 	if missed := l.missed(); len(missed) > 0 {
-		l.Map, err = deterministic.Survey(ctx, n, deterministic.Options{Seeds: seeds(missed)})
-		if l.Map == nil {
+		if err = l.again(ctx, missed); l.Map == nil {
 			return nil, err
 		}
-		l.reportMissed(missed)
 	}
 	l.compare()
 	return l, err
+}
+
+// again surveys from all states that are known by now.
+func (l *List) again(ctx context.Context, missed []proof.Root) (err error) {
+	before := l.Map.Search
+	o := deterministic.Options{Starts: 1, Seeds: append(seeds(missed), points(l.Map)...)}
+	l.Map, err = deterministic.Survey(ctx, l.Map.Network, o)
+	if l.Map != nil {
+		l.Map.Search.Starts += before.Starts
+		l.Map.Search.Flows += before.Flows
+		l.reportMissed(missed)
+	}
+	return err
 }
 
 // prove tries the proof; only a context that is done is an error.
@@ -67,7 +78,7 @@ func (l *List) prove(ctx context.Context) error {
 		l.Untried = fmt.Sprintf("%d amounts are free, and a proof is tried up to %d", free, MostFree)
 		return nil
 	}
-	p := proof.Problem{Network: n, MaxBoxes: mostBoxes / max(free*free, 1)}
+	p := proof.Problem{Network: n, MaxBoxes: mostBoxes / max(free, 1)}
 	r, err := proof.Prove(ctx, p)
 	if errors.Is(err, proof.ErrUnbounded) {
 		p.Low, p.High = l.Map.Low, l.Map.High

@@ -72,7 +72,7 @@ func TestMissedStatesAreSurveyedFromTheProof(t *testing.T) {
 			t.Errorf("%s at %.15g, want %.15g", s.Name, x, want)
 		}
 	}
-	if text := strings.Join(l.Warnings, "\n"); !strings.Contains(text, "missed high") || !strings.Contains(text, "missed saddle") {
+	if text := strings.Join(l.Warnings, "\n"); !strings.Contains(text, "the proof found: saddle, high") {
 		t.Errorf("warnings %q", text)
 	}
 }
