@@ -11,6 +11,9 @@ type workspace struct {
 	scale     []float64
 	bar       []float64
 	lu        *lu
+	// perCapita makes newton solve for the rates over the amounts, ẋᵢ/xᵢ = 0, which
+	// states where the species is absent do not satisfy: they do not draw it in.
+	perCapita bool
 }
 
 func newWorkspace(s *system) *workspace {
@@ -34,10 +37,27 @@ func (w *workspace) residuals(c *class, x, f, gross []float64) {
 // factor sets up and factors the equations' derivatives at x, with amounts in
 // units of w.scale. It is false where they are singular or not finite.
 func (w *workspace) factor(c *class, x []float64) bool {
-	n := w.sys.n
 	w.sys.jacobian(x, w.jac, w.grad)
-	a := w.lu.a
-	copy(a, w.jac)
+	copy(w.lu.a, w.jac)
+	return w.factorRows(c)
+}
+
+// factorFrom is factor for the step from x, where w.f holds the residuals: of the
+// rates, or of the rates over the amounts times those at x.
+func (w *workspace) factorFrom(c *class, x []float64) bool {
+	w.sys.jacobian(x, w.jac, w.grad)
+	copy(w.lu.a, w.jac)
+	if w.perCapita {
+		for _, i := range c.independent {
+			w.lu.a[i*w.sys.n+i] -= w.f[i] / x[i]
+		}
+	}
+	return w.factorRows(c)
+}
+
+// factorRows puts the totals in, scales the columns and factors.
+func (w *workspace) factorRows(c *class) bool {
+	n, a := w.sys.n, w.lu.a
 	for k, d := range c.dependent {
 		copy(a[d*n:(d+1)*n], c.rows[k])
 	}
@@ -95,10 +115,10 @@ func (w *workspace) newton(c *class, x, floor, ceiling []float64) bool {
 	damping := 1.0
 	for range newtonSteps {
 		w.rescale(x, floor)
-		if !w.factor(c, x) {
+		w.residuals(c, x, w.f, w.gross)
+		if !w.factorFrom(c, x) {
 			return false
 		}
-		w.residuals(c, x, w.f, w.gross)
 		size := w.correct(w.f, w.step)
 		if math.IsInf(size, 1) {
 			return false
@@ -127,6 +147,11 @@ func (w *workspace) advance(c *class, x, ceiling []float64, size, damping float6
 			w.try[i] = min(max(next, shrink*v), max(ceiling[i], v/shrink))
 		}
 		w.residuals(c, w.try, w.bar, w.gross)
+		if w.perCapita {
+			for _, i := range c.independent {
+				w.bar[i] *= x[i] / w.try[i]
+			}
+		}
 		if after := w.correct(w.bar, w.bar); after <= (1-damping/4)*size {
 			copy(x, w.try)
 			return damping, true

@@ -35,12 +35,17 @@ type candidate struct {
 	probed   bool
 }
 
-func (f *finder) classify(r *root) *candidate {
+// spectrumScale is the amounts that perturbations of each species are measured in.
+func (f *finder) spectrumScale(x []float64) []float64 {
 	scale := slices.Clone(f.resolution)
-	for i, v := range r.x {
+	for i, v := range x {
 		scale[i] = max(scale[i], v)
 	}
-	values, slack, ok := f.w.spectrum(f.whole, r.x, scale)
+	return scale
+}
+
+func (f *finder) classify(r *root) *candidate {
+	values, slack, ok := f.w.spectrum(f.whole, r.x, f.spectrumScale(r.x))
 	c := &candidate{root: r, values: values}
 	c.kind, c.unstable = kindOf(values, slack)
 	if !ok || !r.simple() {
@@ -122,6 +127,7 @@ const (
 	mostStarts  = 4096
 	leastFlows  = 16
 	unseenShare = 1e-3
+	emptyStarts = 768 // without a hit, before a face counts as empty
 )
 
 // multiStart searches a face of two or more dimensions: flows for the stable
@@ -142,14 +148,14 @@ func (f *finder) multiStart(c *class) {
 			}
 		}
 		f.refine(c)
-		if target > leastStarts && !f.indexBalanced() {
+		if target > leastStarts && !f.indexBalanced(c) {
 			f.between(c)
 		}
 		if f.many(c) {
 			f.drift(c, nil)
 			return
 		}
-		if f.ctx.Err() != nil || next >= f.most() || f.enough(c, hits) {
+		if f.ctx.Err() != nil || next >= f.most() || f.enough(c, next, hits) {
 			return
 		}
 	}
@@ -166,7 +172,7 @@ func (f *finder) most() int {
 // states seen in n converged starts, w(w+1)/(n(n−1)) estimates the share of
 // starts that would lead to others (Boender and Rinnooy Kan, Math. Program. 37
 // (1987) 59); and whether the states' indices add up.
-func (f *finder) enough(c *class, hits int) bool {
+func (f *finder) enough(c *class, starts, hits int) bool {
 	on := 0
 	for _, r := range f.found {
 		if r.face == c {
@@ -174,10 +180,10 @@ func (f *finder) enough(c *class, hits int) bool {
 		}
 	}
 	if hits == 0 {
-		return f.indexBalanced()
+		return f.indexBalanced(c) && starts >= emptyStarts
 	}
 	unseen := float64(on) * float64(on+1) / (float64(hits) * float64(max(hits-1, 1)))
-	return unseen <= unseenShare && f.indexBalanced()
+	return unseen <= unseenShare && f.indexBalanced(c)
 }
 
 func (f *finder) newtonStart(c *class, x []float64) bool {
@@ -185,7 +191,10 @@ func (f *finder) newtonStart(c *class, x []float64) bool {
 		return false
 	}
 	f.starts++
-	return f.w.newton(c, x, f.floor, f.high) && f.take(c, x) != nil
+	f.w.perCapita = f.starts/2%2 == 1 // in turn, for either spacing of the starts
+	ok := f.w.newton(c, x, f.floor, f.high)
+	f.w.perCapita = false
+	return ok && f.take(c, x) != nil
 }
 
 // flowStarts follows flows from some of the seeds to rest.

@@ -39,6 +39,28 @@ func TestFastBindings(t *testing.T) {
 	}
 }
 
+// TestSlowAmongFast: rates 1e21 apart do not hide that a state is stable; where a slow
+// rate is the small difference of fast ones, it is trusted as far as its digits go.
+func TestSlowAmongFast(t *testing.T) {
+	d := newDraft(1, "x", "y")
+	d.add(nil, nil, terms(0), 1e-8).add(terms(0), nil, nil, 1e-9)
+	d.add(nil, nil, terms(1), 1e13).add(terms(1), nil, nil, 1e12)
+	s := survey(t, d.network(t)).States[0]
+	if s.Kind != StableNode {
+		t.Errorf("kind %v", s.Kind)
+	}
+	near(t, "slow rate", s.SlowRate, 1e-9, 1e-14)
+	// A ⇌ B at f each way, A lost at l: the slow rate is l/2 up to l/f of itself
+	// (algebra); f+l is rounded to f·2⁻⁵³, which is 1e-5 of l here.
+	d = newDraft(1, "a", "b").add(nil, nil, terms(0), 1e-5).add(terms(0), nil, nil, 1e-6)
+	d.add(terms(0), nil, terms(1), 1e5).add(terms(1), nil, terms(0), 1e5)
+	s = survey(t, d.network(t)).States[0]
+	if s.Kind != StableNode {
+		t.Errorf("kind %v", s.Kind)
+	}
+	near(t, "slow rate of the pair", s.SlowRate, 0.5e-6, 1e-4)
+}
+
 // TestUnitsOfAmount: amounts measured in units from 1e-5 to 1e3 molecules give the
 // same states in molecules.
 func TestUnitsOfAmount(t *testing.T) {

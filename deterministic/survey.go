@@ -70,7 +70,7 @@ func (m *Map) states(f *finder) {
 	for i := range m.States {
 		m.names = append(m.names, m.States[i].Name)
 	}
-	sum, ok := f.indexSum()
+	sum, ok := f.indexSum(m.class)
 	m.Search = Search{
 		Starts: f.starts, Flows: f.flows, Checked: ok, Balanced: ok && sum == 1, Scanned: m.class.dim() == 1 && f.scanned,
 	}
