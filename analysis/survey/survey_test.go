@@ -222,7 +222,7 @@ func TestNoStateToday(t *testing.T) {
 	if _, err := Run(t.Context(), n, Options{}); !errors.Is(err, deterministic.ErrNoRestingState) {
 		t.Errorf("error %v", err)
 	}
-	r := run(t, n, Knob{"alpha", 0.5, 30})
+	r := run(t, n, Knob{"alpha", 0.5, 21})
 	hopf := specials(r, branch.Hopf)
 	if len(hopf) != 1 || len(r.States) != 0 {
 		t.Fatalf("%+v", r.Diagram.Specials)
