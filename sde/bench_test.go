@@ -1,0 +1,57 @@
+package sde_test
+
+import (
+	"context"
+	"fmt"
+	"testing"
+
+	"holdfast/internal/zoo"
+	"holdfast/model"
+	"holdfast/sde"
+)
+
+func run(tb testing.TB, p sde.Plan) sde.Result {
+	tb.Helper()
+	res, err := sde.Run(context.Background(), p)
+	if err != nil {
+		tb.Fatal(err)
+	}
+	return res
+}
+
+// speed makes as many runs as lanes, each with as many steps as the benchmark asks
+// for over the lanes, and reports the time of one step.
+func speed(b *testing.B, p sde.Plan) {
+	p.Runs, p.Seed = 64, 1
+	p.MaxSteps = int64(b.N)/64 + 1
+	b.ResetTimer()
+	res := run(b, p)
+	b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(res.Steps), "ns/step")
+	b.ReportMetric(0, "ns/op")
+}
+
+// latch is the latch at 100 copies from its high state, with a box about the low
+// state as a core, so that the runs do all that a dwell needs. The system and the
+// step are those of the loop by hand that the engine is held against.
+func latch() sde.Plan {
+	return sde.Plan{
+		System: sde.Chemical(zoo.Latch(100)), Start: []float64{76, 169}, From: 1, Threads: 1, Step: 0.01,
+		Cores: []model.Core{
+			{State: "low", Low: []int64{0, 0}, High: []int64{12, 20}},
+			{State: "high", Low: []int64{50, 140}, High: []int64{110, 220}},
+		},
+	}
+}
+
+func BenchmarkLatch(b *testing.B) { speed(b, latch()) }
+
+// BenchmarkThreads is the latch on one goroutine and on two, over all steps.
+func BenchmarkThreads(b *testing.B) {
+	for _, n := range []int{1, 2} {
+		b.Run(fmt.Sprint(n), func(b *testing.B) {
+			p := latch()
+			p.Threads = n
+			speed(b, p)
+		})
+	}
+}
