@@ -17,6 +17,7 @@ type OneStateError struct {
 	Species []string
 }
 
+// Error says what is wrong and what to do.
 func (e *OneStateError) Error() string {
 	parts := make([]string, len(e.Species))
 	for i, name := range e.Species {
@@ -32,6 +33,7 @@ type RunawayError struct {
 	Limit   float64
 }
 
+// Error says what is wrong and what to do.
 func (e *RunawayError) Error() string {
 	return fmt.Sprintf("%s grows without bound (beyond %.3g): give it a loss that keeps up with its production, or a production that saturates", e.Species, e.Limit)
 }
@@ -45,6 +47,7 @@ type ContinuumError struct {
 	Species []string
 }
 
+// Error says what is wrong and what to do.
 func (e *ContinuumError) Error() string {
 	return fmt.Sprintf("the resting states are not separate points: %s can drift along a line of them; give each a production or a loss of its own", strings.Join(e.Species, ", "))
 }
@@ -55,6 +58,7 @@ type IndistinctError struct {
 	Counts        []int64
 }
 
+// Error says what is wrong and what to do.
 func (e *IndistinctError) Error() string {
 	return fmt.Sprintf("states %q and %q are not distinguishable at this copy number: the lattice point nearest to both is %v; raise copies", e.First, e.Second, e.Counts)
 }
@@ -64,6 +68,7 @@ type CoreError struct {
 	Core, Problem string
 }
 
+// Error says what is wrong and what to do.
 func (e *CoreError) Error() string { return fmt.Sprintf("[core.%s]: %s", e.Core, e.Problem) }
 
 // A RateError tells that a law is negative or not finite at the start or at a
@@ -75,6 +80,7 @@ type RateError struct {
 	Value    float64
 }
 
+// Error says what is wrong and what to do.
 func (e *RateError) Error() string {
 	return fmt.Sprintf("reaction %q has rate %v at %s, amounts %v: it must be finite and not below 0", e.Reaction, e.Value, e.Place, e.Amounts)
 }

@@ -54,9 +54,9 @@ func randomOperator(t *testing.T, r *rand.Rand) *model.Network {
 func TestAgainstProof(t *testing.T) {
 	r := rand.New(rand.NewPCG(19, 20))
 	proved := 0
-	for trial := range 50 {
+	for trial := range 30 {
 		n := vanishingPair(t, r)
-		if trial%5 == 4 {
+		if trial%6 == 5 {
 			n = randomOperator(t, r)
 		}
 		p, err := proof.Prove(context.Background(), proof.Problem{Network: n})
@@ -78,8 +78,8 @@ func TestAgainstProof(t *testing.T) {
 			}
 		}
 	}
-	if proved < 45 {
-		t.Errorf("only %d of 50 lists were proved", proved)
+	if proved < 27 {
+		t.Errorf("only %d of 30 lists were proved", proved)
 	}
 }
 

@@ -25,6 +25,7 @@ const (
 	Declared
 )
 
+// String names the kind in words.
 func (k Kind) String() string {
 	switch k {
 	case StableNode:

@@ -6,8 +6,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-
-	"holdfast/model"
 )
 
 // search finds the box and the resting states in it.
@@ -106,47 +104,6 @@ func (m *Map) state(w *workspace, c *candidate) State {
 	return s
 }
 
-// nameStates gives every state its name.
-func (m *Map) nameStates() {
-	stable := countKind(m.States, Kind.Stable)
-	saddles := countKind(m.States, func(k Kind) bool { return k == Saddle })
-	next := map[Kind]int{}
-	for i := range m.States {
-		s := &m.States[i]
-		switch {
-		case s.Kind.Stable():
-			s.Name = stableName(i, stable)
-		case s.Kind == Saddle && saddles == 1:
-			s.Name = "saddle"
-		default:
-			next[s.Kind]++
-			s.Name = fmt.Sprintf("%v%d", s.Kind, next[s.Kind])
-		}
-	}
-}
-
-func stableName(i, count int) string {
-	switch count {
-	case 1:
-		return "only"
-	case 2:
-		return [...]string{"low", "high"}[i]
-	case 3:
-		return [...]string{"low", "middle", "high"}[i]
-	}
-	return fmt.Sprintf("level%d", i+1)
-}
-
-func countKind(list []State, is func(Kind) bool) int {
-	n := 0
-	for i := range list {
-		if is(list[i].Kind) {
-			n++
-		}
-	}
-	return n
-}
-
 // noStates explains a search that found no stable state, and warns of what it met
 // besides stable states.
 func (m *Map) noStates(f *finder) error {
@@ -184,13 +141,4 @@ func (m *Map) warnBeyond(f *finder) {
 	if f.drifting != nil {
 		m.warn("%v", f.drifting)
 	}
-}
-
-// speciesNames lists the names in order.
-func speciesNames(n *model.Network) []string {
-	out := make([]string, len(n.Species))
-	for i, s := range n.Species {
-		out[i] = s.Name
-	}
-	return out
 }
