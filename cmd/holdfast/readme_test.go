@@ -1,0 +1,72 @@
+package main
+
+import (
+	"bytes"
+	"context"
+	"flag"
+	"io"
+	"os"
+	"path/filepath"
+	"regexp"
+	"strings"
+	"testing"
+)
+
+// TestReadme runs every command that the README shows, in its console blocks, and
+// holds the output shown against what comes out, but for seconds. With -update-readme it
+// writes the README anew; read the difference.
+func TestReadme(t *testing.T) {
+	update := flag.Lookup("update-readme").Value.String() == "true"
+	t.Chdir(filepath.Join("..", ".."))
+	text, err := os.ReadFile("README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	parts := strings.Split(string(text), "```console\n")
+	if len(parts) < 4 {
+		t.Fatalf("%d console blocks in the README", len(parts)-1)
+	}
+	for i, part := range parts[1:] {
+		block, rest, found := strings.Cut(part, "\n```")
+		if !found {
+			t.Fatal("a console block without an end")
+		}
+		command, shown, _ := strings.Cut(block, "\n")
+		got := outputOf(t, command)
+		if !update && seconds(got) != seconds(shown) {
+			t.Errorf("%s\nprints\n%s\nREADME shows\n%s", command, got, shown)
+		}
+		parts[i+1] = command + "\n" + got + "\n```" + rest
+	}
+	if update {
+		if err := os.WriteFile("README.md", []byte(strings.Join(parts, "```console\n")), 0o644); err != nil {
+			t.Fatal(err)
+		}
+	}
+}
+
+func init() { flag.Bool("update-readme", false, "write the outputs in the README anew") }
+
+func outputOf(t *testing.T, command string) string {
+	t.Helper()
+	words := strings.Fields(command)
+	if len(words) < 2 || words[0] != "$" || words[1] != "holdfast" {
+		t.Fatalf("%q is not '$ holdfast …'", command)
+	}
+	for i, w := range words { // records go where the test may write
+		if w == "--out" {
+			words[i+1] = filepath.Join(t.TempDir(), words[i+1])
+		}
+	}
+	var out bytes.Buffer
+	if err := dispatch(context.Background(), terminal{&out, io.Discard}, words[2:]); err != nil {
+		out.WriteString("holdfast: " + err.Error())
+	}
+	return strings.TrimRight(out.String(), "\n")
+}
+
+// seconds blots out what a machine's speed decides.
+func seconds(s string) string {
+	s = regexp.MustCompile(`[0-9.e-]+ s\b`).ReplaceAllString(s, "# s")
+	return regexp.MustCompile(`on \d+ threads`).ReplaceAllString(s, "on # threads")
+}
