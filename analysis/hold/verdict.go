@@ -74,5 +74,6 @@ func (v *Verdict) words() string {
 	case math.IsNaN(float64(v.StandardErrors)):
 		return "disagree: one sees what the other excludes"
 	}
-	return fmt.Sprintf("disagree: %.1f standard errors apart", float64(v.StandardErrors))
+	z := float64(v.StandardErrors)
+	return fmt.Sprintf("%.1f standard errors apart; chance alone gives as much once in %.3g times", z, 1/math.Erfc(z/math.Sqrt2))
 }

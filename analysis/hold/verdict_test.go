@@ -21,7 +21,7 @@ func TestCompare(t *testing.T) {
 		text  string
 	}{
 		{"inside the interval", exact(100), sampled(104, 94, 115, 5, 400), true, "agree within errors"},
-		{"three standard errors off", exact(100), sampled(116.18, 105, 128, 5.809, 400), false, "disagree: 3.0 standard errors apart"},
+		{"three standard errors off", exact(100), sampled(116.18, 105, 128, 5.809, 400), false, "3.0 standard errors apart; chance alone gives as much once in 370 times"},
 		{"no flip seen, and none expected", exact(1e6), none, true, "agree within errors"},
 		{"no flip seen where many were due", exact(10), none, false, "disagree: one sees what the other excludes"},
 		{"never, and flips seen", never, sampled(104, 94, 115, 5, 400), false, "disagree: one sees what the other excludes"},
