@@ -101,7 +101,9 @@ func (p Plan) normal() (Plan, error) {
 	if p.Limit == 0 {
 		p.Limit = defaultLimit
 		for _, x := range p.Start {
-			p.Limit = max(p.Limit, 16*math.Abs(x))
+			if most := 16 * math.Abs(x); most > p.Limit {
+				p.Limit = most
+			}
 		}
 	}
 	if err := errors.Join(p.checkNumbers(), p.checkStart(), p.checkCores(), p.checkTimes()); err != nil {
