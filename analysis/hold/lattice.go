@@ -99,7 +99,7 @@ func (j *job) addExact(s *lattice.Solution, from, to int, mean float64) {
 	if g := j.network.Generation; g > 0 {
 		row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = Value(g/mean), Value(g/mean*(1-b)), Value(g/mean*(1+b))
 		rate.PerGeneration = records.Range{Value: g / mean, Low: g / mean * (1 - b), High: g / mean * (1 + b)}
-		row.Holds = latticeHolds(g, s.Mean[from]/mean*s.Escape[from], s.Escape[from]*s.Mean[from], b)
+		row.Holds = latticeHolds(s, from, g, s.Mean[from]/mean, b)
 	}
 	for _, h := range row.Holds {
 		rate.Hold = append(rate.Hold, records.HoldChance{
@@ -110,21 +110,18 @@ func (j *job) addExact(s *lattice.Solution, from, to int, mean float64) {
 	j.add(row)
 }
 
-// latticeHolds gives the chances of holding. Once the start is forgotten the law of
-// those that still hold is the quasi-stationary one, which is left at the constant
-// rate escape; the chance is then start·exp(−escape·t), where start, the mean from
-// the resting point times the rate, is how much longer the resting point holds than
-// that law. The limits span what start leaves open, 1 to start, and the truncation
-// bound.
-func latticeHolds(generation, escape, start, bound float64) []HoldChance {
+// latticeHolds gives the chances of holding; share is that of the flips that count.
+// Once the start is forgotten a dwell still lasts with the chance
+// persistence·exp(−escape·t). The limits span the bound on the rate and what may be left
+// of the start, which falls off at the rate at which it is forgotten.
+func latticeHolds(s *lattice.Solution, from int, generation, share, bound float64) []HoldChance {
 	var out []HoldChance
-	chance := func(start, escape, t float64) Value { return Value(math.Min(start*math.Exp(-escape*t), 1)) }
+	c, escape := s.Persistence[from], s.Escape[from]*share
 	for _, n := range holdGenerations() {
 		t := n * generation
-		out = append(out, HoldChance{
-			n, chance(start, escape, t),
-			chance(math.Min(start, 1), escape*(1+bound), t), chance(math.Max(start, 1), escape*(1-bound), t),
-		})
+		left := math.Abs(c-1) * math.Exp(-s.Forgetting[from]*t)
+		chance := func(rate, left float64) Value { return Value(math.Max(0, math.Min(c*math.Exp(-rate*t)+left, 1))) }
+		out = append(out, HoldChance{n, chance(escape, 0), chance(escape*(1+bound), -left), chance(escape*(1-bound), left)})
 	}
 	return out
 }

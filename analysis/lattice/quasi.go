@@ -38,12 +38,46 @@ func (s *solver) quasi(out *Solution) {
 			break
 		}
 	}
+	out.Persistence, out.Forgetting = make([]float64, n), make([]float64, n)
 	for a, law := range laws {
 		if law != nil {
 			out.Quasi[a] = s.onStates(law)
+			out.Persistence[a], out.Forgetting[a] = s.persistence(s.origin[a], out.Escape[a])
 		}
 	}
 }
+
+// persistence gives the weight c of the slowest mode in a dwell begun at the start,
+// and the rate of the next one. With S(t) = c e^{−λt} + Σ cₖ e^{−λₖt} the chance of
+// still being in the dwell, the mass of δ M⁻ⁿ is c/λⁿ + Σ cₖ/λₖⁿ: times λⁿ it tends to
+// c, by a factor λ/λₖ a step.
+func (s *solver) persistence(o *origin, escape float64) (c, forgetting float64) {
+	y := append([]float64(nil), o.stay[0]...)
+	s.timeless(y)
+	scale(y, escape)
+	c, forgetting = total(y), math.Inf(1)
+	last := c - 1
+	for range mostIterations {
+		next := columns{append([]float64(nil), y...)}
+		s.apply([]*restricted{o.chain}, next)
+		y = next[0]
+		s.timeless(y)
+		scale(y, escape)
+		step := total(y) - c
+		c += step
+		if math.Abs(step) <= persistent*c || s.ctx.Err() != nil {
+			break
+		}
+		forgetting, last = escape*last/step, step
+	}
+	if !(forgetting > escape) {
+		forgetting = escape
+	}
+	return c, forgetting
+}
+
+// persistent is the relative accuracy of the weight of the slowest mode.
+const persistent = 1e-10
 
 // leap moves the laws that are slow to settle near to where they will, without
 // regard to small entries; negative ones are set to 0, and the steps that follow

@@ -39,6 +39,11 @@ type Solution struct {
 	Quasi [][]float64
 	// Escape[a] is the rate at which it is left, 1/time.
 	Escape []float64
+	// Persistence[a] is the c of the chance c·exp(−Escape·t) that a dwell begun at a's
+	// start still lasts at time t, once the start is forgotten; what is left of the
+	// start falls off at the rate Forgetting[a] or faster, as far as the inverse
+	// iteration tells.
+	Persistence, Forgetting []float64
 	// Committor[a] is the probability, from each lattice state, that a's core is
 	// the first to be entered.
 	Committor [][]float64
