@@ -83,8 +83,7 @@ func (c *compiler) less(species, j int) int {
 	if j == 0 {
 		return species
 	}
-	zero := c.constant(0)
-	return c.emit(instruction{op: opCall, call: model.OpMax, a: c.sub(species, c.constant(float64(j))), b: zero, c: zero})
+	return c.emit(instruction{op: opCut, a: c.sub(species, c.constant(float64(j)))})
 }
 
 // nonNegative tells whether a law is plainly not below 0 at amounts not below 0,

@@ -31,6 +31,7 @@ const (
 	opDiv
 	opSqrt
 	opGuard // NaN below 0
+	opCut   // 0 below 0
 	opPower // a fixed exponent
 	opCall  // model.Apply
 )
@@ -102,6 +103,8 @@ func (m *machine) run() {
 			sqrtLanes(i.to, i.a)
 		case opGuard:
 			guardLanes(i.to, i.a)
+		case opCut:
+			cutLanes(i.to, i.a)
 		case opPower:
 			powLanes(i.to, i.a, i.value)
 		default:

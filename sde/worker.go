@@ -134,7 +134,6 @@ func (w *worker) place(i int) {
 // advance gives each lane a block of steps. It records runs that end, and goes on
 // with those that begin then.
 func (w *worker) advance() {
-	clear(w.z.cells)
 	for i := range w.lanes {
 		w.draw(i, 0)
 	}
