@@ -81,11 +81,24 @@ func (k *coreMaker) declaredCore(d model.DeclaredCore, i int) (model.Core, error
 		return c, &CoreError{d.State, "no counts within its ranges keep the conserved totals of the start"}
 	}
 	c.Start = start
+	if i >= 0 && !within(target, c.Low, c.High) {
+		k.m.warn("[core.%s] does not hold the resting state itself: a dwell starts at the nearest counts that it holds, %v", d.State, start)
+	}
 	c.Center = slices.Clone(target)
 	if i < 0 {
 		c.Center = floats(start)
 	}
 	return c, nil
+}
+
+// within tells whether the molecules, rounded, lie in the ranges.
+func within(molecules []float64, low, high []int64) bool {
+	for i, v := range molecules {
+		if r := math.Round(v); r < float64(low[i]) || r > float64(high[i]) {
+			return false
+		}
+	}
+	return true
 }
 
 // nearestIn gives the lattice point within the ranges nearest to the target: the

@@ -25,7 +25,12 @@ func newEllipsoid(center, cov []float64, radius float64) *ellipsoid {
 		for i := range m {
 			e.cov[i*m+i] += 0.25 / (radius * radius)
 		}
-		e.invert()
+		if !e.invert() { // beyond what numbers hold: a ball of half a molecule
+			e.cov, e.inverse = make([]float64, m*m), make([]float64, m*m)
+			for i := range m {
+				e.cov[i*m+i], e.inverse[i*m+i] = 0.25/(radius*radius), 4*radius*radius
+			}
+		}
 	}
 	return e
 }

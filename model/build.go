@@ -37,6 +37,9 @@ type DraftReaction struct {
 	Rate       *Node
 }
 
+// mostCopies keeps counts whole numbers that a float64 holds.
+const mostCopies = 1e12
+
 // Bind gives the network with the draft's constants replaced where set names
 // them, and copies by copies if it is positive. Unknown names, and values that
 // are negative or not finite, are errors.
@@ -51,6 +54,9 @@ func (d *Draft) Bind(copies float64, set map[string]float64) (*Network, error) {
 	}
 	if !(n.Copies > 0) || math.IsInf(n.Copies, 0) {
 		return nil, fmt.Errorf("copies = %v: must be a positive number", n.Copies)
+	}
+	if n.Copies > mostCopies {
+		return nil, fmt.Errorf("copies = %g: molecules are counted up to %g in one unit of amount", n.Copies, float64(mostCopies))
 	}
 	if err := n.setConstants(set); err != nil {
 		return nil, err

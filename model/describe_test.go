@@ -126,7 +126,7 @@ func TestBindErrors(t *testing.T) {
 		{-1, nil, "copies = -1"},
 		{math.NaN(), nil, "copies = NaN"},
 		{math.Inf(1), nil, "copies = +Inf"},
-		{1e16, nil, "the most that can be counted"},
+		{1e16, nil, "molecules are counted up to 1e+12"},
 		{0, map[string]float64{"kk": 1}, `no constant is called "kk": did you mean "k"?`},
 		{0, map[string]float64{"h": -1}, "h = -1"},
 		{0, map[string]float64{"h": math.NaN()}, "h = NaN"},

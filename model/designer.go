@@ -69,7 +69,11 @@ func (d *designer) top(e *tomlEntry) {
 	case "generation":
 		d.draft.Generation, _ = d.number(e, positive)
 	case "copies":
-		if v, ok := d.number(e, positive); ok {
+		v, ok := d.number(e, positive)
+		if ok && v > mostCopies {
+			d.errorf(e.value.at, "write fewer molecules in one unit of amount", "copies = %g is more than can be counted (%g)", v, float64(mostCopies))
+		}
+		if ok {
 			d.draft.Copies = v
 		}
 	case "species", "constants", "reaction", "core":

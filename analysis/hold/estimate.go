@@ -53,7 +53,7 @@ func (j *job) estimate(r *stateRuns) error {
 func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
 	row := DwellReport{
 		From: from, To: j.targetName(e.To), Route: Runs, Sampled: true,
-		StandardError: Value(e.StandardError), Mean: Value(e.Mean), Low: Value(e.Low), High: Value(e.High), Flips: int64(e.Flips), Exposure: Value(e.Exposure),
+		StandardError: Value(e.StandardError), Mean: Value(e.Mean), Low: Value(e.Low), High: Value(e.High), Flips: Value(e.Flips), Exposure: Value(e.Exposure),
 		PerGeneration: Value(e.PerGeneration.Value), PerGenerationLow: Value(e.PerGeneration.Low), PerGenerationHigh: Value(e.PerGeneration.High),
 	}
 	if e.Flips == 0 {
@@ -81,18 +81,17 @@ func (j *job) neverLeft(s int) {
 	if slices.ContainsFunc(j.rates, func(r records.Rate) bool { return r.From == s && r.Route == absorbing }) {
 		return // said already by the first route
 	}
-	from, inf := j.survey.Stable()[s].Name, Value(math.Inf(1))
+	from, inf, nan := j.survey.Stable()[s].Name, Value(math.Inf(1)), Value(math.NaN())
 	for t, to := range j.survey.Stable() {
 		if t == s {
 			continue
 		}
-		row := DwellReport{From: from, To: to.Name, Route: absorbing, Mean: inf, Low: inf, High: inf, Never: true, Note: "never returns"}
+		row := DwellReport{From: from, To: to.Name, Route: absorbing, Mean: inf, Low: inf, High: inf, Flips: nan, Exposure: nan, Never: true, Note: "never returns"}
 		if j.network.Generation > 0 {
 			for _, g := range holdGenerations() {
 				row.Holds = append(row.Holds, HoldChance{g, 1, 1, 1})
 			}
 		} else {
-			nan := Value(math.NaN())
 			row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = nan, nan, nan
 		}
 		j.add(row)

@@ -154,7 +154,7 @@ func TestPrecisionIsReached(t *testing.T) {
 	r := run(t, demo(t, "pair", 12), hold.Options{Seed: 2, Route: hold.Runs, Precision: 0.05})
 	for _, d := range r.Dwells {
 		if d.Flips < 1500 {
-			t.Errorf("%s → %s: %d flips for a precision of 0.05", d.From, d.To, d.Flips)
+			t.Errorf("%s → %s: %v flips for a precision of 0.05", d.From, d.To, d.Flips)
 		}
 	}
 }

@@ -87,7 +87,7 @@ func (j *job) addExact(s *lattice.Solution, from, to int, mean float64) {
 	b += rounding
 	row := DwellReport{
 		From: s.Names[from], To: j.recordName(to), Route: Lattice, Bound: Value(b), Mean: Value(mean), Low: Value(mean * (1 - b)), High: Value(mean * (1 + b)),
-		Exposure: Value(math.NaN()), PerGeneration: Value(math.NaN()), PerGenerationLow: Value(math.NaN()), PerGenerationHigh: Value(math.NaN()),
+		Flips: Value(math.NaN()), Exposure: Value(math.NaN()), PerGeneration: Value(math.NaN()), PerGenerationLow: Value(math.NaN()), PerGenerationHigh: Value(math.NaN()),
 	}
 	if math.IsInf(mean, 1) {
 		row.Never, row.Note = true, "never goes there"

@@ -2,7 +2,6 @@ package hold
 
 import (
 	"fmt"
-	"math"
 	"runtime"
 )
 
@@ -78,8 +77,8 @@ func (o Options) complete() (Options, error) {
 		return o, &OptionError{"runs", o.Runs, "from 1 to 2³¹"}
 	case o.Events < 0:
 		return o, &OptionError{"events", o.Events, "at least 1"}
-	case !(o.Until >= 0) || math.IsInf(o.Until, 0):
-		return o, &OptionError{"until", o.Until, "a finite time above 0"}
+	case !(o.Until >= 0 && o.Until <= 1e300):
+		return o, &OptionError{"until", o.Until, "a time above 0, at most 1e300"}
 	case o.Memory < 0:
 		return o, &OptionError{"memory", o.Memory, "a number of bytes above 0"}
 	case o.Threads < 0 || o.Threads > 4096:
@@ -94,6 +93,9 @@ func (o Options) complete() (Options, error) {
 	if o.Second != "" {
 		if err := checkRoute("second", o.Second); err != nil {
 			return o, err
+		}
+		if o.Second == o.Route && o.Route != Auto {
+			return o, &OptionError{"second", fmt.Sprintf("%q", o.Second), "another route than the first"}
 		}
 	}
 	o.sampled = o.Precision != 0 || o.Runs != 0 || o.Events != 0 || o.Until != 0

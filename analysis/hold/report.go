@@ -67,7 +67,7 @@ type DwellReport struct {
 	Mean     Value `json:"mean"`
 	Low      Value `json:"low"`
 	High     Value `json:"high"`
-	Flips    int64 `json:"flips"`
+	Flips    Value `json:"flips"`    // flips seen; NaN where the route sees none
 	Exposure Value `json:"exposure"` // total time watched in From
 	// PerGeneration is the expected number of flips in one generation; NaN if
 	// the design gives no generation.

@@ -53,7 +53,7 @@ func (j *job) takeRoutes(ctx context.Context) error {
 		second = other(first)
 	}
 	if second == first {
-		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first"}
+		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first, which is " + first + " (--route chooses it)"}
 	}
 	if err := j.take(ctx, second); err != nil {
 		return err
@@ -74,7 +74,7 @@ func (j *job) choose(ctx context.Context) (route, reason string, err error) {
 	switch o := j.options; {
 	case o.Route != Auto:
 		return o.Route, "as asked for", nil
-	case o.sampled:
+	case o.sampled && o.Second != Runs:
 		return Runs, "exact stochastic runs, since a precision, a number of runs or a budget was given", nil
 	}
 	e, err := j.problem().Estimate(ctx)
@@ -98,7 +98,7 @@ func why(err error) string {
 	case errors.As(err, &dimensions):
 		return fmt.Sprintf("the lattice serves three independent species at most, and this design has %d", dimensions.Dimensions)
 	case errors.As(err, &large):
-		return fmt.Sprintf("the lattice would need about %.1f GiB", float64(large.Estimate.Bytes)/(1<<30))
+		return fmt.Sprintf("the lattice would need about %.3g GiB or more", float64(large.Estimate.Bytes)/(1<<30))
 	}
 	return "the lattice cannot serve: " + err.Error()
 }

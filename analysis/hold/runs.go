@@ -8,6 +8,7 @@ import (
 	"strings"
 
 	"holdfast/analysis/dwell"
+	"holdfast/deterministic"
 	"holdfast/model"
 	"holdfast/ssa"
 )
@@ -193,6 +194,19 @@ func Explain(n *model.Network, err error) error {
 	case errors.As(err, &away):
 		return fmt.Errorf("counts run away: %s reached %d molecules at time %.4g %s, far beyond its resting states; is a loss missing, or a production without bound?",
 			n.Species[away.Species].Name, away.Counts[away.Species], away.Time, n.TimeUnit)
+	}
+	return err
+}
+
+// Advise adds to an error of a job on the design in file what to try next.
+func Advise(err error, file string) error {
+	var one *deterministic.OneStateError
+	var same *deterministic.IndistinctError
+	switch {
+	case errors.As(err, &one):
+		return fmt.Errorf("%w\n  'holdfast map %s --knob NAME=LOW:HIGH' shows where along a constant a second state is born", err, file)
+	case errors.As(err, &same):
+		return fmt.Errorf("%w (--copies)", err)
 	}
 	return err
 }

@@ -6,7 +6,7 @@ import (
 )
 
 func TestCompare(t *testing.T) {
-	sampled := func(mean, low, high, se Value, flips int64) DwellReport {
+	sampled := func(mean, low, high, se, flips Value) DwellReport {
 		return DwellReport{From: "low", To: "high", Route: Runs, Sampled: true, Mean: mean, Low: low, High: high, StandardError: se, Flips: flips}
 	}
 	exact := func(mean Value) DwellReport {

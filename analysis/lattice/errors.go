@@ -44,7 +44,7 @@ type DimensionError struct {
 
 // Error says what is wrong and, where something helps, what to do.
 func (e *DimensionError) Error() string {
-	return fmt.Sprintf("the lattice route serves one to three independent species; this design has %d (%v): use exact runs or staged runs",
+	return fmt.Sprintf("the lattice route serves one to three independent species; this design has %d (%v): make exact runs instead",
 		e.Dimensions, e.Species)
 }
 
@@ -64,7 +64,7 @@ func (e *TooLargeError) Error() string {
 		some = "at least "
 	}
 	return fmt.Sprintf("the lattice has %s%d states in %v and needs %s%.1f GiB and about %.0f s; %.1f GiB are allowed: "+
-		"allow more memory, ask for a larger truncation error, lower the copies, or use exact runs or staged runs",
+		"allow more memory, lower the copies, or make exact runs instead",
 		some, e.Estimate.States, e.Estimate.Box, some, gib(e.Estimate.Bytes), e.Estimate.Seconds, gib(e.Allowed))
 }
 

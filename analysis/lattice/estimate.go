@@ -59,6 +59,9 @@ func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 		return nil, p.tooMany(int(min(b.volume(), math.MaxInt64/bytesPerNode/8)), b)
 	}
 	limit := int(min(float64(p.memory())/bytesPerNode, math.MaxInt32-1))
+	if n := p.fullStates(b); n > 64*float64(limit) {
+		return nil, p.tooMany(int(n/64), b)
+	}
 	c, err := explore(ctx, p.Network, b, p.starts(), limit)
 	if errors.Is(err, errTooMany) {
 		return nil, p.tooMany(c.nodes(), b)
@@ -79,6 +82,24 @@ func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 		return nil, &TooLargeError{Estimate: e, Allowed: p.memory()}
 	}
 	return l, ctx.Err()
+}
+
+// fullStates is the number of states in the box where every species moves by itself:
+// but for steps larger than 1 each point is then reached. It is 0 where conserved
+// totals tie species together, or more than three move, and the states must be counted.
+func (p *Problem) fullStates(b Box) float64 {
+	long := make([]bool, len(b.Low))
+	count := 0
+	for s := range long {
+		if long[s] = b.High[s]-b.Low[s] >= few; long[s] {
+			count++
+		}
+	}
+	ms, phases := moves(p.Network)
+	if count > 3 || dimensions(ms, phases, b, long) < count {
+		return 0
+	}
+	return b.volume()
 }
 
 // tooMany refuses a lattice whose states alone do not fit.

@@ -8,6 +8,7 @@ import (
 	"math"
 	"slices"
 
+	"holdfast/analysis/hold"
 	"holdfast/deterministic"
 	"holdfast/model"
 	"holdfast/ssa"
@@ -68,8 +69,8 @@ type Paths struct {
 	samples int64 // of one run
 }
 
-// New plans paths through the network that survey describes. Errors state the
-// option that is out of its range.
+// New plans paths through the network that survey describes. Errors are a
+// *hold.OptionError.
 func New(network *model.Network, survey *deterministic.Map, o Options) (*Paths, error) {
 	p := &Paths{Network: network, Survey: survey, Until: o.Until, Every: o.Every, Runs: int(max(o.Runs, 1)), options: o}
 	if p.Until == 0 {
@@ -80,13 +81,13 @@ func New(network *model.Network, survey *deterministic.Map, o Options) (*Paths, 
 	}
 	switch {
 	case !(p.Until > 0) || math.IsInf(p.Until, 0):
-		return nil, fmt.Errorf("until is %v; it must be a finite time above 0", p.Until)
+		return nil, &hold.OptionError{Name: "until", Value: p.Until, Allowed: "a finite time above 0"}
 	case !(p.Every > 0) || p.Every > p.Until:
-		return nil, fmt.Errorf("every is %v; it must be above 0 and at most until (%v)", p.Every, p.Until)
+		return nil, &hold.OptionError{Name: "every", Value: p.Every, Allowed: fmt.Sprintf("above 0 and at most until (%v)", p.Until)}
 	case p.Until/p.Every > mostSamples:
-		return nil, fmt.Errorf("%.3g samples a run are more than can be kept; sample less often", p.Until/p.Every)
+		return nil, &hold.OptionError{Name: "every", Value: p.Every, Allowed: fmt.Sprintf("longer: %.3g samples a run are more than can be kept", p.Until/p.Every)}
 	case o.Runs < 0 || o.Runs > 1<<31:
-		return nil, fmt.Errorf("runs is %d; it must be from 1 to 2³¹", o.Runs)
+		return nil, &hold.OptionError{Name: "runs", Value: o.Runs, Allowed: "from 1 to 2³¹"}
 	}
 	p.samples = int64(math.Floor(p.Until/p.Every*(1+1e-12))) + 1
 	return p, p.setStart(o.From)
@@ -120,7 +121,7 @@ func (p *Paths) setStart(from string) error {
 		}
 		names += " " + s.Name
 	}
-	return fmt.Errorf("there is no state %q; the states are%s", from, names)
+	return &hold.OptionError{Name: "from", Value: fmt.Sprintf("%q", from), Allowed: "the name of a state:" + names}
 }
 
 // Make makes the paths and gives every sample to row, run by run and in order of

@@ -12,6 +12,7 @@ import (
 
 	"github.com/spf13/pflag"
 
+	"holdfast/analysis/hold"
 	"holdfast/internal/version"
 )
 
@@ -55,10 +56,11 @@ func runMain() int {
 	t := terminal{os.Stdout, os.Stderr}
 	err := dispatch(ctx, t, os.Args[1:])
 	var m misuse
+	var option *hold.OptionError
 	switch {
 	case err == nil:
 		return exitDone
-	case errors.As(err, &m):
+	case errors.As(err, &m), errors.As(err, &option):
 		fmt.Fprintln(t.err, "holdfast:", err)
 		return exitMisuse
 	default:

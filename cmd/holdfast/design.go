@@ -24,5 +24,9 @@ func (d *designChoice) load(path string) (*model.Network, error) {
 	if err != nil {
 		return nil, err
 	}
-	return draft.Bind(d.copies, d.set)
+	network, err := draft.Bind(d.copies, d.set)
+	if err != nil && (d.copies != 0 || len(d.set) > 0) {
+		return nil, misusef("%v", err)
+	}
+	return network, err
 }

@@ -65,7 +65,7 @@ func runHold(ctx context.Context, t terminal, path string, design *designChoice,
 	report, err := hold.Run(ctx, network, o)
 	bar.close()
 	if err != nil {
-		return err
+		return hold.Advise(err, path)
 	}
 	if asJSON {
 		err = writeJSON(t.out, report)
@@ -102,7 +102,7 @@ func writeHold(w io.Writer, r *hold.Report) error {
 		return err
 	}
 	if t := holdsTable(r); len(t.rows) > 1 {
-		fmt.Fprintf(w, "\nChance of holding: [95 %% interval], or [what the bounds leave open]\n")
+		fmt.Fprintf(w, "\nChance of holding: [95 %% interval], or [bounds] where they differ in the digits shown\n")
 		if err := t.write(w); err != nil {
 			return err
 		}
@@ -226,7 +226,7 @@ func flips(d hold.DwellReport) string {
 	if !d.Sampled {
 		return "–"
 	}
-	return fmt.Sprint(d.Flips)
+	return value(d.Flips)
 }
 
 func interval(v, low, high hold.Value) string {
@@ -234,8 +234,9 @@ func interval(v, low, high hold.Value) string {
 }
 
 func chanceInterval(h hold.HoldChance) string {
-	if h.Low == h.High {
-		return chance(float64(h.Chance))
+	c, low, high := chance(float64(h.Chance)), chance(float64(h.Low)), chance(float64(h.High))
+	if low == c && high == c {
+		return c // the limits agree in every digit shown
 	}
-	return fmt.Sprintf("%s [%s, %s]", chance(float64(h.Chance)), chance(float64(h.Low)), chance(float64(h.High)))
+	return fmt.Sprintf("%s [%s, %s]", c, low, high)
 }

@@ -102,7 +102,7 @@ func writeStates(w io.Writer, r *survey.Report) error {
 	if err := eigenTable(r).write(w); err != nil {
 		return err
 	}
-	fmt.Fprintf(w, "\nCores, molecules\n")
+	fmt.Fprintf(w, "\nCores, molecules: an ellipsoid of linear noise within these counts, or, where declared, these counts\n")
 	if err := coreTable(r).write(w); err != nil {
 		return err
 	}
