@@ -3,8 +3,9 @@ package deterministic
 import "slices"
 
 // nearestWithin gives the point of ranges and totals, both in molecules, nearest
-// to the target, by Dykstra's alternating projections (Boyle and Dykstra, Lecture
-// Notes in Statistics 37 (1986) 28); false where they have no point in common.
+// to the target, by Dykstra's alternating projections (Boyle and Dykstra, in: Advances
+// in Order Restricted Statistical Inference, Springer 1986, p. 28); false where they
+// have no point in common.
 func (c *class) nearestWithin(s *system, target []float64, low, high []int64) ([]float64, bool) {
 	x := slices.Clone(target)
 	owed := make([]float64, c.n)
