@@ -44,6 +44,27 @@ func latch() sde.Plan {
 
 func BenchmarkLatch(b *testing.B) { speed(b, latch()) }
 
+// BenchmarkTwoGenes has two laws with whole powers.
+func BenchmarkTwoGenes(b *testing.B) {
+	speed(b, sde.Plan{System: sde.Chemical(zoo.SymmetricRepression(6, 100)), From: -1, Threads: 1, Step: 0.01})
+}
+
+// BenchmarkDimers is 16 reactions in 8 directions on eight species, all in conserved
+// totals or near 0.
+func BenchmarkDimers(b *testing.B) {
+	speed(b, sde.Plan{System: sde.Chemical(zoo.DimerSwitch()), From: -1, Threads: 1, Step: 0.001})
+}
+
+// BenchmarkPower has a law with a power that is not whole.
+func BenchmarkPower(b *testing.B) {
+	speed(b, sde.Plan{System: sde.Chemical(zoo.SelfActivator(3, 1, 1, 2.5, 100)), From: -1, Threads: 1, Step: 0.01})
+}
+
+// BenchmarkOwn is a system of one's own, evaluated lane by lane.
+func BenchmarkOwn(b *testing.B) {
+	speed(b, sde.Plan{System: doubleWell{0.1}, Start: []float64{-1}, From: -1, Threads: 1, Step: 0.01})
+}
+
 // BenchmarkThreads is the latch on one goroutine and on two, over all steps.
 func BenchmarkThreads(b *testing.B) {
 	for _, n := range []int{1, 2} {

@@ -116,8 +116,8 @@ func TestBadPlans(t *testing.T) {
 	}
 }
 
-// A path whose next step is not finite is stopped before it, counted, and no part of a mean:
-// √(−x) has no value above 0, so every path of it stops at once or when it gets there.
+// A path whose next step is not finite is stopped before it and counted: √(1−x) has no
+// value above 1, so a path stops when it gets there.
 func TestNotFinite(t *testing.T) {
 	root := line{linear(-0.1), func(x float64) float64 { return math.Sqrt(1 - x) }}
 	p := sde.Plan{System: root, Start: []float64{0}, From: -1, Runs: 200, Seed: 3, Step: 0.1, Until: 5, Lanes: 7}

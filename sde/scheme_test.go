@@ -78,7 +78,7 @@ func varies(t *testing.T, what string, x []float64, want float64) {
 // the moments of products of independent factors; the setting is that of Higham, SIAM
 // Review 43 (2001) 525). The error has so long a tail that its square could not be
 // averaged; so the runs have the noise Z + tilt·√Δ, by a drift of 2 + tilt, and
-// are weighed with its likelihood (Girsanov). 4000 runs a step and tilt.
+// are weighed with its likelihood (Girsanov). 1500 runs a step and tilt.
 func TestGeometric(t *testing.T) {
 	rms := []float64{0.394691, 0.576552, 0.862220, 1.329027, 2.101790}
 	weak := []float64{0.0287325, 0.0572055, 0.1133863, 0.2227799, 0.4303893}
@@ -92,7 +92,7 @@ func TestGeometric(t *testing.T) {
 // geometricErrors gives the weighed f of exact minus scheme at the end of each run.
 func geometricErrors(t *testing.T, step, tilt float64, point uint64, f func(float64) float64) []float64 {
 	t.Helper()
-	const runs = 4000
+	const runs = 1500
 	var times []float64
 	for k := range int(1/step) + 1 {
 		times = append(times, float64(k)*step)
@@ -114,12 +114,12 @@ func geometricErrors(t *testing.T, step, tilt float64, point uint64, f func(floa
 
 // The scheme of the Ornstein–Uhlenbeck process dX = −kX dt + σ dW is an
 // autoregression, X' = (1−kΔ)X + σ√Δ Z; its stationary variance is
-// σ²/(2k)/(1−kΔ/2), exactly (algebra). 20,000 runs a step, to (1−kΔ)^2N < 1e-12.
+// σ²/(2k)/(1−kΔ/2), exactly (algebra). 8000 runs a step, to (1−kΔ)^2N < 1e-12.
 func TestOrnsteinUhlenbeckVariance(t *testing.T) {
 	const k, sigma = 2, 3
 	for _, step := range []float64{0.4, 0.2, 0.05, 0.0125} {
 		x := ends(t, sde.Plan{
-			System: line{linear(-k), constant(sigma)}, Start: []float64{0}, Step: step, Until: 8, Runs: 20_000, Seed: 6,
+			System: line{linear(-k), constant(sigma)}, Start: []float64{0}, Step: step, Until: 8, Runs: 8000, Seed: 6,
 		}, 0)
 		varies(t, "Ornstein–Uhlenbeck", x, sigma*sigma/(2.0*k)/(1-k*step/2))
 	}
