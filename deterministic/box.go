@@ -3,6 +3,7 @@ package deterministic
 import (
 	"fmt"
 	"math"
+	"slices"
 )
 
 // Basis says why no resting state has more of a species than the box's upper end.
@@ -98,12 +99,7 @@ func (b *box) tighten(s *system, c *class) bool {
 }
 
 func reads(list []int, i int) bool {
-	for _, k := range list {
-		if k == i {
-			return true
-		}
-	}
-	return false
+	return slices.Contains(list, i)
 }
 
 func (b *box) intervals() []span {

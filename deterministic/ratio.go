@@ -206,11 +206,12 @@ func treeKey(n *model.Node) string {
 	case model.OpSpecies:
 		return "x" + strconv.Itoa(n.Index)
 	}
-	key := strconv.Itoa(int(n.Op)) + "("
+	var key strings.Builder
+	key.WriteString(strconv.Itoa(int(n.Op)) + "(")
 	for _, a := range n.Args {
-		key += treeKey(a) + ","
+		key.WriteString(treeKey(a) + ",")
 	}
-	return key + ")"
+	return key.String() + ")"
 }
 
 // collect adds up the terms that have the same product.

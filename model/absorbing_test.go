@@ -3,6 +3,7 @@ package model_test
 import (
 	"fmt"
 	"math/rand/v2"
+	"slices"
 	"strings"
 	"testing"
 
@@ -122,12 +123,7 @@ func TestAbsorbingHolds(t *testing.T) {
 }
 
 func contains(list []int, v int) bool {
-	for _, w := range list {
-		if v == w {
-			return true
-		}
-	}
-	return false
+	return slices.Contains(list, v)
 }
 
 // TestAbsorbingLarge checks that the search ends on a large network, and still

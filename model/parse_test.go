@@ -236,14 +236,14 @@ func TestGoodDesign(t *testing.T) {
 lose x: x → ∅; k/2*x; scale 10; 10 at the start
 lose y: 2 y + (y) → ∅; 0.5*y^3; scale 10; 34.2 at the start
 `
-	got := ""
+	var got strings.Builder
 	for r, re := range n.Reactions {
-		got += fmt.Sprintf("%s: %s; %s; scale %g; %.4g at the start\n", re.Name, n.Equation(r), n.LawText(r), re.Scale, n.Propensity(r, n.StartCounts()))
+		got.WriteString(fmt.Sprintf("%s: %s; %s; scale %g; %.4g at the start\n", re.Name, n.Equation(r), n.LawText(r), re.Scale, n.Propensity(r, n.StartCounts())))
 	}
 	// make: Ω k g x²/(h²+x²) = 10·2·1·1/(2.25+1) = 6.154; lose y: 0.5 Ω (20·19·18)/Ω³ = 34.2.
 	want = strings.Replace(want, "1 at the start", "6.154 at the start", 1)
-	if got != want {
-		t.Errorf("got\n%swant\n%s", got, want)
+	if got.String() != want {
+		t.Errorf("got\n%swant\n%s", got.String(), want)
 	}
 	// make y in bursts of mean 4: 4 Ω/Ω a firing; lose y: −2; g is read only.
 	if a, b, c := n.AmountChange(0, 1), n.AmountChange(2, 1), n.AmountChange(0, 2); a != 4 || b != -2 || c != 0 {

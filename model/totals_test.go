@@ -65,14 +65,15 @@ func TestConservedKnown(t *testing.T) {
 // parse makes a network of a list of species and the effects of reactions.
 func parse(t *testing.T, species string, effects ...string) *model.Network {
 	t.Helper()
-	text := "time = \"s\"\n[species]\n" + species + "\n"
+	var text strings.Builder
+	text.WriteString("time = \"s\"\n[species]\n" + species + "\n")
 	for i, e := range effects {
-		text += fmt.Sprintf("[[reaction]]\nname = \"r%d\"\n%s\n", i+1, e)
+		text.WriteString(fmt.Sprintf("[[reaction]]\nname = \"r%d\"\n%s\n", i+1, e))
 		if !strings.Contains(e, "rate =") && !strings.Contains(e, "mass_action") {
-			text += "mass_action = 1\n"
+			text.WriteString("mass_action = 1\n")
 		}
 	}
-	d, err := model.Parse("t.toml", []byte(text))
+	d, err := model.Parse("t.toml", []byte(text.String()))
 	if err != nil {
 		t.Fatal(err)
 	}

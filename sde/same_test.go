@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"reflect"
+	"strings"
 	"testing"
 
 	"holdfast/internal/zoo"
@@ -56,16 +57,16 @@ func sampled(t *testing.T, p sde.Plan, first, runs int) ([]sde.Outcome, []float6
 // Outcomes as they were when the engine was first written: a seed means the same
 // runs in every later version.
 func TestFrozen(t *testing.T) {
-	got := ""
+	var got strings.Builder
 	for _, net := range []*model.Network{
 		zoo.Latch(20), zoo.Schlogl(), zoo.DimerSwitch(), zoo.BurstExpression(1, 20, 0.1), zoo.SymmetricRepression(3, 20),
 	} {
 		p := sde.Plan{System: sde.Chemical(net), From: -1, Runs: 1, Seed: 42, Point: 7, Group: 1, FirstReplicate: 5, MaxSteps: 1000, Step: 0.001}
 		o := run(t, p).Outcomes[0]
-		got += fmt.Sprintf("%s: %.12g\n", net.Title, o.State)
+		got.WriteString(fmt.Sprintf("%s: %.12g\n", net.Title, o.State))
 	}
-	if got != frozen {
-		t.Errorf("outcomes have changed:\n%s", got)
+	if got.String() != frozen {
+		t.Errorf("outcomes have changed:\n%s", got.String())
 	}
 }
 

@@ -2,6 +2,7 @@ package ssa_test
 
 import (
 	"fmt"
+	"strings"
 	"testing"
 
 	"holdfast/internal/zoo"
@@ -11,7 +12,7 @@ import (
 // Outcomes as they were when each method was first written: a seed means the same
 // runs in every later version.
 func TestFrozen(t *testing.T) {
-	got := ""
+	var got strings.Builder
 	for _, c := range []ssa.Plan{
 		{Network: zoo.Latch(20), Method: ssa.Dense},
 		{Network: zoo.Schlogl(), Method: ssa.Dense},
@@ -28,10 +29,10 @@ func TestFrozen(t *testing.T) {
 		for i, n := range o.Counts {
 			sum += int64(i+1) * n
 		}
-		got += fmt.Sprintf("%s, %v: %d at %.17g\n", c.Network.Title, c.Method, sum, o.Time)
+		got.WriteString(fmt.Sprintf("%s, %v: %d at %.17g\n", c.Network.Title, c.Method, sum, o.Time))
 	}
-	if got != frozen {
-		t.Errorf("outcomes have changed:\n%s", got)
+	if got.String() != frozen {
+		t.Errorf("outcomes have changed:\n%s", got.String())
 	}
 }
 

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"holdfast/model"
 )
@@ -13,14 +14,14 @@ type Box struct{ Low, High []int64 }
 
 // String gives the ranges, species by species.
 func (b Box) String() string {
-	s := ""
+	var s strings.Builder
 	for i := range b.Low {
 		if i > 0 {
-			s += " × "
+			s.WriteString(" × ")
 		}
-		s += fmt.Sprintf("[%d, %d]", b.Low[i], b.High[i])
+		s.WriteString(fmt.Sprintf("[%d, %d]", b.Low[i], b.High[i]))
 	}
-	return s
+	return s.String()
 }
 
 func (b Box) clone() Box { return Box{slices.Clone(b.Low), slices.Clone(b.High)} }

@@ -3,6 +3,7 @@ package lattice
 import (
 	"errors"
 	"fmt"
+	"strings"
 )
 
 // ErrOneState is what Solve returns for fewer than two cores: there is nothing to
@@ -25,14 +26,14 @@ func (e *RateError) Error() string {
 }
 
 func place(species []string, counts []int64) string {
-	s := ""
+	var s strings.Builder
 	for i, k := range counts {
 		if i > 0 {
-			s += ", "
+			s.WriteString(", ")
 		}
-		s += fmt.Sprintf("%s = %d", species[i], k)
+		s.WriteString(fmt.Sprintf("%s = %d", species[i], k))
 	}
-	return s
+	return s.String()
 }
 
 // A DimensionError tells that the network has more independent species with long

@@ -74,7 +74,7 @@ func solve(t *testing.T, p Problem) *Solution {
 // changes from up to down, below upper.
 func restPoints(n *model.Network, upper int64) []int64 {
 	var out []int64
-	for k := int64(0); k < upper; k++ {
+	for k := range upper {
 		up, down := birthDeath(n, k)
 		up1, down1 := birthDeath(n, k+1)
 		if up >= down && up1 < down1 {

@@ -206,12 +206,13 @@ func TestNoSwitchToday(t *testing.T) {
 // frequency √3 (the eigenvalues are −1 − 2 ω with ω³ = 1; algebra). There today has no
 // stable state.
 func TestNoStateToday(t *testing.T) {
-	text := "time = \"min\"\ncopies = 100\n[species]\na = { start = 1 }\nb = { start = 0.5 }\nc = { start = 0.1 }\n[constants]\nalpha = 20\n"
+	var text strings.Builder
+	text.WriteString("time = \"min\"\ncopies = 100\n[species]\na = { start = 1 }\nb = { start = 0.5 }\nc = { start = 0.1 }\n[constants]\nalpha = 20\n")
 	for _, p := range []string{"ac", "ba", "cb"} {
-		text += "[[reaction]]\nname = \"make " + p[:1] + "\"\nmakes = { " + p[:1] + " = 1 }\nrate = \"alpha*hill_fall(" + p[1:] + ", 1, 4)\"\n" +
-			"[[reaction]]\nname = \"lose " + p[:1] + "\"\nuses = { " + p[:1] + " = 1 }\nmass_action = 1\n"
+		text.WriteString("[[reaction]]\nname = \"make " + p[:1] + "\"\nmakes = { " + p[:1] + " = 1 }\nrate = \"alpha*hill_fall(" + p[1:] + ", 1, 4)\"\n" +
+			"[[reaction]]\nname = \"lose " + p[:1] + "\"\nuses = { " + p[:1] + " = 1 }\nmass_action = 1\n")
 	}
-	d, err := model.Parse("ring.toml", []byte(text))
+	d, err := model.Parse("ring.toml", []byte(text.String()))
 	if err != nil {
 		t.Fatal(err)
 	}

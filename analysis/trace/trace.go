@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"holdfast/analysis/hold"
 	"holdfast/deterministic"
@@ -113,15 +114,15 @@ func (p *Paths) setStart(from string) error {
 		p.start = p.Network.StartCounts()
 		return nil
 	}
-	names := ""
+	var names strings.Builder
 	for i, s := range p.Survey.Stable() {
 		if s.Name == from {
 			p.start = p.Survey.Cores[i].Start
 			return nil
 		}
-		names += " " + s.Name
+		names.WriteString(" " + s.Name)
 	}
-	return &hold.OptionError{Name: "from", Value: fmt.Sprintf("%q", from), Allowed: "the name of a state:" + names}
+	return &hold.OptionError{Name: "from", Value: fmt.Sprintf("%q", from), Allowed: "the name of a state:" + names.String()}
 }
 
 // Make makes the paths and gives every sample to row, run by run and in order of

@@ -39,7 +39,7 @@ func (d *design) x(name string) *model.Node { return model.SpeciesRef(d.index(na
 // terms reads "a b b" as one a and two b.
 func (d *design) terms(side string) []model.Term {
 	count := map[int]int{}
-	for _, name := range strings.Fields(side) {
+	for name := range strings.FieldsSeq(side) {
 		count[d.index(name)]++
 	}
 	var out []model.Term

@@ -115,15 +115,16 @@ mass_action = 1
 
 // Beyond MostFree free amounts no proof is tried, and that is said.
 func TestManyAmounts(t *testing.T) {
-	text := "[species]\n"
-	for _, s := range strings.Split("abcdefg", "") {
-		text += s + " = { start = 1 }\n"
+	var text strings.Builder
+	text.WriteString("[species]\n")
+	for s := range strings.SplitSeq("abcdefg", "") {
+		text.WriteString(s + " = { start = 1 }\n")
 	}
-	for _, s := range strings.Split("abcdefg", "") {
-		text += "[[reaction]]\nname = \"make " + s + "\"\nmakes = { " + s + " = 1 }\nmass_action = 1\n"
-		text += "[[reaction]]\nname = \"lose " + s + "\"\nuses = { " + s + " = 1 }\nmass_action = 1\n"
+	for s := range strings.SplitSeq("abcdefg", "") {
+		text.WriteString("[[reaction]]\nname = \"make " + s + "\"\nmakes = { " + s + " = 1 }\nmass_action = 1\n")
+		text.WriteString("[[reaction]]\nname = \"lose " + s + "\"\nuses = { " + s + " = 1 }\nmass_action = 1\n")
 	}
-	l, _ := States(t.Context(), network(t, text))
+	l, _ := States(t.Context(), network(t, text.String()))
 	if l == nil || l.Complete() || !strings.HasPrefix(l.String(), "multi-start, not proved: 7 amounts are free") {
 		t.Errorf("%v", l)
 	}
