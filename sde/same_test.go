@@ -19,7 +19,7 @@ func TestSameBytes(t *testing.T) {
 		latch(),
 		{System: sde.Chemical(zoo.DimerSwitch()), From: -1, MaxSteps: 1500},
 		{System: doubleWell{0.3}, Start: []float64{-1}, From: -1, Cores: []model.Core{zoo.Interval("right", 1, 5, 1)}},
-		{System: sde.Chemical(zoo.SymmetricRepression(3, 20)), From: -1, Until: 50},
+		{System: sde.Chemical(zoo.SymmetricRepression(3, 20)), From: -1, Until: 15},
 	}
 	for i, p := range plans {
 		p.Runs, p.Seed, p.Point, p.Group, p.Step = 60, 21, 3, 1, 0

@@ -114,12 +114,12 @@ func geometricErrors(t *testing.T, step, tilt float64, point uint64, f func(floa
 
 // The scheme of the Ornstein–Uhlenbeck process dX = −kX dt + σ dW is an
 // autoregression, X' = (1−kΔ)X + σ√Δ Z; its stationary variance is
-// σ²/(2k)/(1−kΔ/2), exactly (algebra). 8000 runs a step, to (1−kΔ)^2N < 1e-12.
+// σ²/(2k)/(1−kΔ/2), exactly (algebra). 5000 runs a step, to (1−kΔ)^2N < 1e-12.
 func TestOrnsteinUhlenbeckVariance(t *testing.T) {
 	const k, sigma = 2, 3
 	for _, step := range []float64{0.4, 0.2, 0.05, 0.0125} {
 		x := ends(t, sde.Plan{
-			System: line{linear(-k), constant(sigma)}, Start: []float64{0}, Step: step, Until: 8, Runs: 8000, Seed: 6,
+			System: line{linear(-k), constant(sigma)}, Start: []float64{0}, Step: step, Until: 8, Runs: 5000, Seed: 6,
 		}, 0)
 		varies(t, "Ornstein–Uhlenbeck", x, sigma*sigma/(2.0*k)/(1-k*step/2))
 	}

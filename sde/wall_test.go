@@ -53,7 +53,7 @@ func reflectedMean(in, out float64) float64 {
 }
 
 // What the wall at 0 does to immigration–death with mean 2: runs are held against the
-// stationary mean of the scheme at their step, n = 10,000; and that tends to the mean
+// stationary mean of the scheme at their step, n = 8000; and that tends to the mean
 // of the reflected equation as the step does to 0, at which the exact mean is missed still.
 func TestWall(t *testing.T) {
 	s := sde.Chemical(zoo.ImmigrationDeath(2, 1))
@@ -61,7 +61,7 @@ func TestWall(t *testing.T) {
 	before := math.Inf(1)
 	for _, step := range []float64{0.4, 0.2, 0.1, 0.05} {
 		mean := wallMean(2, 1, step)
-		near(t, "mean at the wall", ends(t, sde.Plan{System: s, Start: []float64{2}, Step: step, Until: 12, Runs: 10_000, Seed: 16}, 0), identity, mean)
+		near(t, "mean at the wall", ends(t, sde.Plan{System: s, Start: []float64{2}, Step: step, Until: 8, Runs: 8000, Seed: 16}, 0), identity, mean)
 		t.Logf("step %v: scheme %.6f, equation %.6f", step, mean, limit)
 		if math.Abs(mean-limit) > before*0.6 {
 			t.Errorf("step %v: the scheme's mean is %v, that without a step %v: twice the step was %v off", step, mean, limit, before)
