@@ -40,10 +40,14 @@ func (j *job) estimate(r *stateRuns) error {
 	for _, w := range summary.Warnings {
 		j.warn("%s: %s", from, w)
 	}
-	if len(summary.To) > 1 {
+	several := len(summary.To) > 1
+	if several {
 		j.addRow(from, &summary, summary.Any)
 	}
 	for _, e := range summary.To {
+		if several {
+			e.Hold = nil // the chance of holding is that of the state, not of a pair
+		}
 		j.addRow(from, &summary, e)
 	}
 	j.checkPrecision(from, r, summary.Any)
@@ -60,7 +64,9 @@ func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
 		row.Mean, row.Note = Value(math.NaN()), "no flip seen: a lower limit only"
 	}
 	for _, h := range e.Hold {
-		row.Holds = append(row.Holds, HoldChance{h.Generations, Value(h.Value), Value(h.Low), Value(h.High)})
+		row.Holds = append(row.Holds, newHoldChance(h.Generations, 1-h.Value, 1-h.Low, 1-h.High))
+		last := &row.Holds[len(row.Holds)-1]
+		last.Chance, last.Low, last.High = Value(h.Value), Value(h.Low), Value(h.High)
 	}
 	j.add(row)
 	j.rates = append(j.rates, rateOf(summary, e))
@@ -89,7 +95,7 @@ func (j *job) neverLeft(s int) {
 		row := DwellReport{From: from, To: to.Name, Route: absorbing, Mean: inf, Low: inf, High: inf, Flips: nan, Exposure: nan, Never: true, Note: "never returns"}
 		if j.network.Generation > 0 {
 			for _, g := range holdGenerations() {
-				row.Holds = append(row.Holds, HoldChance{g, 1, 1, 1})
+				row.Holds = append(row.Holds, newHoldChance(g, 0, 0, 0))
 			}
 		} else {
 			row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = nan, nan, nan

@@ -44,6 +44,9 @@ func (j *job) byLattice(ctx context.Context) error {
 	for a := range s.Weight {
 		j.report.Lattice.Weights = append(j.report.Lattice.Weights, Value(s.Weight[a]))
 	}
+	for a := range s.Escape {
+		j.report.Lattice.Escape = append(j.report.Lattice.Escape, StateRate{s.Names[a], Value(s.Escape[a])})
+	}
 	return j.recordLattice(s)
 }
 
@@ -60,16 +63,17 @@ func (j *job) addLattice(s *lattice.Solution, from int) {
 		}
 	}
 	lost := s.Lost[from] > 0
-	if targets > 1 || lost {
-		j.addExact(s, from, records.Any, s.Mean[from])
+	several := targets > 1 || lost
+	if several {
+		j.addExact(s, from, records.Any, s.Mean[from], false)
 	}
 	for to := range s.Names {
 		if to != from {
-			j.addExact(s, from, to, s.Pair[from][to])
+			j.addExact(s, from, to, s.Pair[from][to], !several && s.End[from][to] > 0)
 		}
 	}
 	if lost {
-		j.addExact(s, from, records.Elsewhere, s.Mean[from]/s.Lost[from])
+		j.addExact(s, from, records.Elsewhere, s.Mean[from]/s.Lost[from], false)
 	}
 }
 
@@ -78,8 +82,10 @@ func (j *job) addLattice(s *lattice.Solution, from int) {
 // this against extended precision.
 const rounding = 1e-9
 
-// addExact adds one row; mean is +Inf for a pair that does not occur.
-func (j *job) addExact(s *lattice.Solution, from, to int, mean float64) {
+// addExact adds one row; mean is +Inf for a pair that does not occur. The chance of
+// holding is that of the state, so it stands with leaving for any other or, where
+// there is one only, with that.
+func (j *job) addExact(s *lattice.Solution, from, to int, mean float64, only bool) {
 	b := s.Bound[from]
 	if to >= 0 {
 		b = s.PairBound[from][to]
@@ -99,31 +105,46 @@ func (j *job) addExact(s *lattice.Solution, from, to int, mean float64) {
 	if g := j.network.Generation; g > 0 {
 		row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = Value(g/mean), Value(g/mean*(1-b)), Value(g/mean*(1+b))
 		rate.PerGeneration = records.Range{Value: g / mean, Low: g / mean * (1 - b), High: g / mean * (1 + b)}
-		row.Holds = latticeHolds(s, from, g, s.Mean[from]/mean, b)
+		if to == records.Any || only {
+			row.Holds = latticeHolds(s, from, g, b)
+		}
 	}
-	for _, h := range row.Holds {
-		rate.Hold = append(rate.Hold, records.HoldChance{
-			Generations: h.Generations, Range: records.Range{Value: float64(h.Chance), Low: float64(h.Low), High: float64(h.High)}, Source: "constant rate",
-		})
-	}
+	rate.Hold = holdRecords(row.Holds, "constant rate")
 	j.rates = append(j.rates, rate)
 	j.add(row)
 }
 
-// latticeHolds gives the chances of holding; share is that of the flips that count.
-// Once the start is forgotten a dwell still lasts with the chance
-// persistence·exp(−escape·t). The limits span the bound on the rate and what may be left
-// of the start, which falls off at the rate at which it is forgotten.
-func latticeHolds(s *lattice.Solution, from int, generation, share, bound float64) []HoldChance {
+// weightRounding bounds the rounding error of a state's persistence; nearer to 1 than
+// that it counts as 1.
+const weightRounding = 1e-12
+
+// latticeHolds gives the chances of holding. Once the start is forgotten a dwell still
+// lasts with the chance persistence·exp(−escape·t). The limits span the bounds on rate
+// and persistence, and what may be left of the start, which falls off at the rate at
+// which it is forgotten. Chances near 1 are carried by what they lack.
+func latticeHolds(s *lattice.Solution, from int, generation, bound float64) []HoldChance {
 	var out []HoldChance
-	c, escape := s.Persistence[from], s.Escape[from]*share
+	c, escape := s.Persistence[from], s.Escape[from]
+	if math.Abs(c-1) < weightRounding {
+		c = 1
+	}
 	for _, n := range holdGenerations() {
 		t := n * generation
-		left := math.Abs(c-1) * math.Exp(-s.Forgetting[from]*t)
-		chance := func(rate, left float64) Value { return Value(math.Max(0, math.Min(c*math.Exp(-rate*t)+left, 1))) }
-		out = append(out, HoldChance{n, chance(escape, 0), chance(escape*(1+bound), -left), chance(escape*(1-bound), left)})
+		left := math.Abs(c-1)*math.Exp(-s.Forgetting[from]*t) + weightRounding*math.Exp(-escape*t)
+		loss := func(rate, more float64) float64 {
+			return math.Max(0, math.Min(-math.Expm1(math.Log(c)-rate*t)-more, 1))
+		}
+		out = append(out, newHoldChance(n, loss(escape, 0), loss(escape*(1+bound), -left), loss(escape*(1-bound), left)))
 	}
 	return out
+}
+
+// newHoldChance gives a chance and its limits from what they lack to 1.
+func newHoldChance(generations, loss, most, least float64) HoldChance {
+	return HoldChance{
+		Generations: generations, Chance: Value(1 - loss), Low: Value(1 - most), High: Value(1 - least),
+		Loss: [3]Value{Value(loss), Value(most), Value(least)},
+	}
 }
 
 func (j *job) recordName(to int) string {

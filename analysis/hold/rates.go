@@ -14,6 +14,9 @@ func rateOf(s *dwell.Summary, e dwell.Estimate) records.Rate {
 		Mean: e.Mean, Low: e.Low, High: e.High, StandardError: e.StandardError,
 		Flips: int64(e.Flips), Dwells: int64(s.Dwells), Exposure: e.Exposure, PerGeneration: records.Range(e.PerGeneration),
 	}
+	if e.Hold == nil && !math.IsNaN(e.PerGeneration.Value) {
+		row.Hold = holdRecords(nil, "")
+	}
 	for _, h := range e.Hold {
 		row.Hold = append(row.Hold, records.HoldChance{Generations: h.Generations, Range: records.Range(h.Range), Source: h.Source.String()})
 	}
@@ -38,8 +41,21 @@ func neverRate(from, to int, report DwellReport) records.Rate {
 		Mean: math.Inf(1), Low: math.Inf(1), High: math.Inf(1), StandardError: math.NaN(),
 		Flips: -1, Dwells: -1, Exposure: math.NaN(), PerGeneration: records.Range{},
 	}
-	for _, h := range report.Holds {
-		row.Hold = append(row.Hold, records.HoldChance{Generations: h.Generations, Range: records.Range{Value: 1, Low: 1, High: 1}, Source: "no reaction leads out"})
-	}
+	row.Hold = holdRecords(report.Holds, "no reaction leads out")
 	return row
+}
+
+// holdRecords are the chances of holding for the records; absent ones for a pair of
+// several, whose chances stand with the state's.
+func holdRecords(holds []HoldChance, source string) []records.HoldChance {
+	var out []records.HoldChance
+	for i, n := range holdGenerations() {
+		h := records.HoldChance{Generations: n, Range: records.Absent(), Source: "not given for a pair"}
+		if i < len(holds) {
+			h.Range = records.Range{Value: float64(holds[i].Chance), Low: float64(holds[i].Low), High: float64(holds[i].High)}
+			h.Source = source
+		}
+		out = append(out, h)
+	}
+	return out
 }

@@ -93,6 +93,8 @@ type DwellReport struct {
 type HoldChance struct {
 	Generations       float64
 	Chance, Low, High Value
+	// Loss is 1 minus each of the three, which keeps its digits where they are near 1.
+	Loss [3]Value
 }
 
 // A LatticeReport tells how the master equation was solved.
@@ -102,8 +104,17 @@ type LatticeReport struct {
 	Truncation Value   `json:"truncation"` // bound on the relative error of the means
 	Relaxation Value   `json:"relaxation"` // slowest relaxation time of the whole network
 	Weights    []Value `json:"weights"`    // stationary probability of each state
-	Seconds    float64 `json:"seconds"`
-	Bytes      int64   `json:"bytes"`
+	// Escape is the rate at which the quasi-stationary law of each state is left,
+	// in 1/TimeUnit; 0 for a state that is never left.
+	Escape  []StateRate `json:"escape"`
+	Seconds float64     `json:"seconds"`
+	Bytes   int64       `json:"bytes"`
+}
+
+// A StateRate is a rate of one state.
+type StateRate struct {
+	State string `json:"state"`
+	Rate  Value  `json:"rate"`
 }
 
 // Work is what the answer cost.

@@ -133,7 +133,7 @@ func (j *job) recordLattice(s *lattice.Solution) error {
 	if j.sink == nil {
 		return nil
 	}
-	committor := j.latticeTable("committor", s.Names, "1", "probability that the core of %s is the first to be entered")
+	committor := j.latticeTable("committor", s.Names, "1", "probability that the core of %s is the first to be entered; paths that leave the box are left out, so values near its edge are rougher than the mean dwells")
 	err := committor.write(j.sink.folder, s, func(a, i int) float64 { return s.Committor[a][i] })
 	if err != nil {
 		return err

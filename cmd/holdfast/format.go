@@ -7,6 +7,8 @@ import (
 	"strconv"
 	"strings"
 	"unicode/utf8"
+
+	"holdfast/analysis/hold"
 )
 
 // number writes v with four significant digits, plainly from 0.001 to a million.
@@ -34,12 +36,12 @@ func digits(v float64, significant int) string {
 	return mantissa + "e" + sign + strings.TrimLeft(exponent[1:], "0")
 }
 
-// chance writes a probability so that what is near to 1 does not read as 1.
-func chance(p float64) string {
-	if p > 0.9995 && p < 1 {
-		return "1 − " + number(1-p)
+// chance writes a probability, by what it lacks to 1 where it is near 1.
+func chance(p, loss hold.Value) string {
+	if loss > 0 && loss < 0.0005 {
+		return "1 − " + value(loss)
 	}
-	return number(p)
+	return value(p)
 }
 
 // A table is rows of cells under a heading, set in columns.

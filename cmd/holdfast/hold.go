@@ -135,6 +135,9 @@ func writeLattice(w io.Writer, r *hold.Report) {
 	}
 	fmt.Fprintf(w, "\nLattice: %d states in %s, truncation error at most %s of each mean, relaxation time %s %s\n",
 		l.States, l.Box, value(l.Truncation), value(l.Relaxation), r.TimeUnit)
+	for _, e := range l.Escape {
+		fmt.Fprintf(w, "  escape rate of the quasi-stationary law of %s: %s per %s\n", e.State, value(e.Rate), r.TimeUnit)
+	}
 }
 
 func generationText(r *hold.Report) string {
@@ -234,7 +237,7 @@ func interval(v, low, high hold.Value) string {
 }
 
 func chanceInterval(h hold.HoldChance) string {
-	c, low, high := chance(float64(h.Chance)), chance(float64(h.Low)), chance(float64(h.High))
+	c, low, high := chance(h.Chance, h.Loss[0]), chance(h.Low, h.Loss[1]), chance(h.High, h.Loss[2])
 	if low == c && high == c {
 		return c // the limits agree in every digit shown
 	}
