@@ -34,7 +34,7 @@ func (s *system) group() []group {
 		return s.consecutive()
 	}
 	groups := absorb(sets)
-	if len(groups) > fewGroups {
+	if len(groups) > fewGroups && len(sets) < sparseFrom { // merging takes the cube of their number
 		if fewer := s.merge(sets); len(fewer) < len(groups) {
 			groups = fewer
 		}
