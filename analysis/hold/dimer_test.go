@@ -15,6 +15,9 @@ import (
 // statistic is the logarithm of rates over its standard error 1/√flips, within ±4.9 (a
 // false alarm in a million).
 func TestDimerSwitchByExactRuns(t *testing.T) {
+	if underRace {
+		t.Skip("left to the run without the race detector")
+	}
 	rate := zoo.DimerSwitchFlipRate()
 	r := run(t, zoo.DimerSwitch(), hold.Options{Seed: 4, Route: hold.Runs, Runs: 60})
 	flips, exposure := 0.0, 0.0

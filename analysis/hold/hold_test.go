@@ -82,6 +82,9 @@ func TestSchloglPassages(t *testing.T) {
 }
 
 func TestSchloglRuns(t *testing.T) {
+	if underRace {
+		t.Skip("left to the run without the race detector")
+	}
 	n := declare(zoo.Schlogl(), counts("low", 100, 100), counts("high", 235, math.MaxInt64))
 	r := run(t, n, hold.Options{Seed: 3, Route: hold.Runs, Runs: 60})
 	d := row(t, r, "low", "high", hold.Runs)
@@ -94,6 +97,9 @@ func TestSchloglRuns(t *testing.T) {
 // 95 % intervals hold the truth (calibration). With a coverage of 95 % the count is
 // binomial with standard deviation 6.9, so that the band of ±20 is 2.9 of them.
 func TestCoverageOnTwoStateChain(t *testing.T) {
+	if underRace {
+		t.Skip("left to the run without the race detector")
+	}
 	const repeats, forth, back = 1000, 0.02, 0.05
 	n := declare(zoo.TwoStateChain(forth, back), counts("low", 1, 1), counts("high", 0, 0))
 	held := map[string]int{}
@@ -120,6 +126,9 @@ func TestCoverageOnTwoStateChain(t *testing.T) {
 // The lattice and the runs share start and target: the means agree, at a copy
 // number so low that every difference of definition would show.
 func TestRoutesAgree(t *testing.T) {
+	if underRace {
+		t.Skip("left to the run without the race detector")
+	}
 	for _, name := range []string{"latch", "pair", "leakless"} {
 		r := run(t, demo(t, name, 12), hold.Options{Seed: 11, Route: hold.Lattice, Second: hold.Runs, Precision: 0.03})
 		if len(r.Verdicts) == 0 {
@@ -151,6 +160,9 @@ func TestThreadsAndLanesChangeNothing(t *testing.T) {
 }
 
 func TestPrecisionIsReached(t *testing.T) {
+	if underRace {
+		t.Skip("left to the run without the race detector")
+	}
 	r := run(t, demo(t, "pair", 12), hold.Options{Seed: 2, Route: hold.Runs, Precision: 0.05})
 	for _, d := range r.Dwells {
 		if d.Flips < 1500 {
@@ -264,6 +276,9 @@ func TestReportIsPlainJSON(t *testing.T) {
 // (calibration). The dwells of the two states are independent, so that each copy
 // number gives two counts of 200.
 func TestRunsCoverTheLattice(t *testing.T) {
+	if underRace {
+		t.Skip("left to the run without the race detector")
+	}
 	const seeds = 200
 	total := map[string]int{}
 	for _, copies := range []float64{12, 16, 20} {
