@@ -92,7 +92,7 @@ type RangeError struct{ State string }
 
 // Error says what is wrong and, where something helps, what to do.
 func (e *RangeError) Error() string {
-	return fmt.Sprintf("the mean dwell time of state %q is beyond about 1e280 and cannot be held in double precision: use the weak-noise limit", e.State)
+	return fmt.Sprintf("the mean dwell time of state %q is beyond about 1e280 and cannot be held in double precision: lower the copies", e.State)
 }
 
 // A BoxError tells that the box grew as often as it may and the truncation error
