@@ -12,19 +12,31 @@ import (
 	"testing"
 )
 
-// TestReadme runs every command that the README shows, in its console blocks, and
-// holds the output shown against what comes out, but for seconds. With -update-readme it
-// writes the README anew; read the difference.
+// TestReadme runs every command that the README and the pages in docs show, in their
+// console blocks, and holds the output shown against what comes out, but for seconds. With
+// -update-readme it writes the pages anew; read the difference.
 func TestReadme(t *testing.T) {
-	update := flag.Lookup("update-readme").Value.String() == "true"
 	t.Chdir(filepath.Join("..", ".."))
-	text, err := os.ReadFile("README.md")
+	pages, err := filepath.Glob("docs/*.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Run("README.md", func(t *testing.T) { checkPage(t, "README.md", 4) })
+	for _, page := range pages {
+		t.Run(page, func(t *testing.T) { checkPage(t, page, 0) })
+	}
+}
+
+// checkPage does so for one page, which has at least so many console blocks.
+func checkPage(t *testing.T, page string, least int) {
+	update := flag.Lookup("update-readme").Value.String() == "true"
+	text, err := os.ReadFile(page)
 	if err != nil {
 		t.Fatal(err)
 	}
 	parts := strings.Split(string(text), "```console\n")
-	if len(parts) < 4 {
-		t.Fatalf("%d console blocks in the README", len(parts)-1)
+	if len(parts)-1 < least {
+		t.Fatalf("%d console blocks in %s", len(parts)-1, page)
 	}
 	for i, part := range parts[1:] {
 		block, rest, found := strings.Cut(part, "\n```")
@@ -34,18 +46,18 @@ func TestReadme(t *testing.T) {
 		command, shown, _ := strings.Cut(block, "\n")
 		got := outputOf(t, command)
 		if !update && seconds(got) != seconds(shown) {
-			t.Errorf("%s\nprints\n%s\nREADME shows\n%s", command, got, shown)
+			t.Errorf("%s\nprints\n%s\n%s shows\n%s", command, got, page, shown)
 		}
 		parts[i+1] = command + "\n" + got + "\n```" + rest
 	}
 	if update {
-		if err := os.WriteFile("README.md", []byte(strings.Join(parts, "```console\n")), 0o644); err != nil {
+		if err := os.WriteFile(page, []byte(strings.Join(parts, "```console\n")), 0o644); err != nil {
 			t.Fatal(err)
 		}
 	}
 }
 
-func init() { flag.Bool("update-readme", false, "write the outputs in the README anew") }
+func init() { flag.Bool("update-readme", false, "write the outputs in the README and docs anew") }
 
 func outputOf(t *testing.T, command string) string {
 	t.Helper()
