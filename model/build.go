@@ -79,7 +79,7 @@ func (n *Network) setConstants(set map[string]float64) error {
 		v, i := set[name], n.ConstantIndex(name)
 		if i < 0 {
 			_, names := n.nameLists()
-			return fmt.Errorf("no constant is called %q: %s", name, nearHint(name, names))
+			return fmt.Errorf("no constant is called %q: %s", name, NameHint(name, names))
 		}
 		if v < 0 || math.IsNaN(v) || math.IsInf(v, 0) {
 			return fmt.Errorf("%s = %v: a constant must be a finite number, not below 0", name, v)

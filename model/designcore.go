@@ -24,7 +24,7 @@ func (d *designer) readCores(e *tomlEntry) {
 
 func (d *designer) oneCore(e *tomlEntry, t *tomlTable) {
 	if problem := badStateName(e.key); problem != "" {
-		d.errorf(e.at, nearHint(e.key, []string{"only", "low", "middle", "high", "level1"}), "no state can be called %q: %s", e.key, problem)
+		d.errorf(e.at, NameHint(e.key, []string{"only", "low", "middle", "high", "level1"}), "no state can be called %q: %s", e.key, problem)
 	}
 	core := DeclaredCore{State: e.key}
 	for i := range t.entries {

@@ -115,7 +115,7 @@ func (d *designer) required(root *tomlTable) {
 }
 
 func (d *designer) unknownKey(e *tomlEntry, known []string) {
-	d.errorf(e.at, nearHint(e.key, known), "unknown key %q", e.key)
+	d.errorf(e.at, NameHint(e.key, known), "unknown key %q", e.key)
 }
 
 // declare enters a name, or reports why it cannot be one.

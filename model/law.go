@@ -75,7 +75,7 @@ func (p *lawParser) checkFunction(t lexer.Token) *lawError {
 		thing.used = true
 		return &lawError{t.From, fmt.Sprintf("%q is a %s, not a function", t.Value, thing.kind), "write " + t.Value + "*(…) for a product"}
 	}
-	return &lawError{t.From, fmt.Sprintf("there is no function %q", t.Value), nearHint(t.Value, functionNames())}
+	return &lawError{t.From, fmt.Sprintf("there is no function %q", t.Value), NameHint(t.Value, functionNames())}
 }
 
 func (p *lawParser) checkName(t lexer.Token) *lawError {
@@ -198,7 +198,7 @@ func (p *lawParser) name(n *ast.IdentifierNode) *Node {
 func (p *lawParser) call(n ast.Node, name string, arguments []ast.Node) *Node {
 	op, ok := functions()[name]
 	if !ok {
-		return p.fail(n, nearHint(name, functionNames()), "there is no function %q", name)
+		return p.fail(n, NameHint(name, functionNames()), "there is no function %q", name)
 	}
 	variadic := op == OpMin || op == OpMax
 	if len(arguments) != op.Arity() && (!variadic || len(arguments) < op.Arity()) {

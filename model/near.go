@@ -84,8 +84,9 @@ func join(parts ...string) string {
 	return strings.Join(kept, " ")
 }
 
-// nearHint is the hint for a name that is not among those allowed.
-func nearHint(typed string, names []string) string {
+// NameHint is the hint for a name that is not among those allowed: the nearest, where
+// one is near enough, and the list.
+func NameHint(typed string, names []string) string {
 	near := didYouMean(typed, names)
 	list := allowed(names)
 	if near != "" && list != "" {
@@ -102,12 +103,12 @@ const mostSuggestions = 50
 // hinter makes hints from names, as long as they may help.
 type hinter struct{ made int }
 
-// near is nearHint of the names.
+// near is NameHint of the names.
 func (h *hinter) near(typed string, names func() []string) string {
 	if h.made++; h.made > mostSuggestions {
 		return ""
 	}
-	return nearHint(typed, names())
+	return NameHint(typed, names())
 }
 
 // list is the list of the names.

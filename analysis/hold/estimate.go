@@ -12,7 +12,7 @@ import (
 )
 
 // holdGenerations are the numbers of generations that chances of holding are
-// given for.
+// given for where Options.Holds names none.
 func holdGenerations() []float64 { return []float64{10, 100, 1000} }
 
 // anyState stands in reports for leaving a state by whichever way; absorbed for
@@ -29,7 +29,7 @@ func (j *job) estimate(r *stateRuns) error {
 		j.report.Interrupted = true
 		j.warn("%s: stopped before its runs were done; the numbers are from the %d runs begun by then", from, len(r.seen))
 	}
-	summary, err := dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{From: r.state, Generation: j.network.Generation, Holds: holdGenerations()})
+	summary, err := dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{From: r.state, Generation: j.network.Generation, Holds: j.options.Holds})
 	if errors.Is(err, dwell.ErrNoExposure) {
 		j.warn("%s: nothing was seen of it", from)
 		return nil
@@ -69,7 +69,7 @@ func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
 		last.Chance, last.Low, last.High = Value(h.Value), Value(h.Low), Value(h.High)
 	}
 	j.add(row)
-	j.rates = append(j.rates, rateOf(summary, e))
+	j.rates = append(j.rates, j.rateOf(summary, e))
 }
 
 // add puts a row into the report, with the same times in generations.
@@ -94,14 +94,14 @@ func (j *job) neverLeft(s int) {
 		}
 		row := DwellReport{From: from, To: to.Name, Route: absorbing, Mean: inf, Low: inf, High: inf, Flips: nan, Exposure: nan, Never: true, Note: "never returns"}
 		if j.network.Generation > 0 {
-			for _, g := range holdGenerations() {
+			for _, g := range j.options.Holds {
 				row.Holds = append(row.Holds, newHoldChance(g, 0, 0, 0))
 			}
 		} else {
 			row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = nan, nan, nan
 		}
 		j.add(row)
-		j.rates = append(j.rates, neverRate(s, t, row))
+		j.rates = append(j.rates, j.neverRate(s, t, row))
 	}
 	j.warn("%s is absorbing: no reaction leads out of it, so a cell that has fallen into it never returns by itself", from)
 }

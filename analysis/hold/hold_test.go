@@ -308,3 +308,37 @@ func TestRunsCoverTheLattice(t *testing.T) {
 	}
 	t.Logf("held: %v of 600", total)
 }
+
+// Chances of holding are given for the generations asked, by every route: those of a
+// two-state chain are exp(−rate·t) (closed form).
+func TestHoldsAsked(t *testing.T) {
+	const forth, back = 0.02, 0.05
+	n := declare(zoo.TwoStateChain(forth, back), counts("low", 1, 1), counts("high", 0, 0))
+	n.Generation = 10
+	for _, route := range []string{hold.Lattice, hold.Runs} {
+		r := run(t, n, hold.Options{Seed: 1, Route: route, Holds: []float64{0.5, 7}})
+		d := row(t, r, "low", "high", route)
+		if len(d.Holds) != 2 || d.Holds[0].Generations != 0.5 || d.Holds[1].Generations != 7 {
+			t.Fatalf("%s: chances %v, want those for 0.5 and 7 generations", route, d.Holds)
+		}
+		for _, h := range d.Holds {
+			mean := 1 / forth
+			if route == hold.Runs {
+				mean = float64(d.Mean)
+			}
+			if want := math.Exp(-h.Generations * 10 / mean); math.Abs(float64(h.Chance)-want) > 1e-9 {
+				t.Errorf("%s: chance %v of %v generations, want %v", route, h.Chance, h.Generations, want)
+			}
+		}
+	}
+}
+
+func TestHoldsRefused(t *testing.T) {
+	for _, holds := range [][]float64{{0}, {-1}, {math.NaN()}, {math.Inf(1)}, {5, 5}} {
+		_, err := hold.Run(context.Background(), demo(t, "latch", 10), hold.Options{Holds: holds})
+		var option *hold.OptionError
+		if !errors.As(err, &option) || option.Name != "holds" {
+			t.Errorf("%v: %v, want an error of the option holds", holds, err)
+		}
+	}
+}

@@ -106,10 +106,10 @@ func (j *job) addExact(s *lattice.Solution, from, to int, mean float64, only boo
 		row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = Value(g/mean), Value(g/mean*(1-b)), Value(g/mean*(1+b))
 		rate.PerGeneration = records.Range{Value: g / mean, Low: g / mean * (1 - b), High: g / mean * (1 + b)}
 		if to == records.Any || only {
-			row.Holds = latticeHolds(s, from, g, b)
+			row.Holds = j.latticeHolds(s, from, b)
 		}
 	}
-	rate.Hold = holdRecords(row.Holds, "constant rate")
+	rate.Hold = j.holdRecords(row.Holds, "constant rate")
 	j.rates = append(j.rates, rate)
 	j.add(row)
 }
@@ -122,14 +122,14 @@ const weightRounding = 1e-12
 // lasts with the chance persistence·exp(−escape·t). The limits span the bounds on rate
 // and persistence, and what may be left of the start, which falls off at the rate at
 // which it is forgotten. Chances near 1 are carried by what they lack.
-func latticeHolds(s *lattice.Solution, from int, generation, bound float64) []HoldChance {
+func (j *job) latticeHolds(s *lattice.Solution, from int, bound float64) []HoldChance {
 	var out []HoldChance
 	c, escape := s.Persistence[from], s.Escape[from]
 	if math.Abs(c-1) < weightRounding {
 		c = 1
 	}
-	for _, n := range holdGenerations() {
-		t := n * generation
+	for _, n := range j.options.Holds {
+		t := n * j.network.Generation
 		left := math.Abs(c-1)*math.Exp(-s.Forgetting[from]*t) + weightRounding*math.Exp(-escape*t)
 		loss := func(rate, more float64) float64 {
 			return math.Max(0, math.Min(-math.Expm1(math.Log(c)-rate*t)-more, 1))

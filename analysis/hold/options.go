@@ -2,7 +2,9 @@ package hold
 
 import (
 	"fmt"
+	"math"
 	"runtime"
+	"slices"
 )
 
 const (
@@ -34,6 +36,10 @@ type Options struct {
 	// Threads is the number of goroutines; 0: one a processor. Lanes is the number
 	// of runs that one of them advances in turn; 0: chosen by the engine.
 	Threads, Lanes int
+
+	// Holds are the numbers of generations that chances of holding are given for,
+	// each above 0; nil: 10, 100 and 1000.
+	Holds []float64
 
 	// Memory is the most bytes that the lattice may take; 0: 4 GiB.
 	Memory int64
@@ -84,6 +90,12 @@ func (o Options) complete() (Options, error) {
 	case o.Threads < 0 || o.Threads > 4096:
 		return o, &OptionError{"threads", o.Threads, "from 1 to 4096"}
 	}
+	if err := o.checkHolds(); err != nil {
+		return o, err
+	}
+	if o.Holds == nil {
+		o.Holds = holdGenerations()
+	}
 	if o.Route == "" {
 		o.Route = Auto
 	}
@@ -109,4 +121,14 @@ func (o Options) complete() (Options, error) {
 		o.Events = defaultEvents
 	}
 	return o, nil
+}
+
+// checkHolds sees that each number of generations is a length of time, and stands once.
+func (o Options) checkHolds() error {
+	for i, g := range o.Holds {
+		if !(g > 0) || math.IsInf(g, 1) || slices.Contains(o.Holds[:i], g) {
+			return &OptionError{"holds", o.Holds, "numbers of generations above 0, each once"}
+		}
+	}
+	return nil
 }

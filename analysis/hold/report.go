@@ -84,7 +84,8 @@ type DwellReport struct {
 	// The same mean and limits in generations, and the limits of PerGeneration.
 	Generations, GenerationsLow, GenerationsHigh Value `json:"-"`
 	PerGenerationLow, PerGenerationHigh          Value `json:"-"`
-	// Holds are the chances of holding for 10, 100 and 1000 generations.
+	// Holds are the chances of holding for the numbers of generations asked, as
+	// Options.Holds lists them.
 	Holds []HoldChance `json:"-"`
 }
 
