@@ -41,8 +41,9 @@ type DraftReaction struct {
 const mostCopies = 1e12
 
 // Bind gives the network with the draft's constants replaced where set names
-// them, and copies by copies if it is positive. Unknown names, and values that
-// are negative or not finite, are errors.
+// them, and copies by copies if it is positive. A constant that varies keeps its
+// spread, memory and uncertainty about the new value. Unknown names, and values
+// that are negative or not finite, are errors; so is 0 for a constant that varies.
 func (d *Draft) Bind(copies float64, set map[string]float64) (*Network, error) {
 	n := &Network{
 		Title: d.Title, TimeUnit: d.TimeUnit, Generation: d.Generation, Copies: d.Copies,
@@ -88,7 +89,27 @@ func (n *Network) setConstants(set map[string]float64) error {
 	}
 	n.values = make([]float64, len(n.Constants))
 	for i, c := range n.Constants {
+		if err := c.check(); err != nil {
+			return err
+		}
 		n.values[i] = c.Value
+	}
+	return nil
+}
+
+// check says what is wrong with a constant's variation.
+func (c *Constant) check() error {
+	switch {
+	case !logDeviation.holds(c.Spread):
+		return fmt.Errorf("%s: the spread is %v; it must be %v", c.Name, c.Spread, logDeviation)
+	case !logDeviation.holds(c.Uncertainty):
+		return fmt.Errorf("%s: the uncertainty is %v; it must be %v", c.Name, c.Uncertainty, logDeviation)
+	case !(c.Memory >= 0) || math.IsInf(c.Memory, 0):
+		return fmt.Errorf("%s: the memory is %v; it must be a finite time above 0, or 0 for none", c.Name, c.Memory)
+	case c.Memory > 0 && c.Spread == 0:
+		return fmt.Errorf("%s has a memory but no spread", c.Name)
+	case c.Value == 0 && (c.Spread > 0 || c.Uncertainty > 0):
+		return fmt.Errorf("%s = 0: it varies by a factor, so it must be above 0", c.Name)
 	}
 	return nil
 }

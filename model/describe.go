@@ -102,11 +102,32 @@ func (d *description) species() {
 
 func (d *description) constants() {
 	var rows [][]string
-	for _, c := range d.net.Constants {
-		rows = append(rows, []string{c.Name, "= " + number(c.Value)})
+	varies := false
+	for i := range d.net.Constants {
+		c := &d.net.Constants[i]
+		variation, uncertainty := d.variation(c)
+		varies = varies || variation+uncertainty != ""
+		rows = append(rows, []string{c.Name, "= " + number(c.Value), variation, uncertainty})
 	}
 	d.heading("Constants", len(rows))
 	d.table(rows)
+	if varies {
+		d.printf("  Spread and uncertainty are standard deviations of the natural logarithm; the value is the median.\n")
+	}
+}
+
+// variation says how a constant varies and how well it is known.
+func (d *description) variation(c *Constant) (variation, uncertainty string) {
+	switch {
+	case c.Memory > 0:
+		variation = fmt.Sprintf("varies in time: spread %s, memory %s %s", number(c.Spread), number(c.Memory), d.net.TimeUnit)
+	case c.Spread > 0:
+		variation = fmt.Sprintf("varies from cell to cell: spread %s", number(c.Spread))
+	}
+	if c.Uncertainty > 0 {
+		uncertainty = "uncertainty " + number(c.Uncertainty)
+	}
+	return variation, uncertainty
 }
 
 func (d *description) reactions() {

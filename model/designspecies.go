@@ -86,22 +86,6 @@ func (d *designer) chooseReadout() {
 		"no species is the readout; %s, the first, orders and names the states", name)
 }
 
-func (d *designer) readConstants(e *tomlEntry) {
-	t := d.table(e, "write one line a constant: k = 1.0")
-	if t == nil {
-		d.unsure = true
-		return
-	}
-	d.damaged(t)
-	for i := range t.entries {
-		c := &t.entries[i]
-		d.declare(c, namedThing{kind: constantName, index: len(d.draft.Constants)})
-		v, ok := d.number(c, notNegative)
-		d.wrong[len(d.draft.Constants)] = !ok
-		d.draft.Constants = append(d.draft.Constants, Constant{Name: c.key, Value: v})
-	}
-}
-
 // noteUnused notes the species and constants that no reaction mentions.
 func (d *designer) noteUnused() {
 	for _, name := range d.names.all() {

@@ -16,8 +16,20 @@ type Species struct {
 
 // A Constant is a named number that rate laws read.
 type Constant struct {
-	Name  string
+	Name string
+	// Value is the constant's own, or, where it varies, its median.
 	Value float64
+	// Spread is the standard deviation of its natural logarithm across cells, which
+	// is normal about that of Value; 0: it does not vary. At most 3.
+	Spread float64
+	// Memory, above 0 only with a spread, makes the logarithm vary in time, in every
+	// cell: a stationary Ornstein–Uhlenbeck process with Spread as its standard
+	// deviation and Memory, in the network's time unit, as its correlation time. 0:
+	// each cell keeps its own value for ever.
+	Memory float64
+	// Uncertainty is the standard deviation of the natural logarithm of what is known
+	// of Value; 0: it is known. At most 3. No run uses it.
+	Uncertainty float64
 }
 
 // A Term is a species with its whole-number coefficient in a reaction, or, among

@@ -16,7 +16,12 @@ const (
 	notNegative
 	wholeCount
 	coefficient
+	logDeviation
 )
+
+// largestDeviation is the largest standard deviation of a constant's logarithm: at
+// 3, one cell in three has more than 20 times the median or less than a 20th.
+const largestDeviation = 3
 
 // largestCoefficient is the largest whole-number coefficient of a reaction;
 // largestWhole is the largest count that a float64 still tells from the next one.
@@ -32,6 +37,8 @@ func (s span) String() string {
 		notNegative: "a finite number, not below 0",
 		wholeCount:  "a whole number, not below 0",
 		coefficient: "a whole number from 1 to 1000000",
+
+		logDeviation: "a number from 0 to 3, the standard deviation of its natural logarithm",
 	}[s]
 }
 
@@ -44,6 +51,8 @@ func (s span) holds(v float64) bool {
 		return v > 0
 	case s == coefficient:
 		return v >= 1 && v <= largestCoefficient
+	case s == logDeviation:
+		return v >= 0 && v <= largestDeviation
 	}
 	return v >= 0
 }
