@@ -14,7 +14,7 @@ const (
 	// capDwells is the length, in mean dwells as the pilot saw them, at which a run
 	// of a planned job is cut off all the same: so far out that it cuts next to none.
 	capDwells = 30
-	// spareEvents is the shortest run worth making, in events, where flips are
+	// spareEvents is the shortest run worth making, in events or steps, where flips are
 	// not in reach: it must outlast the relaxation from its start many times.
 	spareEvents = 1_000_000
 )
@@ -22,14 +22,14 @@ const (
 // An allowance is what the runs of one state may spend.
 type allowance struct {
 	runs   int
-	events int64 // most events of one run; 0: no limit
-	expect int64 // events that all of them are likely to take; 0: not known
+	work   int64 // most of one run, in events or steps; 0: no limit
+	expect int64 // work that all of them are likely to take; 0: not known
 	again  bool  // what is left of the budget afterwards goes into more runs
 }
 
 // pilotAllowance is the pilot of a state with so many events to spend.
 func pilotAllowance(events int64) allowance {
-	return allowance{runs: pilotRuns, events: max(1, int64(pilotShare*float64(events))/pilotRuns)}
+	return allowance{runs: pilotRuns, work: max(1, int64(pilotShare*float64(events))/pilotRuns)}
 }
 
 // plan gives the runs that count. flips is what the precision takes; events is
@@ -47,7 +47,7 @@ func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
 	if seenFlips >= pilotFlips {
 		perDwell := float64(seenEvents) / float64(seenFlips)
 		runs := min(float64(flips), math.Max(1, math.Floor(left/perDwell)))
-		return allowance{runs: int(runs), events: int64(math.Ceil(perDwell * capDwells)), expect: int64(perDwell * runs)}
+		return allowance{runs: int(runs), work: int64(math.Ceil(perDwell * capDwells)), expect: int64(perDwell * runs)}
 	}
 	return longRuns(int64(left))
 }
@@ -55,5 +55,11 @@ func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
 // longRuns shares so many events among a few long runs.
 func longRuns(events int64) allowance {
 	runs := min(max(events/spareEvents, 1), pilotRuns)
-	return allowance{runs: int(runs), events: max(1, events/runs), expect: events, again: true}
+	return allowance{runs: int(runs), work: max(1, events/runs), expect: events, again: true}
+}
+
+// doubled allows the same runs twice the work.
+func (a allowance) doubled() allowance {
+	a.work, a.expect = 2*a.work, 2*a.expect
+	return a
 }

@@ -19,8 +19,8 @@ func TestPlan(t *testing.T) {
 		{"next to nothing to spend", 400, 1, 0, 1, 1, 1},
 	} {
 		got := plan(c.flips, c.events, c.seen, c.seenEvents)
-		if got.runs != c.runs || got.events != c.perRun {
-			t.Errorf("%s: %d runs of %d events, want %d of %d", c.name, got.runs, got.events, c.runs, c.perRun)
+		if got.runs != c.runs || got.work != c.perRun {
+			t.Errorf("%s: %d runs of %d events, want %d of %d", c.name, got.runs, got.work, c.runs, c.perRun)
 		}
 	}
 }
@@ -31,14 +31,14 @@ func TestPlanKeepsTheBudget(t *testing.T) {
 	for events := int64(1); events < 1e12; events = events*7 + 3 {
 		for _, seen := range []int{0, 7, 8, 32} {
 			pilot := pilotAllowance(events)
-			spent := int64(pilot.runs) * pilot.events
+			spent := int64(pilot.runs) * pilot.work
 			got := plan(1_000_000, events, seen, spent)
-			cost := float64(got.runs) * float64(got.events)
+			cost := float64(got.runs) * float64(got.work)
 			if seen >= pilotFlips {
 				cost = float64(got.runs) * float64(spent) / float64(seen)
 			}
-			if got.runs > 1 && cost > float64(events) || got.runs < 1 || got.events < 1 {
-				t.Errorf("budget %d, %d seen: %d runs of %d events", events, seen, got.runs, got.events)
+			if got.runs > 1 && cost > float64(events) || got.runs < 1 || got.work < 1 {
+				t.Errorf("budget %d, %d seen: %d runs of %d events", events, seen, got.runs, got.work)
 			}
 		}
 	}

@@ -27,36 +27,49 @@ func (j *job) estimate(r *stateRuns) error {
 	from := j.survey.Stable()[r.state].Name
 	if r.interrupted {
 		j.report.Interrupted = true
-		j.warn("%s: stopped before its runs were done; the numbers are from the %d runs begun by then", from, len(r.seen))
+		j.warn("%s: stopped before its runs were done; the numbers are from the %d runs begun by then", r.label(from), len(r.seen))
 	}
-	summary, err := dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{From: r.state, Generation: j.network.Generation, Holds: j.options.Holds})
+	summary, err := j.summarise(r)
 	if errors.Is(err, dwell.ErrNoExposure) {
-		j.warn("%s: nothing was seen of it", from)
+		j.warn("%s: nothing was seen of it", r.label(from))
 		return nil
 	}
 	if err != nil {
 		return err
 	}
 	for _, w := range summary.Warnings {
-		j.warn("%s: %s", from, w)
+		j.warn("%s: %s", r.label(from), w)
 	}
 	several := len(summary.To) > 1
 	if several {
-		j.addRow(from, &summary, summary.Any)
+		j.addRow(r.route, from, &summary, summary.Any)
 	}
 	for _, e := range summary.To {
 		if several {
 			e.Hold = nil // the chance of holding is that of the state, not of a pair
 		}
-		j.addRow(from, &summary, e)
+		j.addRow(r.route, from, &summary, e)
 	}
 	j.checkPrecision(from, r, summary.Any)
 	return nil
 }
 
-func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
+// label names the state in warnings; those on an approximation say so.
+func (r *stateRuns) label(state string) string {
+	if r.route == Langevin {
+		return r.route + ": " + state
+	}
+	return state
+}
+
+// summarise does the statistics of the dwells seen in one state.
+func (j *job) summarise(r *stateRuns) (dwell.Summary, error) {
+	return dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{From: r.state, Generation: j.network.Generation, Holds: j.options.Holds})
+}
+
+func (j *job) addRow(route, from string, summary *dwell.Summary, e dwell.Estimate) {
 	row := DwellReport{
-		From: from, To: j.targetName(e.To), Route: Runs, Sampled: true,
+		From: from, To: j.targetName(e.To), Route: route, Sampled: true,
 		StandardError: Value(e.StandardError), Mean: Value(e.Mean), Low: Value(e.Low), High: Value(e.High), Flips: Value(e.Flips), Exposure: Value(e.Exposure),
 		PerGeneration: Value(e.PerGeneration.Value), PerGenerationLow: Value(e.PerGeneration.Low), PerGenerationHigh: Value(e.PerGeneration.High),
 	}
@@ -69,7 +82,7 @@ func (j *job) addRow(from string, summary *dwell.Summary, e dwell.Estimate) {
 		last.Chance, last.Low, last.High = Value(h.Value), Value(h.Low), Value(h.High)
 	}
 	j.add(row)
-	j.rates = append(j.rates, j.rateOf(summary, e))
+	j.rates = append(j.rates, j.rateOf(route, summary, e))
 }
 
 // add puts a row into the report, with the same times in generations.
@@ -122,8 +135,8 @@ func (j *job) checkPrecision(from string, r *stateRuns, e dwell.Estimate) {
 		return
 	}
 	if half := math.Max(e.High/e.Mean-1, 1-e.Low/e.Mean); half > j.options.Precision*(1+1e-9) {
-		j.warn("%s: the interval reaches %.2g %% from the mean, wider than the %.2g %% asked; more events (--events) narrow it",
-			from, 100*half, 100*j.options.Precision)
+		j.warn("%s: the interval reaches %.2g %% from the mean, wider than the %.2g %% asked; more %s (--events) narrow it",
+			r.label(from), 100*half, 100*j.options.Precision, r.work)
 	}
 }
 

@@ -23,7 +23,9 @@ func (j *job) problem() lattice.Problem {
 func (j *job) byLattice(ctx context.Context) error {
 	p := j.problem()
 	if tell := j.options.Progress; tell != nil {
-		p.Progress = func(stage string, share float64) { tell(Progress{"lattice: " + stage, share, j.report.Work.Events}) }
+		p.Progress = func(stage string, share float64) {
+			tell(Progress{Stage: "lattice: " + stage, Share: share, Events: j.report.Work.Events})
+		}
 	}
 	s, err := lattice.Solve(ctx, p)
 	if err != nil {

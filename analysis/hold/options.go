@@ -24,9 +24,12 @@ type Options struct {
 	// Runs is the number of runs of each state, each to its first flip; 0: as many
 	// as Precision takes, or as the budget allows.
 	Runs int64
-	// Events is the most reaction events of all runs together; 0: 600 million, or
-	// no limit where Runs or Until is given.
+	// Events is the most reaction events of all runs together, or steps of all
+	// Langevin paths; 0: 600 million, or no limit where Runs or Until is given.
 	Events int64
+	// Step is the step of Langevin paths, in the design's unit; 0: 0.02 over the
+	// fastest rate at a resting state.
+	Step float64
 	// Until is the longest time that one run lasts, in the design's unit; 0: no limit.
 	Until float64
 
@@ -59,7 +62,8 @@ type Options struct {
 type Progress struct {
 	Stage  string  // what is being done, in a few words
 	Share  float64 // done, from 0 to 1
-	Events int64   // of all runs so far
+	Events int64   // of all runs so far, or steps, as Unit says
+	Unit   string  // events or steps; empty: events
 }
 
 // An OptionError is an option out of its range.
@@ -85,6 +89,8 @@ func (o Options) complete() (Options, error) {
 		return o, &OptionError{"events", o.Events, "at least 1"}
 	case !(o.Until >= 0 && o.Until <= 1e300):
 		return o, &OptionError{"until", o.Until, "a time above 0, at most 1e300"}
+	case !(o.Step >= 0 && o.Step <= 1e300):
+		return o, &OptionError{"step", o.Step, "a time above 0, at most 1e300"}
 	case o.Memory < 0:
 		return o, &OptionError{"memory", o.Memory, "a number of bytes above 0"}
 	case o.Threads < 0 || o.Threads > 4096:
@@ -109,6 +115,9 @@ func (o Options) complete() (Options, error) {
 		if o.Second == o.Route && o.Route != Auto {
 			return o, &OptionError{"second", fmt.Sprintf("%q", o.Second), "another route than the first"}
 		}
+	}
+	if o.Step > 0 && o.Route != Langevin && o.Second != Langevin {
+		return o, &OptionError{"step", o.Step, "left out but for Langevin paths (--route langevin): no other route takes steps"}
 	}
 	o.sampled = o.Precision != 0 || o.Runs != 0 || o.Events != 0 || o.Until != 0
 	if o.Precision == 0 {

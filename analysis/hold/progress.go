@@ -11,14 +11,21 @@ func (j *job) progressOf(r *stateRuns, done int, allowed allowance) func(int, in
 		return nil
 	}
 	states := len(j.survey.Stable())
-	stage := fmt.Sprintf("runs of state %s", j.survey.Stable()[r.state].Name)
-	spent := r.events
-	before := j.report.Work.Events + spent
-	return func(finished int, events int64) {
+	stage := fmt.Sprintf("%s of state %s", r.route, j.survey.Stable()[r.state].Name)
+	before := *j.total(r) + r.spent
+	return func(finished int, work int64) {
 		share := float64(done+finished) / float64(allowed.runs)
 		if allowed.expect > 0 {
-			share = math.Min(math.Max(share, float64(events)/float64(allowed.expect)), 0.999)
+			share = math.Min(math.Max(share, float64(work)/float64(allowed.expect)), 0.999)
 		}
-		j.options.Progress(Progress{stage, (float64(r.state) + share) / float64(states), before + events})
+		j.options.Progress(Progress{Stage: stage, Share: (float64(r.state) + r.base + r.span*share) / float64(states), Events: before + work, Unit: r.work})
 	}
+}
+
+// total gives what the report counts the work of r in.
+func (j *job) total(r *stateRuns) *int64 {
+	if r.work == stepWork {
+		return &j.report.Work.Steps
+	}
+	return &j.report.Work.Events
 }

@@ -7,10 +7,10 @@ import (
 	"holdfast/analysis/records"
 )
 
-// rateOf is the row of the table rates for one estimate from runs.
-func (j *job) rateOf(s *dwell.Summary, e dwell.Estimate) records.Rate {
+// rateOf is the row of the table rates for one estimate from sampled runs.
+func (j *job) rateOf(route string, s *dwell.Summary, e dwell.Estimate) records.Rate {
 	row := records.Rate{
-		From: s.From, To: recordTarget(e.To), Route: Runs, Interval: e.Method.String(),
+		From: s.From, To: recordTarget(e.To), Route: route, Interval: e.Method.String(),
 		Mean: e.Mean, Low: e.Low, High: e.High, StandardError: e.StandardError,
 		Flips: int64(e.Flips), Dwells: int64(s.Dwells), Exposure: e.Exposure, PerGeneration: records.Range(e.PerGeneration),
 	}

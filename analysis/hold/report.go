@@ -34,6 +34,8 @@ type Report struct {
 	Verdicts []Verdict `json:"verdicts,omitempty"`
 	// Lattice describes the lattice route, where it was taken.
 	Lattice *LatticeReport `json:"lattice,omitempty"`
+	// Langevin describes the Langevin route, where it was taken.
+	Langevin *LangevinReport `json:"langevin,omitempty"`
 
 	// Species are the names of the species, in the design's order.
 	Species []string `json:"-"`
@@ -121,6 +123,7 @@ type StateRate struct {
 // Work is what the answer cost.
 type Work struct {
 	Events  int64   `json:"events"`
+	Steps   int64   `json:"steps,omitempty"` // of Langevin paths
 	Seconds float64 `json:"seconds"`
 	Threads int     `json:"threads"`
 }

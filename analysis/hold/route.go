@@ -18,13 +18,15 @@ const (
 	Runs = "runs"
 	// Lattice solves the master equation on its lattice.
 	Lattice = "lattice"
+	// Langevin makes paths of the chemical Langevin equation, an approximation.
+	Langevin = "langevin"
 
 	// absorbing marks what needs no route: no reaction leads out of the state.
 	absorbing = "absorbing"
 )
 
 // Routes lists the routes that can be asked for.
-func Routes() []string { return []string{Auto, Runs, Lattice} }
+func Routes() []string { return []string{Auto, Runs, Lattice, Langevin} }
 
 // patience is the longest that auto lets the lattice take, in seconds by its own
 // estimate, before it turns to runs.
@@ -74,7 +76,7 @@ func (j *job) choose(ctx context.Context) (route, reason string, err error) {
 	switch o := j.options; {
 	case o.Route != Auto:
 		return o.Route, "as asked for", nil
-	case o.sampled && o.Second != Runs:
+	case o.sampled && o.Second != Runs && o.Second != Langevin:
 		return Runs, "exact stochastic runs, since a precision, a number of runs or a budget was given", nil
 	}
 	e, err := j.problem().Estimate(ctx)
@@ -105,8 +107,11 @@ func why(err error) string {
 
 // take estimates the hold times by one route.
 func (j *job) take(ctx context.Context, route string) error {
-	if route == Lattice {
+	switch route {
+	case Lattice:
 		return j.byLattice(ctx)
+	case Langevin:
+		return j.byLangevin(ctx)
 	}
 	return j.byRuns(ctx)
 }

@@ -2,15 +2,8 @@ package hold
 
 import (
 	"context"
-	"errors"
-	"fmt"
-	"math"
-	"strings"
 
 	"holdfast/analysis/dwell"
-	"holdfast/deterministic"
-	"holdfast/model"
-	"holdfast/ssa"
 )
 
 const (
@@ -22,15 +15,35 @@ const (
 
 // stateRuns are the runs of one state and what was seen in them.
 type stateRuns struct {
+	engine
 	state       int
 	seen        []dwell.Observation
-	events      int64
-	made        int // runs that count: the next one's replicate
+	spent       int64  // work
+	next        uint64 // replicate of the next run that counts
+	silent      bool   // the runs are not recorded
 	interrupted bool
+	lost        int   // runs that went wrong and are not in seen
+	problem     error // of the first of them
+	// base and span are the part of the state's progress that these runs are.
+	base, span float64
 }
 
 // byRuns estimates the hold time of every state in turn by exact runs.
 func (j *job) byRuns(ctx context.Context) error {
+	return j.eachState(func(s int, budget int64) (int64, error) {
+		r := &stateRuns{engine: j.exact(), state: s, span: 1}
+		_, err := j.runState(ctx, r, budget)
+		j.report.Work.Events += r.spent
+		if err != nil {
+			return r.spent, err
+		}
+		return r.spent, j.estimate(r)
+	})
+}
+
+// eachState shares the budget among the states that can be left. sample spends up
+// to so much on one of them (0: no limit) and says what it spent.
+func (j *job) eachState(sample func(s int, budget int64) (int64, error)) error {
 	states := len(j.survey.Stable())
 	left := j.options.Events
 	for s, state := range j.survey.Stable() {
@@ -38,183 +51,107 @@ func (j *job) byRuns(ctx context.Context) error {
 			j.neverLeft(s)
 			continue
 		}
-		r, err := j.runState(ctx, s, perRun(left, states-s))
+		spent, err := sample(s, perRun(left, states-s))
 		if err != nil {
 			return err
 		}
-		j.report.Work.Events += r.events
-		left = remaining(left, r.events)
-		if err := j.estimate(r); err != nil {
-			return err
-		}
+		left = remaining(left, spent)
 	}
 	return nil
 }
 
-// runState makes the runs of state s, at a cost of at most events (0: no limit).
-func (j *job) runState(ctx context.Context, s int, events int64) (*stateRuns, error) {
-	r := &stateRuns{state: s}
-	allowed, err := j.allow(ctx, r, events)
+// runState makes the runs of r's state, at a cost of at most budget (0: no limit),
+// and gives what a pilot allowed.
+func (j *job) runState(ctx context.Context, r *stateRuns, budget int64) (allowance, error) {
+	allowed, err := j.allow(ctx, r, budget)
 	if err != nil {
-		return r, err
+		return allowed, err
 	}
-	err = j.spend(ctx, r, allowed)
-	for err == nil && allowed.again && !r.interrupted && events-r.events >= spareEvents {
-		err = j.spend(ctx, r, longRuns(events-r.events))
+	return allowed, j.spendAll(ctx, r, allowed, budget)
+}
+
+// spendAll makes the runs that are allowed, and more while the budget lasts where
+// that is allowed too.
+func (j *job) spendAll(ctx context.Context, r *stateRuns, allowed allowance, budget int64) error {
+	err := j.spend(ctx, r, allowed)
+	for err == nil && allowed.again && !r.interrupted && budget-r.spent >= spareEvents {
+		err = j.spend(ctx, r, longRuns(budget-r.spent))
 	}
-	return r, err
+	return err
 }
 
 // spend makes the runs that are allowed, a block at a time.
 func (j *job) spend(ctx context.Context, r *stateRuns, allowed allowance) error {
 	for done := 0; done < allowed.runs && !r.interrupted; done += block {
-		p := j.runPlan(r.state, uint64(r.made), min(block, allowed.runs-done), allowed.events)
-		p.Progress = j.progressOf(r, done, allowed)
-		if err := j.count(ctx, r, p); err != nil {
+		b := batch{state: r.state, first: r.next, runs: min(block, allowed.runs-done), most: allowed.work}
+		b.progress = j.progressOf(r, done, allowed)
+		if err := j.count(ctx, r, b); err != nil {
 			return err
 		}
-		r.made += p.Runs
+		r.next += uint64(b.runs)
 	}
 	return nil
 }
 
 // allow plans the runs of a state, by a pilot where the number is not given.
-func (j *job) allow(ctx context.Context, r *stateRuns, events int64) (allowance, error) {
+func (j *job) allow(ctx context.Context, r *stateRuns, budget int64) (allowance, error) {
 	if j.options.Runs > 0 {
-		return allowance{runs: int(j.options.Runs), events: perRun(events, int(j.options.Runs))}, nil
+		return allowance{runs: int(j.options.Runs), work: perRun(budget, int(j.options.Runs))}, nil
 	}
 	flips := dwell.FlipsFor(j.options.Precision)
-	if events == 0 {
+	if budget == 0 {
 		return allowance{runs: flips}, nil
 	}
-	pilot := pilotAllowance(events)
-	result, err := ssa.Run(ctx, j.runPlan(r.state, pilotReplicate, pilot.runs, pilot.events))
-	r.events += result.Events
-	if errors.Is(err, context.Canceled) {
-		r.interrupted = true
-		return allowance{}, nil
-	}
-	if err != nil {
+	pilot := pilotAllowance(budget)
+	m, err := r.run(ctx, batch{state: r.state, first: pilotReplicate, runs: pilot.runs, most: pilot.work})
+	r.spent += m.work
+	if m.stops || err != nil {
+		r.interrupted = m.stops
 		return allowance{}, err
 	}
 	seen := 0
-	for i := range result.Outcomes {
-		o := &result.Outcomes[i]
-		if o.Ending == ssa.BadRate || o.Ending == ssa.RanAway {
-			return allowance{}, Explain(j.network, o.Err())
-		}
-		if o.Ending == ssa.Flipped || o.Ending == ssa.Absorbed {
+	for i := range m.paths {
+		if m.paths[i].left() {
 			seen++
 		}
 	}
-	return plan(flips, events, seen, result.Events), nil
+	return plan(flips, budget, seen, m.work), nil
 }
 
-// mostMolecules is the count at which a run has run away: far above the box of all
-// resting states and the start.
-func (j *job) mostMolecules() int64 {
-	most := 0.0
-	for i, high := range j.survey.High {
-		most = math.Max(most, high*j.network.Unit(i))
-	}
-	for _, n := range j.network.StartCounts() {
-		most = math.Max(most, float64(n))
-	}
-	return int64(math.Min(math.Max(100*most, leastRunaway), 1e12))
-}
-
-// leastRunaway is the smallest count that is called running away.
-const leastRunaway = 100_000
-
-// perRun shares events among runs; 0 stays no limit.
-func perRun(events int64, runs int) int64 {
-	if events == 0 {
+// perRun shares work among runs; 0 stays no limit.
+func perRun(work int64, runs int) int64 {
+	if work == 0 {
 		return 0
 	}
-	return max(1, events/int64(runs))
+	return max(1, work/int64(runs))
 }
 
-func (j *job) runPlan(s int, first uint64, runs int, events int64) ssa.Plan {
-	return ssa.Plan{
-		Network: j.network, Start: j.survey.Cores[s].Start, Cores: j.survey.Cores, From: s,
-		Runs: runs, FirstReplicate: first, Seed: j.options.Seed, Group: uint64(s),
-		Until: j.options.Until, MaxEvents: events, MaxCount: j.mostMolecules(), Threads: j.options.Threads, Lanes: j.options.Lanes,
+// count makes the runs of b, takes their dwells into r and records them.
+func (j *job) count(ctx context.Context, r *stateRuns, b batch) error {
+	m, err := r.run(ctx, b)
+	r.spent += m.work
+	r.interrupted = r.interrupted || m.stops
+	for i := 0; i < len(m.paths) && err == nil; i++ {
+		err = j.observe(r, &m.paths[i])
 	}
+	return err
 }
 
-// count makes the runs of p, takes their dwells into r and records them.
-func (j *job) count(ctx context.Context, r *stateRuns, p ssa.Plan) error {
-	result, err := ssa.Run(ctx, p)
-	r.events += result.Events
-	if err != nil && !errors.Is(err, context.Canceled) {
-		return Explain(j.network, err)
-	}
-	for i := range result.Outcomes {
-		if err := j.observe(r, &result.Outcomes[i]); err != nil {
-			return err
-		}
-	}
-	return nil
-}
-
-// observe adds one outcome to what was seen.
-func (j *job) observe(r *stateRuns, o *ssa.Outcome) error {
-	if o.Ending == ssa.Cancelled {
+// observe adds one path to what was seen.
+func (j *job) observe(r *stateRuns, p *path) error {
+	switch p.fate {
+	case byStop:
 		r.interrupted = true
-		if o.Events == 0 {
+		if p.work == 0 {
 			return nil
 		}
-	} else if err := o.Err(); err != nil {
-		return Explain(j.network, err)
+	case byFault:
+		if r.lost++; r.problem == nil {
+			r.problem = p.err
+		}
+		return j.record(r, p, dwell.Censored)
 	}
-	seen := j.observation(o)
+	seen := j.observation(p)
 	r.seen = append(r.seen, seen)
-	return j.record(r.state, o, seen)
-}
-
-// observation is what an outcome says about the dwell.
-func (j *job) observation(o *ssa.Outcome) dwell.Observation {
-	switch o.Ending {
-	case ssa.Flipped:
-		return dwell.Observation{To: o.Core, Absorbed: j.survey.Stable()[o.Core].Absorbing, Time: o.Time}
-	case ssa.Absorbed:
-		return dwell.Observation{To: dwell.Elsewhere, Absorbed: true, Time: o.Time}
-	}
-	return dwell.Observation{To: dwell.Censored, Time: o.Time}
-}
-
-// Explain adds to an engine's error, on a network, what to do about it.
-func Explain(n *model.Network, err error) error {
-	var rate *ssa.RateError
-	var away *ssa.RunawayError
-	switch {
-	case errors.As(err, &rate):
-		return fmt.Errorf("reaction %q has the rate %v at %s; a rate must be finite and not below 0: mend its law, with max(0, …) say",
-			rate.Name, rate.Value, countsText(n, rate.Counts))
-	case errors.As(err, &away):
-		return fmt.Errorf("counts run away: %s reached %d molecules at time %.4g %s, far beyond its resting states; is a loss missing, or a production without bound?",
-			n.Species[away.Species].Name, away.Counts[away.Species], away.Time, n.TimeUnit)
-	}
-	return err
-}
-
-// Advise adds to an error of a job on the design in file what to try next.
-func Advise(err error, file string) error {
-	var one *deterministic.OneStateError
-	var same *deterministic.IndistinctError
-	switch {
-	case errors.As(err, &one):
-		return fmt.Errorf("%w\n  'holdfast map %s --knob NAME=LOW:HIGH' shows where along a constant a second state is born", err, file)
-	case errors.As(err, &same):
-		return fmt.Errorf("%w (--copies)", err)
-	}
-	return err
-}
-
-func countsText(n *model.Network, counts []int64) string {
-	parts := make([]string, len(counts))
-	for i, k := range counts {
-		parts[i] = fmt.Sprintf("%s = %d", n.Species[i].Name, k)
-	}
-	return strings.Join(parts, ", ")
+	return j.record(r, p, seen.To)
 }

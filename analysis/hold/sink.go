@@ -3,13 +3,14 @@ package hold
 import (
 	"fmt"
 	"math"
+	"slices"
 
-	"holdfast/analysis/dwell"
 	"holdfast/analysis/lattice"
 	"holdfast/analysis/records"
 	"holdfast/deterministic"
 	"holdfast/internal/version"
 	"holdfast/model"
+	"holdfast/sde"
 	"holdfast/ssa"
 )
 
@@ -41,14 +42,22 @@ type sink struct {
 	endings map[string]int64
 }
 
-// endings lists the ways in which a recorded run can end, by ssa.Ending.
+// endings lists the ways in which a recorded run can end, by any engine.
 func endings() []string {
 	var names []string
 	for e := ssa.Flipped; e <= ssa.BadRate; e++ {
 		names = append(names, e.String())
 	}
+	for e := sde.Flipped; e <= sde.NotFinite; e++ {
+		if !slices.Contains(names, e.String()) {
+			names = append(names, e.String())
+		}
+	}
 	return names
 }
+
+// sampled lists the routes whose dwells are recorded.
+func sampled() []string { return []string{Runs, Langevin} }
 
 func (j *job) openSink() error {
 	if j.options.Folder == "" {
@@ -62,18 +71,19 @@ func (j *job) openSink() error {
 	if err := WriteStates(folder, j.survey); err != nil {
 		return err
 	}
-	j.sink.dwells, err = records.NewDwells(folder, j.stateNames(), endings())
+	j.sink.dwells, err = records.NewDwells(folder, j.stateNames(), sampled(), endings())
 	return err
 }
 
 // record keeps one dwell.
-func (j *job) record(from int, o *ssa.Outcome, seen dwell.Observation) error {
-	if j.sink == nil {
+func (j *job) record(r *stateRuns, p *path, to int) error {
+	if j.sink == nil || r.silent {
 		return nil
 	}
-	j.sink.endings[o.Ending.String()]++
+	j.sink.endings[p.ending]++
 	return j.sink.dwells.Append(records.Dwell{
-		From: from, To: seen.To, Ending: int(o.Ending), Replicate: o.Replicate, Time: o.Time, Events: o.Events,
+		From: r.state, To: to, Route: slices.Index(sampled(), r.route), Ending: slices.Index(endings(), p.ending),
+		Replicate: p.replicate, Time: p.time, Events: p.work,
 	})
 }
 
@@ -86,7 +96,7 @@ func (j *job) closeSink() error {
 		return err
 	}
 	o := records.Outcome{
-		Endings: j.sink.endings, Events: j.report.Work.Events, Warnings: j.report.Warnings, CutShort: j.report.Interrupted,
+		Endings: j.sink.endings, Events: j.report.Work.Events, Steps: j.report.Work.Steps, Warnings: j.report.Warnings, CutShort: j.report.Interrupted,
 	}
 	if o.CutShort {
 		o.Reason = "interrupted"

@@ -14,9 +14,19 @@ type Verdict struct {
 	Ratio Value `json:"ratio"`
 	// StandardErrors is how many standard errors apart the two are, on the
 	// logarithm of the mean; NaN where neither has one.
-	StandardErrors Value  `json:"standard_errors"`
-	Agree          bool   `json:"agree"`
-	Text           string `json:"text"`
+	StandardErrors Value `json:"standard_errors"`
+	Agree          bool  `json:"agree"`
+	// Off is, where one of the routes is an approximation, how far its mean is off
+	// the other's, relative to that, with its 95 % limits; nil where none is.
+	Off  *Offset `json:"off,omitempty"`
+	Text string  `json:"text"`
+}
+
+// An Offset is a relative difference with its 95 % limits.
+type Offset struct {
+	Value Value `json:"value"`
+	Low   Value `json:"low"`
+	High  Value `json:"high"`
 }
 
 // verdicts compares the rows of two routes, pair by pair.
@@ -50,6 +60,9 @@ func compare(a, b *DwellReport) Verdict {
 		v.Agree = v.StandardErrors <= 1.96 || a.allows(b) || b.allows(a)
 	}
 	v.Text = v.words()
+	if a.Route == Langevin || b.Route == Langevin {
+		v.approximate(a, b)
+	}
 	return v
 }
 

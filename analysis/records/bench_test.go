@@ -18,7 +18,7 @@ func BenchmarkDwells(b *testing.B) {
 		if err != nil {
 			b.Fatal(err)
 		}
-		d, err := NewDwells(f, []string{"low", "high"}, []string{"flipped", "horizon"})
+		d, err := NewDwells(f, []string{"low", "high"}, []string{"runs"}, []string{"flipped", "horizon"})
 		if err != nil {
 			b.Fatal(err)
 		}

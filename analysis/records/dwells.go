@@ -13,27 +13,28 @@ const (
 type Dwell struct {
 	From      int    // index of the state
 	To        int    // index of the state entered, Censored or Elsewhere
+	Route     int    // index of the route
 	Ending    int    // index of the ending
 	Replicate uint64 // of the run, below 2⁶³
 	Time      float64
-	Events    int64
+	Events    int64 // or steps of a Langevin path
 }
 
 // Dwells writes the table dwells, a row a dwell.
 type Dwells struct {
-	w                      *Writer
-	states                 int
-	from, to, ending       LabelColumn
-	replicate, events      IntColumn
-	time                   FloatColumn
-	flipped                FlagColumn
-	generations            generations
-	censored, elsewhereRow int
+	w                       *Writer
+	states                  int
+	from, to, route, ending LabelColumn
+	replicate, events       IntColumn
+	time                    FloatColumn
+	flipped                 FlagColumn
+	generations             generations
+	censored, elsewhereRow  int
 }
 
-// NewDwells starts the table dwells for states and endings by name. States cannot be
+// NewDwells starts the table dwells for states, routes and endings by name. States cannot be
 // called censored or elsewhere.
-func NewDwells(f *Folder, states, endings []string) (*Dwells, error) {
+func NewDwells(f *Folder, states, routes, endings []string) (*Dwells, error) {
 	if err := reserved(states, "censored", "elsewhere"); err != nil {
 		return nil, err
 	}
@@ -42,11 +43,12 @@ func NewDwells(f *Folder, states, endings []string) (*Dwells, error) {
 	t := NewTable("dwells")
 	d.from = t.AddLabel("from", states, "state the dwell was spent in")
 	d.to = t.AddLabel("to", append(states[:n:n], "censored", "elsewhere"), "state entered; censored: cut off before; elsewhere: an absorbing state that is none of the states")
+	d.route = t.AddLabel("route", routes, "how the dwell was made")
 	d.ending = t.AddLabel("ending", endings, "how the run ended")
 	d.replicate = t.AddInt("replicate", "", "number of the run's random stream")
 	d.time = t.AddFloat("time", f.provenance.TimeUnit, "length of the dwell")
 	d.generations = f.addGenerations(t)
-	d.events = t.AddInt("events", "", "reaction events fired")
+	d.events = t.AddInt("events", "", "reaction events fired, or steps taken by a Langevin path")
 	d.flipped = t.AddFlag("flipped", "the dwell ended by a flip")
 	w, err := f.Table(t)
 	d.w = w
@@ -69,6 +71,7 @@ func (d *Dwells) Append(r Dwell) error {
 	}
 	d.w.Label(d.from, r.From)
 	d.w.Label(d.to, to)
+	d.w.Label(d.route, r.Route)
 	d.w.Label(d.ending, r.Ending)
 	d.w.Int(d.replicate, int64(r.Replicate))
 	d.w.Float(d.time, r.Time)

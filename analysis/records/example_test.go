@@ -42,7 +42,7 @@ func write(dir string) error {
 		return err
 	}
 	defer folder.Abandon()
-	dwells, err := records.NewDwells(folder, []string{"low", "high"}, []string{"flipped", "horizon"})
+	dwells, err := records.NewDwells(folder, []string{"low", "high"}, []string{"runs"}, []string{"flipped", "horizon"})
 	if err != nil {
 		return err
 	}

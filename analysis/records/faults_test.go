@@ -126,7 +126,7 @@ func attempt(fs fileSystem, mem memory.Allocator, dir string) error {
 	if err := WriteStates(f, []string{"protein"}, []State{{Name: "low", Type: "stable", Amounts: []float64{1}, Molecules: []float64{100}}}); err != nil {
 		return err
 	}
-	d, err := NewDwells(f, []string{"low", "high"}, []string{"flipped"})
+	d, err := NewDwells(f, []string{"low", "high"}, []string{"runs"}, []string{"flipped"})
 	if err != nil {
 		return err
 	}

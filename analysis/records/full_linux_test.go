@@ -20,7 +20,7 @@ func TestFullDisk(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	d, err := NewDwells(f, []string{"low", "high"}, []string{"flipped"})
+	d, err := NewDwells(f, []string{"low", "high"}, []string{"runs"}, []string{"flipped"})
 	if err != nil {
 		t.Fatal(err)
 	}

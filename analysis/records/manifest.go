@@ -15,6 +15,8 @@ type Outcome struct {
 	Endings map[string]int64 `json:"endings,omitempty"`
 	// Events are the reaction events fired.
 	Events int64 `json:"events"`
+	// Steps are the steps of Langevin paths.
+	Steps int64 `json:"steps,omitempty"`
 	// Warnings are plain sentences for the reader.
 	Warnings []string `json:"warnings"`
 	// CutShort tells that the run was stopped before it had done what was asked; what

@@ -121,10 +121,10 @@ func TestDwells(t *testing.T) {
 	rows := []Dwell{
 		{From: 0, To: 1, Replicate: 4, Time: 90, Events: 1000},
 		{From: 1, To: Censored, Ending: 1, Replicate: math.MaxInt64, Time: 9, Events: 5},
-		{From: 1, To: Elsewhere, Ending: 2, Time: 4.5},
+		{From: 1, To: Elsewhere, Route: 1, Ending: 2, Time: 4.5},
 	}
 	fill := func(f *Folder) error {
-		d, err := NewDwells(f, []string{"low", "high"}, []string{"flipped", "horizon", "absorbed"})
+		d, err := NewDwells(f, []string{"low", "high"}, []string{"runs", "langevin"}, []string{"flipped", "horizon", "absorbed"})
 		if err != nil {
 			return err
 		}
@@ -135,11 +135,11 @@ func TestDwells(t *testing.T) {
 		}
 		return d.Close()
 	}
-	columns := []string{"from", "to", "ending", "replicate", "time", "generations", "events", "flipped"}
+	columns := []string{"from", "to", "route", "ending", "replicate", "time", "generations", "events", "flipped"}
 	b, r := stored(t, marsh(), "dwells", fill)
-	expect(t, show(b, 0, columns...), "low high flipped 4 90 2 1000 true")
-	expect(t, show(b, 1, columns...), "high censored horizon 9223372036854775807 9 0.2 5 false")
-	expect(t, show(b, 2, columns...), "high elsewhere absorbed 0 4.5 0.1 0 true")
+	expect(t, show(b, 0, columns...), "low high runs flipped 4 90 2 1000 true")
+	expect(t, show(b, 1, columns...), "high censored runs horizon 9223372036854775807 9 0.2 5 false")
+	expect(t, show(b, 2, columns...), "high elsewhere langevin absorbed 0 4.5 0.1 0 true")
 	checkColumns(t, r, columns, map[string]string{"time": "min", "generations": "generations"})
 	meta := r.Metadata()
 	for key, want := range map[string]string{
@@ -166,6 +166,7 @@ func TestDwellMistakes(t *testing.T) {
 		{From: -1},
 		{To: 2},
 		{To: -3},
+		{Route: 1},
 		{Ending: 1},
 		{Ending: -1},
 		{Replicate: math.MaxInt64 + 1},
@@ -175,7 +176,7 @@ func TestDwellMistakes(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		dwells, err := NewDwells(f, []string{"low", "high"}, []string{"flipped"})
+		dwells, err := NewDwells(f, []string{"low", "high"}, []string{"runs"}, []string{"flipped"})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -188,7 +189,7 @@ func TestDwellMistakes(t *testing.T) {
 		t.Fatal(err)
 	}
 	defer f.Abandon()
-	if _, err := NewDwells(f, []string{"low", "censored"}, []string{"flipped"}); err == nil {
+	if _, err := NewDwells(f, []string{"low", "censored"}, []string{"runs"}, []string{"flipped"}); err == nil {
 		t.Error("a state may be called censored")
 	}
 	if err := WriteRates(f, []string{"any"}, nil); err == nil {

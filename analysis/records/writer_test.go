@@ -238,7 +238,7 @@ func TestNoAllocationPerRow(t *testing.T) {
 		t.Fatal(err)
 	}
 	defer f.Abandon()
-	d, err := NewDwells(f, []string{"low", "high"}, []string{"flipped"})
+	d, err := NewDwells(f, []string{"low", "high"}, []string{"runs"}, []string{"flipped"})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -37,7 +37,8 @@ func setupHold(f *pflag.FlagSet) work {
 	positiveFlag(f, &memory, "memory", "most GiB that the lattice may take (4 if not given)")
 	positiveFlag(f, &o.Precision, "precision", "relative half-width of the 95 % interval to reach (0.1 if not given)")
 	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
-	countFlag(f, &o.Events, "events", "most reaction events in all (6e8 if no limit is given)")
+	countFlag(f, &o.Events, "events", "most reaction events in all, or steps of Langevin paths\n(6e8 if no limit is given)")
+	positiveFlag(f, &o.Step, "step", "step of Langevin paths, in the design's unit (0.02 over\nthe fastest rate if not given)")
 	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
 	f.Uint64Var(&o.Seed, "seed", 1, "`number` that chooses the random numbers")
 	countFlag(f, &threads, "threads", "goroutines (one a processor if not given)")
@@ -109,7 +110,8 @@ func writeHold(w io.Writer, r *hold.Report) error {
 	}
 	writeVerdicts(w, r)
 	writeLattice(w, r)
-	fmt.Fprintf(w, "\n%s events in %s s on %d threads\n", number(float64(r.Work.Events)), number(r.Work.Seconds), r.Work.Threads)
+	writeLangevin(w, r)
+	fmt.Fprintf(w, "\n%s in %s s on %d threads\n", workText(r.Work), number(r.Work.Seconds), r.Work.Threads)
 	writeWarnings(w, r.Warnings)
 	_, err := fmt.Fprintln(w, "These are a model's estimates; a strain must be tested ('holdfast help').")
 	return err

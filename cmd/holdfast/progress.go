@@ -34,7 +34,11 @@ func (b *bar) holdProgress(p hold.Progress) {
 	if b.shown == nil {
 		return
 	}
-	b.shown.Describe(fmt.Sprintf("%s, %s events", p.Stage, number(float64(p.Events))))
+	unit := p.Unit
+	if unit == "" {
+		unit = "events"
+	}
+	b.shown.Describe(fmt.Sprintf("%s, %s %s", p.Stage, number(float64(p.Events)), unit))
 	_ = b.shown.Set(int(p.Share * barSteps)) // a bar that cannot be drawn is no reason to stop
 }
 
