@@ -48,7 +48,7 @@ func exactFate(e ssa.Ending) fate {
 func (j *job) runPlan(s int, first uint64, runs int, events int64) ssa.Plan {
 	return ssa.Plan{
 		Network: j.network, Start: j.survey.Cores[s].Start, Cores: j.survey.Cores, From: s,
-		Runs: runs, FirstReplicate: first, Seed: j.options.Seed, Group: uint64(s),
+		Runs: runs, FirstReplicate: first, Seed: j.options.Seed, Point: j.options.Point, Group: uint64(s),
 		Until: j.options.Until, MaxEvents: events, MaxCount: j.mostMolecules(), Threads: j.options.Threads, Lanes: j.options.Lanes,
 	}
 }

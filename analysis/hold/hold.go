@@ -33,9 +33,11 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	if err != nil {
 		return nil, err
 	}
-	list, err := resting.States(ctx, network)
-	if err != nil {
-		return nil, err
+	list := options.States
+	if list == nil {
+		if list, err = resting.States(ctx, network); err != nil {
+			return nil, err
+		}
 	}
 	j := &job{network: network, options: options, survey: list.Map}
 	j.newReport()
@@ -48,6 +50,7 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	if err := j.takeRoutes(ctx); err != nil {
 		return nil, err
 	}
+	j.report.Rates = j.rates
 	j.report.Work.Seconds = time.Since(begun).Seconds()
 	return j.report, j.closeSink()
 }

@@ -126,7 +126,7 @@ func (l *langevin) engine(step float64) engine {
 func (l *langevin) paths(ctx context.Context, b batch, step float64) (made, error) {
 	result, err := sde.Run(ctx, sde.Plan{
 		System: l.system, Start: l.start(b.state), Cores: l.survey.Cores, From: b.state,
-		Runs: b.runs, FirstReplicate: b.first, Seed: l.options.Seed, Group: uint64(b.state), Step: step,
+		Runs: b.runs, FirstReplicate: b.first, Seed: l.options.Seed, Point: l.options.Point, Group: uint64(b.state), Step: step,
 		Until: l.options.Until, MaxSteps: b.most, Limit: float64(l.mostMolecules()),
 		Threads: l.options.Threads, Lanes: l.options.Lanes, Progress: b.progress,
 	})

@@ -5,6 +5,8 @@ import (
 	"math"
 	"runtime"
 	"slices"
+
+	"holdfast/analysis/survey/resting"
 )
 
 const (
@@ -36,6 +38,11 @@ type Options struct {
 	// Seed chooses the random numbers: the same seed gives the same answer,
 	// whatever Threads and Lanes are.
 	Seed uint64
+	// Point is the number of the point of a batch, which chooses the random numbers
+	// together with Seed; 0: a job by itself.
+	Point uint64
+	// States, if not nil, are the resting states of the network, found before.
+	States *resting.List
 	// Threads is the number of goroutines; 0: one a processor. Lanes is the number
 	// of runs that one of them advances in turn; 0: chosen by the engine.
 	Threads, Lanes int

@@ -4,6 +4,8 @@ import (
 	"encoding/json"
 	"math"
 	"path/filepath"
+
+	"holdfast/analysis/records"
 )
 
 // A Value is a number that may be absent: NaN (not known) and infinities are
@@ -36,6 +38,10 @@ type Report struct {
 	Lattice *LatticeReport `json:"lattice,omitempty"`
 	// Langevin describes the Langevin route, where it was taken.
 	Langevin *LangevinReport `json:"langevin,omitempty"`
+
+	// Rates are the rows of the table rates, as they are recorded; states are
+	// counted as in States without saddles.
+	Rates []records.Rate `json:"-"`
 
 	// Species are the names of the species, in the design's order.
 	Species []string `json:"-"`

@@ -28,9 +28,10 @@ const (
 // Routes lists the routes that can be asked for.
 func Routes() []string { return []string{Auto, Runs, Lattice, Langevin} }
 
-// patience is the longest that auto lets the lattice take, in seconds by its own
-// estimate, before it turns to runs.
-const patience = 60
+// patience is the longest that auto lets the lattice take, in seconds of one core of
+// a usual machine by its own estimate, before it turns to runs. Neither this machine nor
+// its number of cores has a say, so that the same design takes the same route anywhere.
+const patience = 120
 
 func checkRoute(name, route string) error {
 	if !slices.Contains(Routes(), route) {

@@ -28,6 +28,7 @@ type Folder struct {
 	fs         fileSystem
 	mem        memory.Allocator
 	made       []string // folders made for it, outermost first
+	own        []string // names of the caller's files, which stay
 	old        []string // files of the record that this one replaces
 	writers    []*Writer
 	done       bool
@@ -41,11 +42,17 @@ func Create(dir string, p Provenance) (*Folder, error) {
 	return create(disk{}, memory.DefaultAllocator, dir, p)
 }
 
-func create(fs fileSystem, mem memory.Allocator, dir string, p Provenance) (*Folder, error) {
+// CreateBeside is Create for a folder that may hold files and folders of the caller's
+// own under these names as well. They stay as they are.
+func CreateBeside(dir string, p Provenance, own ...string) (*Folder, error) {
+	return create(disk{}, memory.DefaultAllocator, dir, p, own...)
+}
+
+func create(fs fileSystem, mem memory.Allocator, dir string, p Provenance, own ...string) (*Folder, error) {
 	if err := p.check(); err != nil {
 		return nil, err
 	}
-	f := &Folder{dir: dir, provenance: p, fs: fs, mem: mem}
+	f := &Folder{dir: dir, provenance: p, fs: fs, mem: mem, own: own}
 	made, err := fs.MakeDir(dir)
 	f.made = made
 	if err != nil {

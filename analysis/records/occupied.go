@@ -44,7 +44,7 @@ func (f *Folder) survey() error {
 		if isTemp(name) {
 			left = append(left, name)
 		}
-		return isTemp(name)
+		return isTemp(name) || slices.Contains(f.own, name)
 	})
 	if slices.Contains(names, ManifestName) {
 		err = f.surveyManifest(names)

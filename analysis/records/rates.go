@@ -41,13 +41,13 @@ func WriteRates(f *Folder, states []string, rates []Rate) error {
 	if err := reserved(states, "any", "censored", "elsewhere"); err != nil {
 		return err
 	}
-	r := newRateTable(f, states, rates)
+	r := newRateTable(f, states, rates, false)
 	w, err := f.Table(r.table)
 	if err != nil {
 		return err
 	}
 	for i := range rates {
-		if err := r.append(w, &rates[i]); err != nil {
+		if err := r.append(w, 0, &rates[i]); err != nil {
 			break // Close gives it again
 		}
 	}
@@ -56,6 +56,7 @@ func WriteRates(f *Folder, states []string, rates []Rate) error {
 
 type rateTable struct {
 	table                                *Table
+	pointed                              bool // the first column is the number of a point
 	states                               int
 	from, to, route, method              LabelColumn
 	never                                FlagColumn
@@ -68,10 +69,11 @@ type rateTable struct {
 	holds                                []HoldChance // the first row's
 }
 
-func newRateTable(f *Folder, states []string, rates []Rate) *rateTable {
+func newRateTable(f *Folder, states []string, rates []Rate, pointed bool) *rateTable {
 	unit, n := f.provenance.TimeUnit, len(states)
 	t := NewTable("rates")
-	r := &rateTable{table: t, states: n, generational: f.provenance.Generation > 0}
+	r := &rateTable{table: t, states: n, generational: f.provenance.Generation > 0, pointed: pointed}
+	t.addPoint(pointed)
 	r.from = t.AddLabel("from", states, "state that is left")
 	r.to = t.AddLabel("to", append(states[:n:n], "any", "elsewhere"), "state entered; any: by whichever way")
 	r.route = t.AddLabel("route", distinct(rates, func(r Rate) string { return r.Route }), "how the numbers were found")
@@ -132,7 +134,8 @@ func (w *Writer) setRange(c [3]FloatColumn, r Range) {
 	}
 }
 
-func (r *rateTable) append(w *Writer, row *Rate) error {
+func (r *rateTable) append(w *Writer, point int64, row *Rate) error {
+	w.setPoint(r.pointed, point)
 	to := row.To
 	switch {
 	case row.To == Any:

@@ -19,13 +19,13 @@ type State struct {
 
 // WriteStates writes the table states: one row for each state and species.
 func WriteStates(f *Folder, species []string, states []State) error {
-	t := newStateTable(f, species, states)
+	t := newStateTable(f, species, states, false)
 	w, err := f.Table(t.Table)
 	if err != nil {
 		return err
 	}
 	for i := range states {
-		if err := t.append(w, &states[i]); err != nil {
+		if err := t.append(w, 0, &states[i]); err != nil {
 			break // Close gives it again
 		}
 	}
@@ -34,15 +34,17 @@ func WriteStates(f *Folder, species []string, states []State) error {
 
 type stateTable struct {
 	*Table
+	pointed                                bool // the first column is the number of a point
 	species                                int
 	state, kind, name                      LabelColumn
 	absorbing                              FlagColumn
 	amount, molecules, deviation, re, imag FloatColumn
 }
 
-func newStateTable(f *Folder, species []string, states []State) *stateTable {
+func newStateTable(f *Folder, species []string, states []State, pointed bool) *stateTable {
 	rate := "1/" + f.provenance.TimeUnit
-	t := &stateTable{Table: NewTable("states"), species: len(species)}
+	t := &stateTable{Table: NewTable("states"), species: len(species), pointed: pointed}
+	t.addPoint(pointed)
 	t.state = t.AddLabel("state", distinct(states, func(s State) string { return s.Name }), "name of the state")
 	t.kind = t.AddLabel("type", distinct(states, func(s State) string { return s.Type }), "stability by the rate equations")
 	t.absorbing = t.AddFlag("absorbing", "nothing leads out of the state")
@@ -58,12 +60,13 @@ func newStateTable(f *Folder, species []string, states []State) *stateTable {
 	return t
 }
 
-func (t *stateTable) append(w *Writer, s *State) error {
+func (t *stateTable) append(w *Writer, point int64, s *State) error {
 	if len(s.Amounts) != t.species || len(s.Molecules) != t.species || s.Deviation != nil && len(s.Deviation) != t.species {
 		w.fail("state %s needs amounts and molecules of %d species", s.Name, t.species)
 		return w.err
 	}
 	for j := range t.species {
+		w.setPoint(t.pointed, point)
 		w.Label(t.state, t.index(t.state, s.Name))
 		w.Label(t.kind, t.index(t.kind, s.Type))
 		w.Flag(t.absorbing, s.Absorbing)
