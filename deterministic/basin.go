@@ -44,6 +44,11 @@ func (m *Map) Basin(x []float64) (state int, err error) {
 
 // BasinContext is Basin with a context that can stop it.
 func (m *Map) BasinContext(ctx context.Context, x []float64) (state int, err error) {
+	return m.trace(ctx, x, func([]float64) {})
+}
+
+// trace follows the flow from x to its label and shows every point of it to visit.
+func (m *Map) trace(ctx context.Context, x []float64, visit func(x []float64)) (state int, err error) {
 	if err := m.checkPoint(x); err != nil {
 		return 0, err
 	}
@@ -61,6 +66,7 @@ func (m *Map) BasinContext(ctx context.Context, x []float64) (state int, err err
 	end, species := flowSettled, -1
 	if stuck < 0 {
 		end, species = g.follow(ctx, x, limit, flowSteps, func(float64) bool {
+			visit(x)
 			label, stuck = m.inSink(x), m.onUnstable(x)
 			return label >= 0 || stuck >= 0
 		})
