@@ -199,6 +199,7 @@ func (n *Network) bindLaw(r *Reaction, d DraftReaction) error {
 	if !(r.Coefficient >= 0) || math.IsInf(r.Coefficient, 0) {
 		return fmt.Errorf("reaction %q: mass_action is %v; it must be a finite number, not below 0", r.Name, r.Coefficient)
 	}
+	r.FreeCoefficient = d.MassAction
 	r.Free = product(d.MassAction, r.Reactants)
 	r.factor = r.Coefficient * r.Scale
 	for _, t := range r.Reactants {

@@ -57,6 +57,8 @@ type Reaction struct {
 	MassAction bool
 	// Coefficient is the mass-action constant, in amounts and the time unit.
 	Coefficient float64
+	// FreeCoefficient is the same with constants still named; nil for a law.
+	FreeCoefficient *Node
 	// Reactants are Uses and Needs together, one term a species, by species.
 	Reactants []Term
 	// Net is the whole-number change of each species by one firing, without

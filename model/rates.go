@@ -1,5 +1,7 @@
 package model
 
+import "math"
+
 // Reads lists, ascending, the species whose counts the propensity of reaction r
 // depends on: those its law reads, its reactants, and those it uses.
 func (n *Network) Reads(r int) []int { return n.Reactions[r].reads }
@@ -45,6 +47,22 @@ func (n *Network) Propensity(r int, counts []int64) float64 {
 // MassActionFactor gives the c of the propensity c ∏ nᵢ!/(nᵢ−νᵢ)! of a
 // mass-action reaction.
 func (n *Network) MassActionFactor(r int) float64 { return n.Reactions[r].factor }
+
+// MassActionUnit gives what MassActionFactor is for a coefficient of 1; 0 for a
+// reaction whose law is given.
+func (n *Network) MassActionUnit(r int) float64 {
+	re := &n.Reactions[r]
+	if !re.MassAction {
+		return 0
+	}
+	unit := re.Scale
+	for _, t := range re.Reactants {
+		if !n.Species[t.Species].Fixed {
+			unit /= math.Pow(n.Copies, float64(t.Count))
+		}
+	}
+	return unit
+}
 
 // Flux gives the deterministic law v of reaction r at amounts x, in amount (or
 // firings, where it changes a fixed-count species) per unit of time.

@@ -36,6 +36,46 @@ func latch() ssa.Plan {
 // hand that the engine is held against.
 func BenchmarkLatch(b *testing.B) { speed(b, latch()) }
 
+// BenchmarkVaried is the latch with constants that vary, beside the same without: a
+// dilution in time and a drive from cell to cell; and with a half that does.
+func BenchmarkVaried(b *testing.B) {
+	for _, c := range []struct {
+		name            string
+		dilution, drive float64
+		half            float64
+	}{{"none", 0, 0, 0}, {"frozen", 0, 0.1, 0}, {"in time", 0.05, 0.1, 0}, {"half too", 0.05, 0.1, 0.1}} {
+		b.Run(c.name, func(b *testing.B) {
+			p := latch()
+			p.Network = variedLatch(b, c.dilution, c.drive, c.half)
+			speed(b, p)
+		})
+	}
+}
+
+func variedLatch(b *testing.B, dilution, drive, half float64) *model.Network {
+	d, err := model.Load("../testdata/designs/latch.toml")
+	if err != nil {
+		b.Fatal(err)
+	}
+	for i := range d.Constants {
+		switch c := &d.Constants[i]; c.Name {
+		case "a":
+			if c.Spread = dilution; dilution > 0 {
+				c.Memory = 45
+			}
+		case "drive":
+			c.Spread = drive
+		case "half":
+			c.Spread = half
+		}
+	}
+	n, err := d.Bind(0, nil)
+	if err != nil {
+		b.Fatal(err)
+	}
+	return n
+}
+
 func BenchmarkOperator(b *testing.B) { speed(b, operatorPlan()) }
 
 func operatorPlan() ssa.Plan {

@@ -70,6 +70,17 @@ func (k *direct) value(l *lane, r int) float64 {
 	return math.NaN()
 }
 
+func (k *direct) rate(l *lane) float64 { return l.ends[len(l.ends)-1] }
+
+func (k *direct) refresh(l *lane, laws []variedLaw) float64 {
+	for i := range laws {
+		r := int(laws[i].reaction)
+		l.values[k.place[r]] = k.value(l, r)
+		l.resum(k.place[r] / groupWidth)
+	}
+	return l.total()
+}
+
 // resum sums group g afresh.
 func (l *lane) resum(g int) {
 	v, s := (*[groupWidth]float64)(l.values[g*groupWidth:]), (*[groupWidth]float64)(l.sums[g*groupWidth:])
@@ -124,7 +135,12 @@ func (k *direct) event(l *lane) bool {
 		return false
 	}
 	l.time = t
-	r := k.choose(l, draw.Unit*total)
+	return k.happen(l, draw.Unit*total)
+}
+
+// happen lets the reaction at u fire and tells whether the run goes on.
+func (k *direct) happen(l *lane, u float64) bool {
+	r := k.choose(l, u)
 	over := k.fire(l, r)
 	l.left--
 	for _, d := range k.dependents.of(r) {

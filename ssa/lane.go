@@ -30,6 +30,8 @@ type lane struct {
 
 	before [maxRows]float64 // scratch of rushes: sums of all rows before each; that before the first is 0
 
+	scales []float64 // of the bursts whose means vary, by slot
+
 	values, sums, ends []float64 // see direct
 	classes            *classes  // see sparse
 }
@@ -134,7 +136,11 @@ func (s *system) fire(l *lane, r int) (over bool) {
 		over = over || n > s.MaxCount
 	}
 	for _, b := range s.bursts.of(r) {
-		n := l.counts[b.species] + int64(min(l.bursts.Exp()*b.scale, maxCountLimit))
+		scale := b.scale
+		if uint32(b.slot) < uint32(len(l.scales)) {
+			scale = l.scales[b.slot]
+		}
+		n := l.counts[b.species] + int64(min(l.bursts.Exp()*scale, maxCountLimit))
 		l.counts[b.species] = n
 		over = over || n > s.MaxCount
 	}

@@ -71,7 +71,7 @@ func (s *system) pilot() []int64 {
 	p.Cores, p.From, p.Until, p.MaxEvents, p.Times = nil, -1, 0, pilotEvents, nil
 	p.Runs = 1
 	short := *s
-	short.Plan, short.targets, short.groups = p, nil, s.consecutive()
+	short.Plan, short.targets, short.groups, short.varies = p, nil, s.consecutive(), nil
 	j := newJob(&short)
 	j.kernel = func(w *worker) kernel { return newDirect(w) }
 	w := newWorker(j, 1)

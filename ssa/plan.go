@@ -51,6 +51,13 @@ type Plan struct {
 	// must not keep counts.
 	Sample func(run, k int, t float64, counts []int64)
 
+	// Interval is the time, in the network's unit, for which constants of the network
+	// that vary in time are held at a value; 0: variation.DefaultInterval. Constants
+	// with a spread but no memory keep, through each run, a value of its own. Their
+	// random numbers come from a stream of each run's own. No interval without a
+	// constant that varies in time.
+	Interval float64
+
 	// Threads is the number of goroutines; 0: GOMAXPROCS. Lanes is the number of
 	// runs that one goroutine advances in turn; 0: chosen by the engine. Neither
 	// changes any outcome.
@@ -152,6 +159,8 @@ func (p *Plan) checkNumbers() error {
 		return fmt.Errorf("group is %d; it must be below 2²²", p.Group)
 	case !(p.Until >= 0) || p.Until > endOfTime:
 		return fmt.Errorf("until is %v; it must be from 0 to 2⁸⁰⁰ (0: no horizon)", p.Until)
+	case !(p.Interval >= 0) || p.Interval > endOfTime:
+		return fmt.Errorf("interval is %v; it must be from 0 to 2⁸⁰⁰ (0: chosen)", p.Interval)
 	case p.MaxEvents < 0:
 		return fmt.Errorf("max events is %d; it must not be negative (0: no limit)", p.MaxEvents)
 	case p.MaxCount < 0 || p.MaxCount > maxCountLimit:

@@ -84,13 +84,19 @@ func (c *compiler) function(tree *model.Node, species int) func(int64) float64 {
 
 // at gives the law's value at counts.
 func (p *program) at(counts []int64) float64 {
-	r := p.registers
 	for i := range p.loads {
 		l := &p.loads[i]
-		r[l.register] = l.table.at(counts[l.species])
+		p.registers[l.register] = l.table.at(counts[l.species])
 	}
-	for i := range p.steps {
-		s := &p.steps[i]
+	p.run(p.steps)
+	return p.registers[p.result]
+}
+
+// run takes steps one after the other.
+func (p *program) run(steps []step) {
+	r := p.registers
+	for i := range steps {
+		s := &steps[i]
 		switch s.op {
 		case model.OpAdd:
 			r[s.to] = r[s.a] + r[s.b]
@@ -104,5 +110,4 @@ func (p *program) at(counts []int64) float64 {
 			r[s.to] = model.Apply(s.op, r[s.a], r[s.b], r[s.c])
 		}
 	}
-	return r[p.result]
 }

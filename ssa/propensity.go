@@ -41,7 +41,12 @@ func newPropensity(net *model.Network, r int) propensity {
 	if !re.MassAction {
 		return newLaw(net, r)
 	}
-	p := propensity{shape: product, factor: net.MassActionFactor(r), law: &law{terms: re.Reactants}}
+	return massAction(re, net.MassActionFactor(r))
+}
+
+// massAction prepares factor ∏ n!/(n−ν)! over a reaction's reactants.
+func massAction(re *model.Reaction, factor float64) propensity {
+	p := propensity{shape: product, factor: factor, law: &law{terms: re.Reactants}}
 	order := 0
 	for _, t := range re.Reactants {
 		order += t.Count

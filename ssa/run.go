@@ -43,7 +43,7 @@ func Run(ctx context.Context, p Plan) (Result, error) {
 
 // newJob lays out outcomes that say that no run has begun.
 func newJob(s *system) *job {
-	j := &job{system: s, kernel: newKernel, outcomes: make([]Outcome, s.Runs)}
+	j := &job{system: s, kernel: s.kernelOf(), outcomes: make([]Outcome, s.Runs)}
 	n := len(s.Start)
 	counts := make([]int64, s.Runs*n)
 	for i := range j.outcomes {
@@ -63,7 +63,7 @@ func (j *job) work() {
 	threads = min(threads, j.Runs)
 	var group sync.WaitGroup
 	for range threads {
-		lanes := min(j.lanes(), (j.Runs+threads-1)/threads)
+		lanes := min(j.lanesOf(), (j.Runs+threads-1)/threads)
 		group.Go(func() { newWorker(j, lanes).work() })
 	}
 	group.Wait()

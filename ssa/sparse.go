@@ -158,8 +158,7 @@ func (k *sparse) advance(lanes []lane) {
 	}
 }
 
-// try advances a lane to the next try, lets the reaction tried fire or not, and
-// tells whether the run goes on.
+// try advances a lane by one try and tells whether the run goes on.
 func (k *sparse) try(l *lane) bool {
 	c := l.classes
 	draw := l.draw()
@@ -168,11 +167,28 @@ func (k *sparse) try(l *lane) bool {
 		return false
 	}
 	l.time = t
-	r, w := c.choose(draw.Unit * c.total)
+	return k.happen(l, draw.Unit*c.total)
+}
+
+func (k *sparse) rate(l *lane) float64 { return l.classes.total }
+
+// happen lets the reaction tried at u fire or not, and tells whether the run goes on.
+func (k *sparse) happen(l *lane, u float64) bool {
+	c := l.classes
+	r, w := c.choose(u)
 	if l.accept.Float64()*w >= c.values[r] {
 		return true
 	}
 	return k.fired(l, int(r))
+}
+
+func (k *sparse) refresh(l *lane, laws []variedLaw) float64 {
+	ok := true
+	for i := range laws {
+		r := laws[i].reaction
+		ok = l.classes.set(r, k.props[r].at(l.counts)) && ok
+	}
+	return l.classes.rate(ok)
 }
 
 // fired lets reaction r fire and tells whether the run goes on.

@@ -5,6 +5,7 @@ import (
 	"math"
 	"slices"
 
+	"holdfast/internal/variation"
 	"holdfast/model"
 )
 
@@ -16,6 +17,8 @@ type system struct {
 	dependents lists[int32] // reactions whose propensity a firing may change
 	targets    []target
 	groups     []group
+	varies     *variation.Law // of the constants; nil: none does
+	slots      int32          // bursts whose means vary
 }
 
 // lists are as many lists as there are reactions, end to end: a network of
@@ -50,10 +53,14 @@ type change struct {
 type burst struct {
 	species int32
 	scale   float64
+	slot    int32 // of a mean that varies; else −1
 }
 
+// burstScale gives the scale of a burst of that mean.
+func burstScale(mean float64) float64 { return 1 / math.Log1p(1/mean) }
+
 func newSystem(p Plan) *system {
-	s := &system{Plan: p}
+	s := &system{Plan: p, varies: variation.Of(p.Network, p.Interval)}
 	readers := make([][]int32, len(p.Network.Species))
 	for r := range p.Network.Reactions {
 		if !s.live(r) {
@@ -71,9 +78,20 @@ func newSystem(p Plan) *system {
 	return s
 }
 
-// live tells whether reaction r may ever fire: its mass-action constant is not 0.
+// live tells whether reaction r may ever fire: its mass-action constant is not 0, or
+// varies.
 func (s *system) live(r int) bool {
-	return !s.Network.Reactions[r].MassAction || s.Network.MassActionFactor(r) > 0
+	re := &s.Network.Reactions[r]
+	return !re.MassAction || s.Network.MassActionFactor(r) > 0 || s.variesIn(re.FreeCoefficient)
+}
+
+// slot gives a burst its slot, −1 where its mean does not vary.
+func (s *system) slot(mean *model.Node) int32 {
+	if !s.variesIn(mean) {
+		return -1
+	}
+	s.slots++
+	return s.slots - 1
 }
 
 func (s *system) addReaction(re *model.Reaction, readers [][]int32) {
@@ -85,7 +103,7 @@ func (s *system) addReaction(re *model.Reaction, readers [][]int32) {
 		dependents = append(dependents, readers[t.Species]...)
 	}
 	for _, t := range re.Bursts {
-		bursts = append(bursts, burst{int32(t.Species), 1 / math.Log1p(1/t.Burst)})
+		bursts = append(bursts, burst{int32(t.Species), burstScale(t.Burst), s.slot(t.Mean)})
 		dependents = append(dependents, readers[t.Species]...)
 	}
 	slices.Sort(dependents)

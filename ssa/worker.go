@@ -136,7 +136,7 @@ func (w *worker) settle(l *lane, total float64) bool {
 		w.record(l, RanAway, -1, nil)
 	case !(total <= math.MaxFloat64):
 		w.record(l, BadRate, -1, w.badRate(l.counts))
-	case total < never:
+	case total < never && !w.wakes(l.counts):
 		w.pass(l, math.Inf(1))
 		w.record(l, Absorbed, -1, nil)
 	case l.left == 0:
