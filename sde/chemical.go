@@ -114,7 +114,11 @@ func (s *chemical) rate(r int, x, amounts []float64) float64 {
 	if !re.MassAction {
 		return re.Scale * s.net.Flux(r, amounts)
 	}
-	a := s.net.MassActionFactor(r)
+	return falling(re, x, s.net.MassActionFactor(r))
+}
+
+// falling is a ∏ n!/(n−ν)! over a reaction's reactants, each factor not below 0.
+func falling(re *model.Reaction, x []float64, a float64) float64 {
 	for _, t := range re.Reactants {
 		for j := range t.Count {
 			a *= max(x[t.Species]-float64(j), 0)
@@ -123,12 +127,25 @@ func (s *chemical) rate(r int, x, amounts []float64) float64 {
 	return a
 }
 
-// badRate gives the first live reaction whose rate is below 0 or not finite.
-func (s *chemical) badRate(x []float64) (reaction int, value float64, found bool) {
+// rateAt gives the propensity of reaction r with constants of those values.
+func (s *chemical) rateAt(r int, x, amounts, values []float64) float64 {
+	re := &s.net.Reactions[r]
+	switch {
+	case !variesIn(s.net, re.Free):
+		return s.rate(r, x, amounts)
+	case re.MassAction:
+		return falling(re, x, s.net.MassActionUnit(r)*re.FreeCoefficient.Eval(nil, values))
+	}
+	return re.Scale * re.Free.Eval(amounts, values)
+}
+
+// badRate gives the first live reaction whose rate, with constants of those values, is
+// below 0 or not finite.
+func (s *chemical) badRate(x, values []float64) (reaction int, value float64, found bool) {
 	amounts := s.amounts(x)
 	for _, g := range s.groups {
 		for _, h := range g.shares {
-			if a := s.rate(h.reaction, x, amounts); !(a >= 0 && a <= math.MaxFloat64) {
+			if a := s.rateAt(h.reaction, x, amounts, values); !(a >= 0 && a <= math.MaxFloat64) {
 				return h.reaction, a, true
 			}
 		}

@@ -15,6 +15,7 @@ type compiler struct {
 	numbers map[uint64]int // registers of constants, by their bits
 	values  map[int]float64
 	trees   map[*model.Node]int
+	inputAt map[int]int // registers of constants that vary
 }
 
 // newCompiler gives a compiler whose first registers are the counts of the
@@ -22,7 +23,7 @@ type compiler struct {
 func newCompiler(net *model.Network) *compiler {
 	return &compiler{
 		program: program{registers: len(net.Species)}, net: net,
-		done: map[instruction]int{}, numbers: map[uint64]int{}, values: map[int]float64{}, trees: map[*model.Node]int{},
+		done: map[instruction]int{}, numbers: map[uint64]int{}, values: map[int]float64{}, trees: map[*model.Node]int{}, inputAt: map[int]int{},
 	}
 }
 

@@ -18,6 +18,10 @@ type group struct {
 type share struct {
 	reaction    int
 	net, spread float64
+	// Of a burst whose mean m varies, net and spread are at its median; scale is the
+	// share's length, so that with m they are scale·m and scale²·m(1+2m).
+	burst *model.Node
+	scale float64
 }
 
 // newGroups merges the noise of reactions that change the state along the same
@@ -28,18 +32,28 @@ func newGroups(net *model.Network) []group {
 	var groups []group
 	for r := range net.Reactions {
 		re := &net.Reactions[r]
-		if re.MassAction && net.MassActionFactor(r) == 0 {
+		if re.MassAction && net.MassActionFactor(r) == 0 && !variesIn(net, re.FreeCoefficient) {
+			continue
+		}
+		if mean := varyingBurst(net, re); mean != nil {
+			m := re.Bursts[0].Burst
+			groups = merge(groups, along(net, re.Bursts[0].Species), share{r, m, m * (1 + 2*m), mean, 1})
 			continue
 		}
 		mean := meanChange(re, len(net.Species))
-		groups = merge(groups, mean, share{r, 1, 1})
+		groups = merge(groups, mean, share{reaction: r, net: 1, spread: 1})
 		for _, b := range re.Bursts {
-			unit := make([]float64, len(net.Species))
-			unit[b.Species] = 1
-			groups = merge(groups, unit, share{r, 0, b.Burst * (1 + b.Burst)})
+			groups = merge(groups, along(net, b.Species), share{reaction: r, spread: b.Burst * (1 + b.Burst)})
 		}
 	}
 	return groups
+}
+
+// along gives the direction of one molecule of a species.
+func along(net *model.Network, species int) []float64 {
+	unit := make([]float64, len(net.Species))
+	unit[species] = 1
+	return unit
 }
 
 // meanChange gives the mean change of each species by one firing.
@@ -62,7 +76,7 @@ func merge(groups []group, v []float64, s share) []group {
 	}
 	for i := range groups {
 		if c := ratio(v, groups[i].direction); c != 0 {
-			groups[i].add(share{s.reaction, c * s.net, c * c * s.spread})
+			groups[i].add(share{s.reaction, c * s.net, c * c * s.spread, s.burst, c * s.scale})
 			return groups
 		}
 	}

@@ -1,6 +1,10 @@
 package sde
 
-import "math"
+import (
+	"math"
+
+	"holdfast/model"
+)
 
 // kinetic is the scheme for a network's equation: its laws are a program over
 // lanes.
@@ -59,8 +63,20 @@ func newKinetic(w *worker, s *chemical, room int) *kinetic {
 	}
 	k.machine = newMachine(&c.program, room)
 	k.width = room
+	for _, i := range c.inputs {
+		w.inputs = append(w.inputs, k.inputRow(s.net, i))
+	}
 	w.x = table{k.file[:len(s.net.Species)*room], room}
 	return k
+}
+
+// inputRow gives the registers of a constant that varies, at its median in all lanes.
+func (k *kinetic) inputRow(net *model.Network, i input) inputRow {
+	row := inputRow{i.constant, k.lanes(i.register, k.room)}
+	for lane := range row.lanes {
+		row.lanes[lane] = net.Constants[i.constant].Value
+	}
+	return row
 }
 
 // newLeg compiles the propensities of a direction's reactions.
@@ -68,6 +84,9 @@ func newLeg(c *compiler, g *group) leg {
 	var rates []int
 	var net, spread []float64
 	for _, s := range g.shares {
+		if s.burst != nil {
+			return newBurstLeg(c, g)
+		}
 		rates = append(rates, c.reaction(s.reaction))
 		net, spread = append(net, s.net), append(spread, s.spread)
 	}
@@ -76,6 +95,23 @@ func newLeg(c *compiler, g *group) leg {
 		l.pair, l.up, l.down = true, rates[0], rates[1]
 	} else {
 		l.drift, l.variance = c.sum(rates, net), c.sum(rates, spread)
+	}
+	l.to = c.fresh()
+	return l
+}
+
+// newBurstLeg is newLeg for a direction with bursts whose means vary.
+func newBurstLeg(c *compiler, g *group) leg {
+	l := leg{drift: c.constant(0), variance: c.constant(0)}
+	for _, s := range g.shares {
+		rate := c.reaction(s.reaction)
+		drift, variance, net, spread := rate, rate, s.net, s.spread
+		if s.burst != nil {
+			drift, variance = c.burst(rate, s.burst)
+			net, spread = s.scale, s.scale*s.scale
+		}
+		l.drift = c.add(l.drift, c.mul(c.constant(net), drift))
+		l.variance = c.add(l.variance, c.mul(c.constant(spread), variance))
 	}
 	l.to = c.fresh()
 	return l

@@ -16,6 +16,8 @@ func (c *compiler) node(n *model.Node) int {
 	switch n.Op {
 	case model.OpNumber:
 		return c.constant(n.Value)
+	case model.OpConstant:
+		return c.named(n.Index)
 	case model.OpSpecies:
 		return c.div(n.Index, c.constant(c.net.Unit(n.Index)))
 	}
@@ -62,6 +64,9 @@ func (c *compiler) hill(op model.Op, a [3]int, n float64) int {
 // reaction gives the register of a reaction's propensity.
 func (c *compiler) reaction(r int) int {
 	re := &c.net.Reactions[r]
+	if variesIn(c.net, re.Free) {
+		return c.varied(r)
+	}
 	if !re.MassAction {
 		a := c.mul(c.constant(re.Scale), c.tree(re.Law))
 		if nonNegative(re.Law) {
@@ -69,7 +74,11 @@ func (c *compiler) reaction(r int) int {
 		}
 		return c.emit(instruction{op: opGuard, a: a})
 	}
-	a := c.constant(c.net.MassActionFactor(r))
+	return c.falling(re, c.constant(c.net.MassActionFactor(r)))
+}
+
+// falling gives the register of a ∏ n!/(n−ν)! over a reaction's reactants.
+func (c *compiler) falling(re *model.Reaction, a int) int {
 	for _, t := range re.Reactants {
 		for j := range t.Count {
 			a = c.mul(a, c.less(t.Species, j))
@@ -92,7 +101,7 @@ func nonNegative(n *model.Node) bool {
 	switch n.Op {
 	case model.OpNumber:
 		return n.Value >= 0
-	case model.OpSpecies, model.OpSqrt, model.OpAbs, model.OpExp:
+	case model.OpSpecies, model.OpConstant, model.OpSqrt, model.OpAbs, model.OpExp:
 		return true
 	case model.OpAdd, model.OpMul, model.OpDiv, model.OpMin:
 		return nonNegative(n.Args[0]) && nonNegative(n.Args[1])

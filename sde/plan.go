@@ -60,6 +60,13 @@ type Plan struct {
 	// goroutines. It must not keep x.
 	Sample func(run, k int, t float64, x []float64)
 
+	// Interval is the time, in the system's unit, for which constants of a network that
+	// vary in time are held at a value, to the nearest number of steps, at least one; 0: a
+	// twentieth of the shortest memory, over the square of the spread if that is above 1.
+	// Constants with a spread but no memory keep, through each run, a value of its own.
+	// The step is chosen at the medians. None for a System that Chemical did not make.
+	Interval float64
+
 	// Threads is the number of goroutines; 0: GOMAXPROCS. Lanes is the number of
 	// runs that one goroutine advances in lockstep; 0: chosen by the engine. Neither
 	// changes any outcome.
@@ -106,7 +113,7 @@ func (p Plan) normal() (Plan, error) {
 			}
 		}
 	}
-	if err := errors.Join(p.checkNumbers(), p.checkStart(), p.checkCores(), p.checkTimes()); err != nil {
+	if err := errors.Join(p.checkNumbers(), p.checkVariation(), p.checkStart(), p.checkCores(), p.checkTimes()); err != nil {
 		return p, err
 	}
 	return p.withStep()

@@ -11,8 +11,12 @@ import (
 type program struct {
 	code      []instruction
 	constants []constant
+	inputs    []input
 	registers int
 }
+
+// An input is a register that holds a constant of the network that varies.
+type input struct{ constant, register int }
 
 // An instruction puts the value of an operation on registers into a register.
 type instruction struct {

@@ -14,6 +14,7 @@ import (
 type job struct {
 	Plan
 	targets  []target
+	varies   *vary // the constants; nil: none does
 	outcomes []Outcome
 	queue    atomic.Int64 // runs taken
 	stopped  atomic.Bool
@@ -45,7 +46,7 @@ func Run(ctx context.Context, p Plan) (Result, error) {
 
 // newJob lays out outcomes that say that no run has begun.
 func newJob(p Plan) *job {
-	j := &job{Plan: p, targets: newTargets(&p), outcomes: make([]Outcome, p.Runs)}
+	j := &job{Plan: p, targets: newTargets(&p), varies: newVary(&p), outcomes: make([]Outcome, p.Runs)}
 	n := len(p.Start)
 	states := make([]float64, p.Runs*n)
 	for i := range j.outcomes {

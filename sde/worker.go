@@ -5,6 +5,7 @@ import (
 	"slices"
 
 	"holdfast/internal/stream"
+	"holdfast/internal/variation"
 )
 
 // A lane is a run under way. Its coordinates are in its worker's table.
@@ -14,6 +15,8 @@ type lane struct {
 	origin int64 // the worker's clock at the run's start
 	due    int64 // the clock at which a sample, the horizon or the budget is due
 	sample int   // index of the next of Plan.Times
+	turn   int64 // the clock at which the constants' next interval begins
+	cell   *variation.Cell
 }
 
 // A worker advances the runs of one goroutine, several in lockstep.
@@ -27,6 +30,7 @@ type worker struct {
 	block   int   // steps in a block
 	clock   int64 // steps of every lane
 	flagged bool  // a lane needs a look
+	inputs  []inputRow
 
 	normals []float64
 	counts  []int64
@@ -111,6 +115,9 @@ func (w *worker) compact() {
 			w.lanes[n] = w.lanes[i]
 			for s := range w.Start {
 				w.x.cells[s*w.x.room+n] = w.x.cells[s*w.x.room+i]
+			}
+			for _, r := range w.inputs {
+				r.lanes[n] = r.lanes[i]
 			}
 		}
 		n++
@@ -208,8 +215,9 @@ func (w *worker) begin(i int) {
 		if l.run < 0 {
 			return
 		}
-		l.random = stream.New(w.Seed, w.Point, w.stream|langevinStream|w.Group<<40|(w.FirstReplicate+uint64(l.run)))
+		l.random = stream.New(w.Seed, w.Point, w.replicate(l.run))
 		l.origin, l.sample = w.clock, 0
+		w.vary(i)
 		w.setDue(l)
 		if w.goesOn(i) {
 			return
@@ -223,6 +231,11 @@ const (
 	langevinStream = 1 << 61
 	halfStream     = 1 << 62
 )
+
+// replicate tells the random numbers of a run from those of any other.
+func (w *worker) replicate(run int) uint64 {
+	return w.stream | langevinStream | w.Group<<40 | (w.FirstReplicate + uint64(run))
+}
 
 // goesOn gives out what is due, and tells whether a lane's run goes on; if not, it
 // is recorded.
@@ -283,6 +296,7 @@ func (w *worker) pass(i int) bool {
 		w.Sample(l.run, l.sample, w.Times[l.sample], w.state(w.normals[:0], w.x, i))
 		l.sample++
 	}
+	w.turnOver(i)
 	w.setDue(l)
 	switch steps := w.clock - l.origin; {
 	case w.steps > 0 && steps >= w.steps:
@@ -311,6 +325,7 @@ func (w *worker) setDue(l *lane) {
 	if steps < math.MaxInt64-l.origin {
 		l.due = l.origin + steps
 	}
+	l.due = min(l.due, l.turn)
 }
 
 // state appends a lane's coordinates to dst.
@@ -343,7 +358,7 @@ func (w *worker) record(i int, e Ending, core int) {
 func (w *worker) reason(i int, o *Outcome) *NotFiniteError {
 	e := &NotFiniteError{Reaction: -1, Coordinate: -1, State: o.State, Time: o.Time}
 	if c, ok := w.System.(*chemical); ok {
-		if r, a, found := c.badRate(o.State); found {
+		if r, a, found := c.badRate(o.State, w.valuesOf(i)); found {
 			e.Reaction, e.Name, e.Value = r, c.net.Reactions[r].Name, a
 			return e
 		}
