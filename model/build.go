@@ -144,10 +144,8 @@ func (n *Network) bindReaction(d DraftReaction) (Reaction, error) {
 	if err := n.bindBursts(&r); err != nil {
 		return r, err
 	}
-	for _, t := range slices.Concat(r.Net, r.Bursts) {
-		if n.Species[t.Species].Fixed {
-			r.Scale = 1
-		}
+	if !n.scales(&r) {
+		r.Scale = 1
 	}
 	if err := n.bindLaw(&r, d); err != nil {
 		return r, err

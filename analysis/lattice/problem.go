@@ -44,6 +44,8 @@ type Problem struct {
 	// MeansOnly leaves out what is not needed for dwell times: quasi-stationary
 	// laws, committors, weights and relaxation.
 	MeansOnly bool
+	// Sensitivities asks for the derivatives of the mean dwell times in the constants.
+	Sensitivities bool
 	// Progress, if set, is told from time to time what is being done and which
 	// part of it, 0 to 1, is done. It is called from one goroutine at a time.
 	Progress func(stage string, done float64)

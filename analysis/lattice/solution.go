@@ -29,6 +29,9 @@ type Solution struct {
 	// the relative error that cutting the lattice off causes in it; where an end is
 	// as rare as leaving the box it is large, and no number is to be trusted.
 	Pair, PairBound [][]float64
+	// Sensitivity[a] has the derivatives in the constants, if they were asked for; nil
+	// for a state whose dwell may never end.
+	Sensitivity []*Sensitivity
 
 	// Species is the number of species; Counts holds each lattice state's counts,
 	// Species numbers a state. What follows is nil if only means were wanted.

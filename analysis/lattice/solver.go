@@ -59,6 +59,11 @@ func Solve(ctx context.Context, p Problem) (*Solution, error) {
 		return nil, err
 	}
 	out := s.means()
+	if p.Sensitivities {
+		if err := s.sensitivities(out); err != nil {
+			return nil, err
+		}
+	}
 	if !p.MeansOnly {
 		if err := s.describe(out); err != nil {
 			return nil, err

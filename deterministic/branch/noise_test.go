@@ -55,7 +55,7 @@ func approach(t *testing.T, build func(v float64) *model.Network, knob string, f
 // the three decades of the fit: the exponents, fitted to that, are within 1 %.
 func TestSlowRateAndVarianceNearAFold(t *testing.T) {
 	build := func(b float64) *model.Network {
-		n, err := draftOf(zoo.Latch(100)).Bind(0, map[string]float64{"b": b})
+		n, err := zoo.Latch(100).Rebind(0, map[string]float64{"b": b})
 		if err != nil {
 			t.Fatal(err)
 		}

@@ -11,7 +11,8 @@ import (
 // whole molecules will do. It is false where a total cannot be had by adding or
 // taking away molecules of single species.
 func rebind(n *model.Network, k Knob, v float64) (*model.Network, bool) {
-	d := draftOf(n)
+	d := n.Draft()
+	d.Declared = nil // the states themselves are followed
 	copies, set := 0.0, map[string]float64{}
 	switch k.kind {
 	case copiesKnob:
@@ -33,35 +34,6 @@ func rebind(n *model.Network, k Knob, v float64) (*model.Network, bool) {
 	}
 	out, err := d.Bind(copies, set)
 	return out, err == nil
-}
-
-// draftOf gives the network with its constants free again.
-func draftOf(n *model.Network) *model.Draft {
-	d := &model.Draft{
-		Title: n.Title, TimeUnit: n.TimeUnit, Generation: n.Generation, Copies: n.Copies,
-		Species: n.Species, Constants: n.Constants, Readout: n.Readout,
-	}
-	for i := range n.Reactions {
-		r := &n.Reactions[i]
-		dr := model.DraftReaction{Name: r.Name, Uses: r.Uses, Needs: r.Needs, Makes: r.Makes}
-		if r.MassAction {
-			dr.MassAction = coefficient(r)
-		} else {
-			dr.Rate = r.Free
-		}
-		d.Reactions = append(d.Reactions, dr)
-	}
-	return d
-}
-
-// coefficient is the tree of a mass-action law's constant: its law is the product
-// of that with one factor a reactant.
-func coefficient(r *model.Reaction) *model.Node {
-	tree := r.Free
-	for range r.Reactants {
-		tree = tree.Args[0]
-	}
-	return tree
 }
 
 // withTotal gives the species with molecules added at the start, or taken away,
