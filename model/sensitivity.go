@@ -104,3 +104,16 @@ func (n *Node) readsConstant(k int) bool {
 	n.Walk(func(m *Node) { found = found || m.Op == OpConstant && m.Index == k })
 	return found
 }
+
+// TotalsScale tells whether some conserved total has molecules that come with copies:
+// another number of copies is then another total, by whole molecules.
+func (n *Network) TotalsScale() bool {
+	for _, t := range n.Conserved() {
+		for i, w := range t.Weights {
+			if w != 0 && !n.Species[i].Fixed && t.Value != 0 {
+				return true
+			}
+		}
+	}
+	return false
+}

@@ -2,6 +2,7 @@ package hold
 
 import (
 	"context"
+	"fmt"
 	"time"
 
 	"holdfast/analysis/records"
@@ -40,6 +41,9 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 		}
 	}
 	j := &job{network: network, options: options, survey: list.Map}
+	if err := j.takeCores(); err != nil {
+		return nil, err
+	}
 	j.newReport()
 	j.report.List = list.String()
 	j.report.Warnings = append(j.report.Warnings, list.Warnings...)
@@ -62,4 +66,17 @@ func remaining(budget, spent int64) int64 {
 		return 0
 	}
 	return max(budget-spent, 1)
+}
+
+// takeCores puts the cores that were given in the place of the survey's.
+func (j *job) takeCores() error {
+	given := j.options.Cores
+	if given == nil {
+		return nil
+	}
+	if have := len(j.survey.Cores); len(given) != have {
+		return &OptionError{"cores", len(given), fmt.Sprintf("one for each of the %d stable states", have)}
+	}
+	j.survey.Cores = given
+	return nil
 }

@@ -7,6 +7,7 @@ import (
 	"slices"
 
 	"holdfast/analysis/survey/resting"
+	"holdfast/model"
 )
 
 const (
@@ -53,6 +54,11 @@ type Options struct {
 
 	// Memory is the most bytes that the lattice may take; 0: 4 GiB.
 	Memory int64
+
+	// Cores, if not nil, are the regions between which dwells are counted, one for each
+	// stable state in the survey's order, instead of the survey's own: so that designs
+	// that differ a little are held between the same ones.
+	Cores []model.Core
 
 	// Folder, if not empty, receives the records. Command is what they carry as
 	// the command that made them.

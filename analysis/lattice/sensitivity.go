@@ -221,7 +221,7 @@ func (l *lever) result(out *Solution, a int) *Sensitivity {
 
 // withoutCopies takes back the derivatives in copies where they change a total.
 func (s *Sensitivity) withoutCopies(n *model.Network) *Sensitivity {
-	if !totalsScale(n) {
+	if !n.TotalsScale() {
 		return s
 	}
 	all := slices.Concat([][]float64{s.Mean, s.MeanError, s.Lost, s.LostError}, s.End, s.EndError)
@@ -231,16 +231,4 @@ func (s *Sensitivity) withoutCopies(n *model.Network) *Sensitivity {
 		}
 	}
 	return s
-}
-
-// totalsScale tells whether some conserved total has molecules that come with copies.
-func totalsScale(n *model.Network) bool {
-	for _, t := range n.Conserved() {
-		for i, w := range t.Weights {
-			if w != 0 && !n.Species[i].Fixed && t.Value != 0 {
-				return true
-			}
-		}
-	}
-	return false
 }

@@ -36,6 +36,15 @@ func digits(v float64, significant int) string {
 	return mantissa + "e" + sign + strings.TrimLeft(exponent[1:], "0")
 }
 
+// withSign writes a number with its sign, even of what is above 0.
+func withSign(v float64, significant int) string {
+	sign := "+"
+	if v < 0 {
+		sign = "−"
+	}
+	return sign + digits(math.Abs(v), significant)
+}
+
 // chance writes a probability, by what it lacks to 1 where it is near 1.
 func chance(p, loss hold.Value) string {
 	if loss > 0 && loss < 0.0005 {

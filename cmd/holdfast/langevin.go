@@ -28,12 +28,7 @@ func halvingText(s hold.StepReport) string {
 }
 
 // signed writes a value with two digits and its sign.
-func signed(v hold.Value) string {
-	if v < 0 {
-		return "−" + digits(-float64(v), 2)
-	}
-	return "+" + digits(float64(v), 2)
-}
+func signed(v hold.Value) string { return withSign(float64(v), 2) }
 
 // workText says what the answer cost, in what it is counted in.
 func workText(w hold.Work) string {

@@ -1,0 +1,198 @@
+package levers
+
+import (
+	"cmp"
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"slices"
+	"strconv"
+	"time"
+
+	"holdfast/analysis/hold"
+	"holdfast/analysis/lattice"
+	"holdfast/analysis/survey/resting"
+	"holdfast/deterministic"
+	"holdfast/model"
+)
+
+// A job is one levers job at work.
+type job struct {
+	network *model.Network
+	options Options
+	survey  *deterministic.Map
+	report  *Report
+	losses  [][2]*Loss // by parameter: below and above
+}
+
+// Run surveys the network, finds the slopes of every hold time in every constant and in
+// copies, and the way to the nearest fold, and writes the records if a folder is given.
+//
+// Errors are a *hold.OptionError, those of deterministic.Survey, of package lattice
+// where that route is asked for, of hold.Run and of the records. If ctx is done before
+// the job is, the report holds what was known by then and has Interrupted set; there is
+// no error then, but ctx's where nothing was known.
+func Run(ctx context.Context, network *model.Network, options Options) (*Report, error) {
+	begun := time.Now()
+	options, err := options.complete()
+	if err != nil {
+		return nil, err
+	}
+	list, err := resting.States(ctx, network)
+	if err != nil {
+		return nil, err
+	}
+	j := &job{network: network, options: options, survey: list.Map, report: newReport(network, options)}
+	for _, w := range slices.Concat(list.Map.Warnings, list.Warnings) {
+		j.warn("%s", w)
+	}
+	if err := j.findLosses(ctx); err != nil {
+		return nil, err
+	}
+	if err := j.takeRoute(ctx); err != nil {
+		return nil, err
+	}
+	j.finish()
+	j.report.Seconds = time.Since(begun).Seconds()
+	return j.report, j.write()
+}
+
+// parameters counts the constants, and copies, which come last.
+func (j *job) parameters() int { return len(j.network.Constants) + 1 }
+
+// copiesName is what copies are called among the constants.
+const copiesName = "copies"
+
+// parameter gives the name and today's value of a constant, or of copies.
+func (j *job) parameter(k int) (name string, value float64) {
+	if k == len(j.network.Constants) {
+		return copiesName, j.network.Copies
+	}
+	return j.network.Constants[k].Name, j.network.Constants[k].Value
+}
+
+// read tells whether anything depends on the parameter.
+func (j *job) read(k int) bool {
+	return k == len(j.network.Constants) || j.network.ReadsConstant(k)
+}
+
+// patience is the longest that auto lets the lattice take, in seconds by its own
+// estimate.
+const patience = 60
+
+// takeRoute finds the slopes by the route asked for, or by the lattice where it serves.
+func (j *job) takeRoute(ctx context.Context) error {
+	switch j.options.Route {
+	case Lattice:
+		j.report.Route = "lattice: as asked for"
+		return j.byLattice(ctx)
+	case Differences:
+		j.report.Route = j.differencesText("as asked for")
+		return j.byDifferences(ctx)
+	}
+	e, err := j.problem().Estimate(ctx)
+	switch {
+	case ctx.Err() != nil:
+		return context.Cause(ctx)
+	case err != nil:
+		j.report.Route = j.differencesText(why(err))
+		return j.byDifferences(ctx)
+	case e.Seconds > patience:
+		j.report.Route = j.differencesText(fmt.Sprintf("the lattice of %d states would take about %.0f s", e.States, e.Seconds))
+		return j.byDifferences(ctx)
+	}
+	j.report.Route = "lattice: the master equation itself, differentiated in all constants at once"
+	return j.byLattice(ctx)
+}
+
+func (j *job) differencesText(reason string) string {
+	return fmt.Sprintf("differences: the mean slope between each constant divided by %[1]g and multiplied by %[1]g; %[2]s", round(math.Exp(j.options.Step)), reason)
+}
+
+// round gives four significant digits.
+func round(v float64) float64 {
+	out, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 4, 64), 64)
+	return out
+}
+
+// why says in a few words why the lattice cannot serve.
+func why(err error) string {
+	var dimensions *lattice.DimensionError
+	var large *lattice.TooLargeError
+	switch {
+	case errors.As(err, &dimensions):
+		return fmt.Sprintf("the lattice serves three independent species at most, and this design has %d", dimensions.Dimensions)
+	case errors.As(err, &large):
+		return fmt.Sprintf("the lattice would need about %.3g GiB or more", float64(large.Estimate.Bytes)/(1<<30))
+	}
+	return "the lattice cannot serve: " + err.Error()
+}
+
+// finish sorts the levers and puts what they say into words.
+func (j *job) finish() {
+	for i := range j.report.Blocks {
+		b := &j.report.Blocks[i]
+		slices.SortStableFunc(b.Levers, func(x, y Lever) int { return cmp.Compare(rank(&y), rank(&x)) })
+	}
+	for i := range j.report.Blocks {
+		j.report.Blocks[i].First = j.first(&j.report.Blocks[i])
+	}
+	j.report.Together = j.together()
+}
+
+// rank is what levers are sorted by: slopes by their size, then constants that are 0
+// today, then what is not known.
+func rank(l *Lever) float64 {
+	v := math.Abs(float64(l.Slope().Value))
+	switch {
+	case math.IsNaN(v):
+		return -2
+	case l.PerUnit:
+		return -1
+	}
+	return v
+}
+
+// lever starts the entry of one parameter.
+func (j *job) lever(k int) Lever {
+	name, value := j.parameter(k)
+	l := Lever{Name: name, Value: hold.Value(value), PerUnit: value == 0, Below: j.losses[k][0], Above: j.losses[k][1], Slopes: []Slope{}}
+	switch {
+	case !j.read(k):
+		l.Note = "no reaction reads it"
+	case l.PerUnit:
+		l.Note = "0 today: % for each 0.01 added"
+	}
+	return l
+}
+
+// warn adds a warning, once.
+func (j *job) warn(format string, a ...any) {
+	if text := fmt.Sprintf(format, a...); !slices.Contains(j.report.Warnings, text) {
+		j.report.Warnings = append(j.report.Warnings, text)
+	}
+}
+
+// tell reports progress.
+func (j *job) tell(stage string, share float64) {
+	if j.options.Hold.Progress != nil {
+		j.options.Hold.Progress(hold.Progress{Stage: stage, Share: share})
+	}
+}
+
+// neverLeft reports a state that nothing leads out of.
+func (j *job) neverLeft(s int) {
+	inf := hold.Value(math.Inf(1))
+	j.report.Blocks = append(j.report.Blocks, Block{
+		From: j.survey.Stable()[s].Name, To: anyState, Mean: inf, Low: inf, High: inf, Levers: []Lever{},
+		Note: "no reaction leads out of it: it never returns, and no constant changes that",
+	})
+}
+
+// anyState stands for leaving a state by whichever way; elsewhere for an absorbing state
+// that is none of the resting states.
+const (
+	anyState  = "any"
+	elsewhere = "absorbed"
+)

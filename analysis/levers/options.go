@@ -1,0 +1,66 @@
+package levers
+
+import (
+	"fmt"
+	"runtime"
+	"slices"
+	"strings"
+
+	"holdfast/analysis/hold"
+)
+
+// The routes to the slopes.
+const (
+	// Auto takes the lattice where it serves, and differences elsewhere.
+	Auto = "auto"
+	// Lattice differentiates the master equation's mean dwell times.
+	Lattice = "lattice"
+	// Differences makes two hold jobs for each constant.
+	Differences = "differences"
+)
+
+// Routes lists the routes that can be asked for.
+func Routes() []string { return []string{Auto, Lattice, Differences} }
+
+const (
+	// defaultStep, 10 % up, balances two errors of a difference of sampled hold times:
+	// intervals of ±10 % on the two leave ±0.7 on the slope, while the mean slope over the
+	// step differs from today's by about its second derivative over 600.
+	defaultStep = 0.0953101798
+	leastStep   = 1e-3
+	mostStep    = 0.5
+)
+
+// Options say how the slopes are found. The zero value is right for most designs.
+type Options struct {
+	// Route is one of Routes; empty: Auto.
+	Route string
+	// Step is the logarithm of the factor by which a constant is turned up and down for
+	// a difference; 0: that of 10 %. Where a fold is nearer than two steps, the step is half the
+	// way to it.
+	Step float64
+	// Hold says how the hold jobs of differences are done: route, precision, budget
+	// (each job has its own), seed. Threads and Memory serve the lattice too. Folder and
+	// Command are for the levers' own records; Progress is told how far the job is.
+	Hold hold.Options
+}
+
+// complete gives the options with zeros replaced, or a *hold.OptionError.
+func (o Options) complete() (Options, error) {
+	if o.Route == "" {
+		o.Route = Auto
+	}
+	if !slices.Contains(Routes(), o.Route) {
+		return o, &hold.OptionError{Name: "route", Value: fmt.Sprintf("%q", o.Route), Allowed: "one of " + strings.Join(Routes(), ", ")}
+	}
+	if o.Step == 0 {
+		o.Step = defaultStep
+	}
+	if !(o.Step >= leastStep && o.Step <= mostStep) {
+		return o, &hold.OptionError{Name: "step", Value: o.Step, Allowed: fmt.Sprintf("from %g to %g", leastStep, mostStep)}
+	}
+	if o.Hold.Threads == 0 {
+		o.Hold.Threads = runtime.GOMAXPROCS(0)
+	}
+	return o, nil
+}
