@@ -57,14 +57,17 @@ func (w *worker) work() {
 	}
 }
 
-// compact drops the lanes that have no run.
+// compact drops the lanes that have no run. It moves none in vain: a lane is large.
 func (w *worker) compact() {
 	n := 0
 	for i := range w.lanes {
-		if w.lanes[i].run >= 0 {
-			w.lanes[n], w.lanes[i] = w.lanes[i], w.lanes[n]
-			n++
+		if w.lanes[i].run < 0 {
+			continue
 		}
+		if i != n {
+			w.lanes[n], w.lanes[i] = w.lanes[i], w.lanes[n]
+		}
+		n++
 	}
 	w.lanes = w.lanes[:n]
 }
