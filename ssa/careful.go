@@ -39,13 +39,13 @@ func (k *blocks) replace(l *lane, step int) {
 }
 
 func (k *blocks) event(l *lane, step int) {
-	draw, total := l.draws[step], k.total(l)
-	t := l.time + draw.Exp/total
+	total := k.total(l)
+	t := l.time + l.draws.Exp[step]/total
 	if t > l.next && !k.late(l, t) {
 		k.replace(l, step+1)
 	} else {
 		l.time = t
-		k.fire(l, k.choose(l, draw.Unit*total))
+		k.fire(l, k.choose(l, l.draws.Unit[step]*total))
 		l.left--
 	}
 	k.rest(l, step+1)

@@ -23,7 +23,7 @@ type lane struct {
 
 	// draws are those of a block; undrawn is random as it was at step first of the
 	// block, when those from there on were made. See blocks.
-	draws   [blockSteps]stream.Draw
+	draws   stream.Batch
 	undrawn stream.Draws
 	first   int
 	drawn   int
@@ -78,13 +78,13 @@ func (s *system) events(l *lane) int64 {
 
 // draw gives the next of the lane's draws, for kernels that go through them lane by
 // lane; drawn tells how many of the block have been used.
-func (l *lane) draw() *stream.Draw {
+func (l *lane) draw() stream.Draw {
 	if l.drawn == blockSteps {
 		l.random.Fill(&l.draws)
 		l.drawn = 0
 	}
 	l.drawn++
-	return &l.draws[l.drawn-1]
+	return stream.Draw{Exp: l.draws.Exp[l.drawn-1], Unit: l.draws.Unit[l.drawn-1]}
 }
 
 // redraw makes the draws of a block from a step on.
@@ -95,7 +95,8 @@ func (l *lane) redraw(step int) {
 		return
 	}
 	for i := step; i < blockSteps; i++ {
-		l.draws[i] = l.random.Next()
+		d := l.random.Next()
+		l.draws.Exp[i], l.draws.Unit[i] = d.Exp, d.Unit
 	}
 }
 

@@ -7,12 +7,12 @@ func rushOne(k *lookup, lanes []lane, step, i int) (int, int) {
 		for ; i < len(lanes); i++ {
 			l := &lanes[i]
 			at := l.at[0]
-			e, draw := &entries[uint32(at)], &l.draws[step&(blockSteps-1)]
-			t := l.time + draw.Exp/e.total
+			e := &entries[uint32(at)]
+			t := l.time + l.draws.Exp[step&(blockSteps-1)]/e.total
 			if e.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := draw.Unit * e.total
+			u := l.draws.Unit[step&(blockSteps-1)] * e.total
 			p := 3 - (above(e.sums[0], u) + above(e.sums[1], u) + above(e.sums[2], u))
 			if bursty>>p&1 != 0 {
 				return step, i

@@ -11,13 +11,13 @@ func rushPair(k *lookup, lanes []lane, step, i int) (int, int) {
 		for ; i < len(lanes); i++ {
 			l := &lanes[i]
 			at := l.at[0]
-			x, y, draw := &entries[uint32(at)], &entries[at>>32], &l.draws[step&(blockSteps-1)]
+			x, y := &entries[uint32(at)], &entries[at>>32]
 			total := x.total + y.total
-			t := l.time + draw.Exp/total
+			t := l.time + l.draws.Exp[step&(blockSteps-1)]/total
 			if x.cores&y.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := draw.Unit * total
+			u := l.draws.Unit[step&(blockSteps-1)] * total
 			r := above(x.sums[0], u) + above(x.total, u) + above(x.total+y.sums[0], u)
 			l.time = t
 			l.at[0] = at + shifts[r&3]

@@ -18,12 +18,11 @@ func rushFour(k *lookup, lanes []lane, step, i int) (int, int) {
 			end1 := end0 + e1.total
 			end2 := end1 + e2.total
 			total := end2 + e3.total
-			draw := &l.draws[step&(blockSteps-1)]
-			t := l.time + draw.Exp/total
+			t := l.time + l.draws.Exp[step&(blockSteps-1)]/total
 			if e0.cores&e1.cores&e2.cores&e3.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := draw.Unit * total
+			u := l.draws.Unit[step&(blockSteps-1)] * total
 			l.before[1], l.before[2], l.before[3] = end0, end1, end2
 			g := 3 - (above(end0, u) + above(end1, u) + above(end2, u))
 			b, sums := l.before[g&7], &entries[uint32(l.at[g>>1&3]>>(g<<5&32))].sums
@@ -56,12 +55,11 @@ func rushSix(k *lookup, lanes []lane, step, i int) (int, int) {
 			end3 := end2 + e3.total
 			end4 := end3 + e4.total
 			total := end4 + e5.total
-			draw := &l.draws[step&(blockSteps-1)]
-			t := l.time + draw.Exp/total
+			t := l.time + l.draws.Exp[step&(blockSteps-1)]/total
 			if e0.cores&e1.cores&e2.cores&e3.cores&e4.cores&e5.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := draw.Unit * total
+			u := l.draws.Unit[step&(blockSteps-1)] * total
 			l.before[1], l.before[2], l.before[3], l.before[4], l.before[5] = end0, end1, end2, end3, end4
 			g := 5 - (above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u))
 			b, sums := l.before[g&7], &entries[uint32(l.at[g>>1&3]>>(g<<5&32))].sums
@@ -97,12 +95,11 @@ func rushEight(k *lookup, lanes []lane, step, i int) (int, int) {
 			end5 := end4 + e5.total
 			end6 := end5 + e6.total
 			total := end6 + e7.total
-			draw := &l.draws[step&(blockSteps-1)]
-			t := l.time + draw.Exp/total
+			t := l.time + l.draws.Exp[step&(blockSteps-1)]/total
 			if e0.cores&e1.cores&e2.cores&e3.cores&e4.cores&e5.cores&e6.cores&e7.cores != 0 || !(t <= l.next) {
 				return step, i
 			}
-			u := draw.Unit * total
+			u := l.draws.Unit[step&(blockSteps-1)] * total
 			l.before[1], l.before[2], l.before[3], l.before[4], l.before[5], l.before[6], l.before[7] = end0, end1, end2, end3, end4, end5, end6
 			g := 7 - (above(end0, u) + above(end1, u) + above(end2, u) + above(end3, u) + above(end4, u) + above(end5, u) + above(end6, u))
 			b, sums := l.before[g&7], &entries[uint32(l.at[g>>1&3]>>(g<<5&32))].sums

@@ -1,0 +1,7 @@
+//go:build !amd64
+
+package stream
+
+func fill(dst *Batch, high, low uint64) (edges uint64) {
+	return fillPlain(dst, &expZiggurat.strips, &oneAndTwo, high, low)
+}
