@@ -21,11 +21,15 @@ func newKernel(w *worker) kernel {
 
 // rush gives the fastest rush for the rows.
 func (k *lookup) rush() rush {
-	narrow := k.bursty == 0
-	for _, r := range k.rows {
-		narrow = narrow && len(r.reactions) <= 2
+	if r := k.wideRush(); r != nil {
+		return r
 	}
-	if len(k.rows) == 2 && narrow {
+	return k.plainRush()
+}
+
+// plainRush gives the fastest rush in Go for the rows.
+func (k *lookup) plainRush() rush {
+	if k.pair() {
 		return rushPair
 	}
 	switch k.width() {
@@ -37,6 +41,15 @@ func (k *lookup) rush() rush {
 		return rushSix
 	}
 	return rushEight
+}
+
+// pair tells whether there are two rows of at most two reactions each, without bursts.
+func (k *lookup) pair() bool {
+	narrow := k.bursty == 0
+	for _, r := range k.rows {
+		narrow = narrow && len(r.reactions) <= 2
+	}
+	return len(k.rows) == 2 && narrow
 }
 
 // rushNone leaves all events to be done with care.

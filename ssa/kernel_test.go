@@ -17,7 +17,11 @@ import (
 var kernels = map[string]func(*worker) kernel{
 	"direct":  func(w *worker) kernel { return newDirect(w) },
 	"careful": func(w *worker) kernel { return newBlocks(newLookup(w), rushNone) },
-	"rush":    newKernel,
+	"plain": func(w *worker) kernel {
+		k := newLookup(w)
+		return newBlocks(k, k.plainRush())
+	},
+	"rush": newKernel,
 }
 
 // runWith is Run with a given kernel.
@@ -90,10 +94,10 @@ func TestKernelsMakeTheSameRuns(t *testing.T) {
 		t.Run(name, func(t *testing.T) {
 			var want Result
 			var wantSeen samples
-			for i, k := range []string{"direct", "careful", "rush"} {
+			for i, k := range []string{"direct", "careful", "plain", "rush"} {
 				var seen samples
 				p.Sample = seen.add
-				if k == "careful" && newKernelIsDirect(p) {
+				if (k == "careful" || k == "plain") && newKernelIsDirect(p) {
 					continue
 				}
 				got := runWith(t, p, kernels[k])

@@ -6,20 +6,16 @@ import (
 	"holdfast/internal/stream"
 )
 
-// A lane is a run under way.
+// A lane is a run under way. What a rush needs comes first and fills a line of the
+// cache; kernels in assembly ask that draws be aligned.
 type lane struct {
 	at   position // see lookup
 	time float64
 	// next is the time that an event may not pass without note: of the next sample
 	// or of the horizon.
-	next   float64
-	random stream.Draws  // two numbers an event
-	bursts stream.Stream // sizes of bursts
-	accept stream.Stream // acceptance in Sparse
-	left   int64         // events until the budget is spent
-	run    int           // −1: the lane has no run
-	sample int           // index of the next of Plan.Times
-	counts []int64
+	next float64
+	left int64 // events until the budget is spent
+	run  int   // −1: the lane has no run
 
 	// draws are those of a block; undrawn is random as it was at step first of the
 	// block, when those from there on were made. See blocks.
@@ -28,12 +24,20 @@ type lane struct {
 	first   int
 	drawn   int
 
+	random stream.Draws  // two numbers an event
+	bursts stream.Stream // sizes of bursts
+	accept stream.Stream // acceptance in Sparse
+	sample int           // index of the next of Plan.Times
+	counts []int64
+
 	before [maxRows]float64 // scratch of rushes: sums of all rows before each; that before the first is 0
 
 	scales []float64 // of the bursts whose means vary, by slot
 
 	values, sums, ends []float64 // see direct
 	classes            *classes  // see sparse
+
+	_ [32]byte // to a whole number of lines of the cache
 }
 
 // never is a total propensity below which nothing is ever going to happen: the

@@ -16,9 +16,13 @@ const (
 const maxRows = tabledGroups
 
 // A position holds the entries of up to eight rows that a lane is at, two to a
-// word: that of row 2i in the lower half of word i, that of row 2i+1 in the upper.
-// A firing adds a word to each, whose halves may be negative.
+// word: that of row 2i in the lower half of word i, that of row 2i+1 in the upper,
+// each times entryScale. A firing adds a word to each, whose halves may be negative.
 type position [maxRows / 2]uint64
+
+// entryScale makes an entry's number the offset of its cores in bytes, and a fourth of
+// the offset of its sums, so that kernels in assembly need not work them out.
+const entryScale = 8
 
 // lookup is what the kernels of Dense with tables have in common: rows by
 // counts, filled in where a lane comes to them, and laid out anew where one goes
@@ -29,8 +33,11 @@ type lookup struct {
 	// entries are those of all rows. Entry nowhere is never filled in: it is where
 	// lanes without a run stay. Entry nothing is that of rows that are not there.
 	entries []entry
-	steps   []int64 // the largest increase of each species by one firing
-	shifts  [maxRows * groupWidth]position
+	// cores has a word for each entry, with a bit for each target whose bounds the
+	// entry's counts lie within.
+	cores  []uint64
+	steps  []int64 // the largest increase of each species by one firing
+	shifts [maxRows * groupWidth]position
 	// reaction at each place, groupWidth to a row; −1: none
 	reaction [maxRows * groupWidth]int
 
@@ -100,9 +107,10 @@ func (k *lookup) hold(counts []int64) bool {
 	}
 	k.entries = make([]entry, end)
 	for i := range k.entries {
-		k.entries[i].total = math.NaN()
+		k.entries[i] = unfilled()
 	}
-	k.entries[nothing] = entry{cores: math.MaxUint64}
+	k.cores = make([]uint64, end)
+	k.entries[nothing], k.cores[nothing] = entry{}, math.MaxUint64
 	k.setShifts()
 	return true
 }
@@ -137,7 +145,7 @@ func (k *lookup) shift(r int) (shift position) {
 	for _, c := range k.changes.of(r) {
 		for i, row := range k.rows {
 			if j := slices.Index(row.species, int(c.species)); j >= 0 {
-				shift[i/2] += uint64(c.by*row.strides[j]) << (32 * (i % 2))
+				shift[i/2] += uint64(entryScale*c.by*row.strides[j]) << (32 * (i % 2))
 			}
 		}
 	}
@@ -149,17 +157,17 @@ func (k *lookup) locate(counts []int64) (at position, within bool) {
 	within = true
 	for i, row := range k.rows {
 		index, ok := row.index(counts)
-		at[i/2] += uint64(index) << (32 * (i % 2))
+		at[i/2] += uint64(entryScale*index) << (32 * (i % 2))
 		within = within && ok
 	}
 	for i := len(k.rows); i < maxRows; i++ {
-		at[i/2] += nothing << (32 * (i % 2))
+		at[i/2] += entryScale * nothing << (32 * (i % 2))
 	}
 	return at, within
 }
 
 // half gives the entry of row i in a position.
-func (at *position) half(i int) int64 { return int64(uint32(at[i/2] >> (32 * (i % 2)))) }
+func (at *position) half(i int) int64 { return int64(uint32(at[i/2]>>(32*(i%2))) / entryScale) }
 
 func (k *lookup) leave(l *lane) {
 	for i, row := range k.rows {
@@ -194,11 +202,12 @@ func (k *lookup) place(l *lane) bool {
 func (k *lookup) total(l *lane) float64 {
 	sum := 0.0
 	for i, row := range k.rows {
-		e := &k.entries[l.at.half(i)]
-		if e.total != e.total {
-			row.fill(e, k.props, k.targets, l.counts)
+		n := l.at.half(i)
+		e := &k.entries[n]
+		if math.IsNaN(e.total()) {
+			*e, k.cores[n] = row.entry(k.props, l.counts), row.cores(k.targets, l.counts)
 		}
-		sum += e.total
+		sum += e.total()
 	}
 	return sum
 }
@@ -207,14 +216,14 @@ func (k *lookup) total(l *lane) float64 {
 func (k *lookup) choose(l *lane, u float64) int {
 	before, g := 0.0, 0
 	for ; g < len(k.rows)-1; g++ {
-		after := before + k.entries[l.at.half(g)].total
+		after := before + k.entries[l.at.half(g)].total()
 		if u < after {
 			break
 		}
 		before = after
 	}
 	e, j := &k.entries[l.at.half(g)], 0
-	for j < len(e.sums) && before+e.sums[j] <= u {
+	for j < groupWidth-1 && before+e[j] <= u {
 		j++
 	}
 	return k.reaction[g*groupWidth+j]

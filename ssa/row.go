@@ -1,5 +1,7 @@
 package ssa
 
+import "math"
+
 const (
 	// rowEntries is the most entries of a row of one species, and crossEntries of
 	// one of several.
@@ -11,17 +13,21 @@ const (
 	crossCounts = 2
 )
 
-// An entry is what a row knows of one combination of its species' counts. An
-// entry whose total is NaN has not been filled in, or must not be: a count lies
+// An entry is what a row knows of one combination of its species' counts: e[j] is
+// the sum of the first j+1 propensities of the group, and from its last reaction on
+// their total. An entry of NaNs has not been filled in, or must not be: a count lies
 // beyond the row, or a rate is bad.
-type entry struct {
-	// total is the sum of the group's propensities, and sums[j] that of the first
-	// j+1 of them; the last of them is total.
-	total float64
-	sums  [groupWidth - 1]float64
-	// cores has a bit for each target whose bounds these counts lie within. Targets
-	// from the 64th on share a bit.
-	cores uint64
+type entry [groupWidth]float64
+
+// total is the sum of the group's propensities.
+func (e *entry) total() float64 { return e[groupWidth-1] }
+
+// unfilled is an entry of NaNs.
+func unfilled() (e entry) {
+	for j := range e {
+		e[j] = math.NaN()
+	}
+	return e
 }
 
 // A row is the table of one group over the counts of its species: a stretch of the
@@ -87,29 +93,27 @@ func (r *row) read(index int64, counts []int64) {
 	}
 }
 
-// fill works out the entry at counts; one with a bad rate stays unfilled.
-func (r *row) fill(e *entry, props []propensity, targets []target, counts []int64) {
+// entry works out the entry at counts; that of a bad rate is unfilled.
+func (r *row) entry(props []propensity, counts []int64) (e entry) {
 	sum := 0.0
-	for j, reaction := range r.reactions {
-		a := props[reaction].at(counts)
-		if bad(a) {
-			return
+	for j := range e {
+		if j < len(r.reactions) {
+			a := props[r.reactions[j]].at(counts)
+			if bad(a) {
+				return unfilled()
+			}
+			sum += a
 		}
-		sum += a
-		if j < len(e.sums) {
-			e.sums[j] = sum
-		}
+		e[j] = sum
 	}
-	for j := len(r.reactions); j < len(e.sums); j++ {
-		e.sums[j] = sum
+	if sum < never {
+		return entry{}
 	}
-	e.cores = r.cores(targets, counts)
-	if e.total = sum; sum < never {
-		e.total, e.sums = 0, [groupWidth - 1]float64{}
-	}
+	return e
 }
 
-// cores gives the bits of the targets whose bounds hold in the row's species.
+// cores gives the bits of the targets whose bounds hold in the row's species. Targets
+// from the 64th on share a bit.
 func (r *row) cores(targets []target, counts []int64) uint64 {
 	bits := uint64(0)
 	for k := range targets {
