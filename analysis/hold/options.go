@@ -91,6 +91,12 @@ func (e *OptionError) Error() string {
 	return fmt.Sprintf("%s is %v; it must be %s", e.Name, e.Value, e.Allowed)
 }
 
+// Check says what is wrong with the options, as Run would: an *OptionError.
+func (o Options) Check() error {
+	_, err := o.complete()
+	return err
+}
+
 // complete gives the options with zeros replaced, or an *OptionError.
 func (o Options) complete() (Options, error) {
 	switch {

@@ -22,8 +22,8 @@ func Provenance(network *model.Network, seed uint64, command string) records.Pro
 	}
 }
 
-// WriteStates writes the table states of a survey.
-func WriteStates(folder *records.Folder, survey *deterministic.Map) error {
+// StateRecords are the rows of the table states for a survey.
+func StateRecords(survey *deterministic.Map) []records.State {
 	states := make([]records.State, len(survey.States))
 	for i := range survey.States {
 		s := &survey.States[i]
@@ -32,7 +32,12 @@ func WriteStates(folder *records.Folder, survey *deterministic.Map) error {
 			Amounts: s.Amounts, Molecules: s.Molecules, Deviation: deviations(s), Eigenvalue: leading(s),
 		}
 	}
-	return records.WriteStates(folder, speciesNames(survey.Network), states)
+	return states
+}
+
+// WriteStates writes the table states of a survey.
+func WriteStates(folder *records.Folder, survey *deterministic.Map) error {
+	return records.WriteStates(folder, speciesNames(survey.Network), StateRecords(survey))
 }
 
 // A sink writes the records of a job. A nil sink takes everything and keeps nothing.

@@ -46,7 +46,7 @@ type command struct {
 type work func(ctx context.Context, t terminal, args []string) error
 
 func commands() []command {
-	return []command{checkCommand(), mapCommand(), holdCommand(), leversCommand(), traceCommand()}
+	return []command{checkCommand(), mapCommand(), holdCommand(), batchCommand(), leversCommand(), traceCommand()}
 }
 
 // runMain runs the command line and gives the exit status.

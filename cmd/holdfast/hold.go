@@ -32,15 +32,8 @@ func setupHold(f *pflag.FlagSet) work {
 	var asJSON, quiet bool
 	var threads int64
 	var memory float64
-	f.StringVar(&o.Route, "route", hold.Auto, "`route` to the hold times: "+strings.Join(hold.Routes(), ", "))
 	f.StringVar(&o.Second, "second", "", "a second `route`, held against the first")
-	positiveFlag(f, &memory, "memory", "most GiB that the lattice may take (4 if not given)")
-	positiveFlag(f, &o.Precision, "precision", "relative half-width of the 95 % interval to reach (0.1 if not given)")
-	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
-	countFlag(f, &o.Events, "events", "most reaction events in all, or steps of Langevin paths\n(6e8 if no limit is given)")
-	positiveFlag(f, &o.Step, "step", "step of Langevin paths, in the design's unit (0.02 over\nthe fastest rate if not given)")
-	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
-	f.Uint64Var(&o.Seed, "seed", 1, "`number` that chooses the random numbers")
+	effortFlags(f, &o, &memory)
 	countFlag(f, &threads, "threads", "goroutines (one a processor if not given)")
 	f.StringVar(&o.Folder, "out", "", "`folder` to write Arrow tables and manifest.json to")
 	f.BoolVar(&asJSON, "json", false, "print one JSON object instead of tables")
@@ -54,6 +47,18 @@ func setupHold(f *pflag.FlagSet) work {
 		o.Command = canonical("hold", path, f)
 		return runHold(ctx, t, path, design, o, asJSON, quiet)
 	}
+}
+
+// effortFlags declares how hold times are found, and at what effort.
+func effortFlags(f *pflag.FlagSet, o *hold.Options, memory *float64) {
+	f.StringVar(&o.Route, "route", hold.Auto, "`route` to the hold times: "+strings.Join(hold.Routes(), ", "))
+	positiveFlag(f, memory, "memory", "most GiB that the lattice may take (4 if not given)")
+	positiveFlag(f, &o.Precision, "precision", "relative half-width of the 95 % interval to reach (0.1 if not given)")
+	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
+	countFlag(f, &o.Events, "events", "most reaction events in all, or steps of Langevin paths\n(6e8 if no limit is given)")
+	positiveFlag(f, &o.Step, "step", "step of Langevin paths, in the design's unit (0.02 over\nthe fastest rate if not given)")
+	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
+	f.Uint64Var(&o.Seed, "seed", 1, "`number` that chooses the random numbers")
 }
 
 func runHold(ctx context.Context, t terminal, path string, design *designChoice, o hold.Options, asJSON, quiet bool) error {
