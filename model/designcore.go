@@ -46,7 +46,7 @@ func badStateName(name string) string {
 	switch {
 	case !isIdentifier(name):
 		return "a name is letters, digits and _, and begins with a letter"
-	case slices.Contains([]string{"any", "censored", "elsewhere", "absorbed", "stationary"}, name):
+	case slices.Contains([]string{"any", "every", "censored", "elsewhere", "absorbed", "stationary"}, name):
 		return "the word means something else in results"
 	case name == "saddle" || isNumbered(name, "saddle") || isNumbered(name, "unstable") || isNumbered(name, "degenerate"):
 		return "states that are not stable are called so"

@@ -61,6 +61,8 @@ type StateReport struct {
 	Kind      string           `json:"type"`
 	Amounts   map[string]Value `json:"amounts"`
 	Molecules map[string]Value `json:"molecules"`
+	// Stable tells that it can be held: a stable state or a declared one.
+	Stable bool `json:"-"`
 }
 
 // A DwellReport is the hold time of one ordered pair of states, or, where To is
@@ -150,7 +152,7 @@ func (j *job) newReport() {
 	}
 	for i := range j.survey.States {
 		s := &j.survey.States[i]
-		state := StateReport{s.Name, s.Kind.String(), map[string]Value{}, map[string]Value{}}
+		state := StateReport{s.Name, s.Kind.String(), map[string]Value{}, map[string]Value{}, i < len(j.survey.Stable())}
 		for k, name := range r.Species {
 			state.Amounts[name], state.Molecules[name] = Value(s.Amounts[k]), Value(s.Molecules[k])
 		}
