@@ -51,8 +51,9 @@ type Check struct {
 	Low     hold.Value `json:"found_low"`
 	High    hold.Value `json:"found_high"`
 	Sampled bool       `json:"sampled"`
-	// Loss is 1 − Found of a chance, which keeps its digits where that is near 1.
-	Loss hold.Value `json:"-"`
+	// Losses are 1 minus a chance and its limits, which keep their digits where those
+	// are near 1; NaN for a mean dwell.
+	Losses [3]hold.Value `json:"-"`
 	// Error is half the width between bounds, NaN where Sampled.
 	Error   hold.Value `json:"-"`
 	Verdict Verdict    `json:"verdict"`
@@ -64,7 +65,7 @@ type Check struct {
 // nowhere is the check of a state that is not there.
 func nowhere(spec int, state string) Check {
 	nan, none := hold.Value(math.NaN()), math.Inf(-1)
-	return Check{Spec: spec, State: state, Found: nan, Low: nan, High: nan, Loss: nan, Error: nan, Verdict: Fails, margin: [3]float64{none, none, none}}
+	return Check{Spec: spec, State: state, Found: nan, Low: nan, High: nan, Losses: [3]hold.Value{nan, nan, nan}, Error: nan, Verdict: Fails, margin: [3]float64{none, none, none}}
 }
 
 // newCheck holds a row of a report against a specification.
@@ -100,7 +101,8 @@ func verdict(low, high float64) Verdict {
 // holdMean compares mean dwells.
 func (c *Check) holdMean(s *Spec, d *hold.DwellReport) {
 	unit := hold.Value(s.Time / s.Amount)
-	c.Found, c.Low, c.High, c.Loss = d.Mean/unit, d.Low/unit, d.High/unit, hold.Value(math.NaN())
+	nan := hold.Value(math.NaN())
+	c.Found, c.Low, c.High, c.Losses = d.Mean/unit, d.Low/unit, d.High/unit, [3]hold.Value{nan, nan, nan}
 	c.margin = [3]float64{
 		math.Log(middle(d) / s.Time), orElse(math.Log(float64(d.Low)/s.Time), -1), orElse(math.Log(float64(d.High)/s.Time), 1),
 	}
@@ -128,7 +130,7 @@ func orElse(v float64, side int) float64 {
 func (c *Check) holdChance(s *Spec, d *hold.DwellReport, generations float64) {
 	asked := -math.Log(s.Chance)
 	h := chanceOf(s, d, generations)
-	c.Found, c.Low, c.High, c.Loss = h.Chance, h.Low, h.High, h.Loss[0]
+	c.Found, c.Low, c.High, c.Losses = h.Chance, h.Low, h.High, h.Loss
 	for i, loss := range h.Loss {
 		l := float64(loss)
 		c.margin[i] = math.Log(asked) - math.Log(-math.Log1p(-l))

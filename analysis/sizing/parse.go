@@ -53,7 +53,7 @@ func (p *parser) spec(s *Spec) error {
 // afterwards is the hint for what follows a complete specification.
 func (p *parser) afterwards(s *Spec) string {
 	if p.text[p.at] == '%' {
-		return "write a chance as a number between 0 and 1: " + short(s.Chance/100)
+		return "write a chance as a number between 0 and 1: " + strconv.FormatFloat(s.Chance/100, 'g', 12, 64)
 	}
 	if strings.HasPrefix(p.text[p.at:], "with") {
 		return fmt.Sprintf("a chance is asked of holding: %s holds %s with chance …", s.State, s.length())
@@ -221,7 +221,7 @@ func (p *parser) word() string {
 	return rest
 }
 
-func inWord(r rune) bool { return !unicode.IsSpace(r) && !strings.ContainsRune(`<>=≥≤%"`, r) }
+func inWord(r rune) bool { return !unicode.IsSpace(r) && !strings.ContainsRune(`<>=≥≤%,;"`, r) }
 
 // shown is the word at the place, or the sign that stands there.
 func (p *parser) shown() string {

@@ -1,11 +1,14 @@
 package sizing_test
 
 import (
+	"bytes"
 	"context"
+	"encoding/json"
 	"path/filepath"
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/analysis/records"
 	"holdfast/analysis/sizing"
 	"holdfast/model"
 )
@@ -43,30 +46,62 @@ func size(t testing.TB, n *model.Network, o sizing.Options, texts ...string) *si
 	return r
 }
 
-func TestDraft(t *testing.T) {
-	n := demo(t, "latch", 100)
-	for _, text := range []string{"high>=1000 generations", "high >= 2 generations", "every holds 200 generations with chance 0.9"} {
-		r := size(t, n, sizing.Options{Hold: hold.Options{Seed: 1}}, text)
-		t.Logf("%s: %s %+v %v", text, r.Outcome, r.Answer, r.Warnings)
-		for _, e := range r.Evaluations {
-			t.Logf("  %v %s %.5f %s %v %v", e.Setting, e.Verdict, e.Margin, e.Vanished+e.Failure, e.Checks[0].Found, e.Checks[0].Route)
+// The smallest latch whose high state holds 20 generations, against direct solutions of
+// the master equation at that size and at one less.
+func TestSmallestLatch(t *testing.T) {
+	n := demo(t, "latch", 30)
+	r := size(t, n, sizing.Options{}, "high >= 20 generations")
+	at := float64(r.Answer.Setting)
+	if got := latticeMean(t, n, at, "high"); got < 20*45 {
+		t.Errorf("%v copies: %v min, want 900 or more", at, got)
+	}
+	if got := latticeMean(t, n, at-1, "high"); got >= 20*45 || float64(r.Answer.Short) != at-1 {
+		t.Errorf("%v copies: %v min, want less than 900", at-1, got)
+	}
+	if e := r.At(r.Answer.Setting); e.Checks[0].Route != hold.Lattice || e.Verdict != sizing.Meets {
+		t.Errorf("%+v", e)
+	}
+}
+
+// The same answer, to the last digit, whatever the number of threads.
+func TestThreadsChangeNothing(t *testing.T) {
+	n := demo(t, "latch", 10)
+	var want []byte
+	for _, threads := range []int{1, 2, 5} {
+		o := sizing.Options{Hold: hold.Options{Seed: 4, Precision: 0.3, Threads: threads}, Knob: sizing.Knob{Name: "copies", Low: 5, High: 30}}
+		got, err := json.Marshal(size(t, n, o, "high >= 80 min"))
+		if err != nil {
+			t.Fatal(err)
+		}
+		if want == nil {
+			want = got
+		}
+		if !bytes.Equal(got, want) {
+			t.Errorf("%d threads:\n%s\nwant\n%s", threads, got, want)
 		}
 	}
-	n = demo(t, "latch", 30)
-	for _, k := range []struct {
-		knob sizing.Knob
-		text string
-	}{
-		{sizing.Knob{"a", 0.3, 0.6}, "high >= 20 generations"},
-		{sizing.Knob{"a", 0.3, 0.6}, "low >= 1 generations"},
-		{sizing.Knob{"a", 0.3, 0.6}, "every >= 10 generations"},
-		{sizing.Knob{"a", 0.3, 0.6}, "every >= 10000 generations"},
-		{sizing.Knob{"leak", 0, 0.6}, "every >= 10 generations"},
-	} {
-		r := size(t, n, sizing.Options{Knob: k.knob, Hold: hold.Options{Seed: 1}}, k.text)
-		t.Logf("%s: %s %+v %+v %v", k.text, r.Outcome, r.Answer, r.Window, r.Warnings)
-		for _, e := range r.Evaluations {
-			t.Logf("  %v %s %.5f %s %v %v", e.Setting, e.Verdict, e.Margin, e.Vanished+e.Failure, e.Checks[0].Found, e.Checks[0].Route)
+}
+
+// The table sizing has a row for each evaluation and check.
+func TestRecords(t *testing.T) {
+	n := demo(t, "latch", 10)
+	folder := filepath.Join(t.TempDir(), "out")
+	r := size(t, n, sizing.Options{Folder: folder, Command: "x", Knob: sizing.Knob{Name: "a", Low: 0.3, High: 0.6}}, "every >= 60 min", "high holds 10 min with chance 0.5")
+	f, err := records.Open(folder)
+	if err != nil {
+		t.Fatal(err)
+	}
+	rows := int64(0)
+	for i := range r.Evaluations {
+		rows += int64(len(r.Evaluations[i].Checks))
+	}
+	found := false
+	for _, table := range f.Manifest.Tables {
+		if table.Name == "sizing" {
+			found = table.Rows == rows
 		}
+	}
+	if !found {
+		t.Errorf("tables %+v, want sizing with %d rows", f.Manifest.Tables, rows)
 	}
 }

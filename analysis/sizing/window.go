@@ -42,12 +42,12 @@ func (s *searcher) end(from *Evaluation, direction float64) (*ending, error) {
 func (s *searcher) close(meets, fails *Evaluation, direction float64) (*ending, error) {
 	if fails.Vanished != "" {
 		inside, outside := s.vanishing(meets.Setting, fails.Setting)
-		e, err := s.evaluate(inside)
+		e, err := s.evaluate(s.setBack(meets.Setting, inside))
 		if err != nil {
 			return nil, err
 		}
 		if margin(e) >= 0 {
-			edge := hold.Value(inside)
+			edge := hold.Value(e.Setting)
 			text := s.vanishText(meets.Setting, inside, outside)
 			return &ending{End{Setting: edge, Surely: edge, May: edge, By: ByVanish, Text: text}, hold.Value(outside)}, nil
 		}
@@ -93,6 +93,18 @@ func (s *searcher) limits(out *ending, b bracket, direction float64) error {
 		}
 	}
 	return nil
+}
+
+// setBack goes from where a switch vanishes back towards a setting that meets the
+// specifications by the tolerance: at the very edge fluctuations are without bound, and
+// an evaluation would take for ever.
+func (s *searcher) setBack(meets, inside float64) float64 {
+	from, to := s.scale.coordinate(inside), s.scale.coordinate(meets)
+	back := s.scale.tolerance(from)
+	if back >= math.Abs(to-from) {
+		return meets
+	}
+	return s.scale.setting(from + math.Copysign(back, to-from))
 }
 
 // edge narrows a bracket that may have one end only, and gives none in that case.

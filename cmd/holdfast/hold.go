@@ -147,9 +147,11 @@ func writeLattice(w io.Writer, r *hold.Report) {
 	}
 }
 
-func generationText(r *hold.Report) string {
-	if g := float64(r.Generation); g > 0 {
-		return fmt.Sprintf(", generation %s %s", number(g), r.TimeUnit)
+func generationText(r *hold.Report) string { return generationWords(r.Generation, r.TimeUnit) }
+
+func generationWords(g hold.Value, unit string) string {
+	if g > 0 {
+		return fmt.Sprintf(", generation %s %s", value(g), unit)
 	}
 	return ""
 }
