@@ -78,8 +78,8 @@ type Watch struct {
 // Walkers is the number of runs that share the time of a Watch, and Stretches the
 // number of families that the excursions of each of them belong to, by when they begin.
 const (
-	Walkers   = climbLanes
-	Stretches = 4
+	Walkers   = 4
+	Stretches = 8
 )
 
 // Watch gives the excursions out of the core that began in the time watched: a Climb
@@ -101,10 +101,10 @@ func (c *Climber) Watch(ctx context.Context, w Watch) ([]Climb, error) {
 		return nil, ErrStill
 	}
 	c.course = &course{tracks: tracks, watching: true, burn: w.Burn}
-	c.active = climbLanes
-	for i := range c.lanes {
+	c.active = Walkers
+	for i := range c.lanes[:Walkers] {
 		l := &c.lanes[i]
-		l.number, l.time, l.until, l.timed = i, 0, w.Burn+w.Time/climbLanes, true
+		l.number, l.time, l.until, l.timed = i, 0, w.Burn+w.Time/Walkers, true
 		if !c.restart(l) {
 			l.number = -1
 		}

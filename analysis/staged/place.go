@@ -8,13 +8,13 @@ import (
 )
 
 const (
-	// burnTimes is how many relaxation times a run needs to forget its start: e⁻²⁰.
-	burnTimes = 20
+	// burnTimes is how many relaxation times a run needs to forget its start, but for e⁻¹⁰.
+	burnTimes = 10
 	// pilotTimes is how many relaxation times the first pilot watches.
 	pilotTimes = 400
 	// crossingTimes is about how many relaxation times lie between two crossings of the
 	// first rung, so that they know little of each other.
-	crossingTimes = 5
+	crossingTimes = 3
 	// aim is the chance of a stage. Work at a given precision goes as
 	// (1−p)/(p ln²p), which is least at 0.2; a little more keeps families apart.
 	aim = 0.25
@@ -30,6 +30,8 @@ type ladder struct {
 	steps   []step
 	flux    float64   // crossings of the first rung in a unit of time
 	chances []float64 // of each stage: from rung k on
+	// crossing is the number of events that a crossing takes, run that of one run of a stage.
+	crossing, run float64
 	stuck   *StuckError
 }
 
@@ -42,11 +44,15 @@ func (j *job) place(ctx context.Context) (*ladder, error) {
 	l := &ladder{}
 	offered := j.plan.Along.steps()
 	pool, offered, err := j.first(ctx, c, l, offered)
+	runs, before := 0, c.Events()
 	for err == nil && l.stuck == nil && len(l.chances) < len(l.steps) {
-		pool, offered, err = j.next(ctx, c, l, offered, pool)
+		var more int
+		pool, offered, more, err = j.next(ctx, c, l, offered, pool)
+		runs += more
 		j.tell("placing rungs", 0, c.Events())
 	}
 	j.events.Add(c.Events())
+	l.run = float64(c.Events()-before) / math.Max(1, float64(runs))
 	return l, err
 }
 
@@ -72,6 +78,7 @@ func (j *job) first(ctx context.Context, c *ssa.Climber, l *ladder, offered []st
 		switch {
 		case reached[k] >= leastCrossings:
 			l.steps, l.flux = append(l.steps, offered[k]), float64(reached[k])/watch
+			l.crossing = float64(c.Events()) / float64(reached[k])
 			for i := range seen {
 				if len(seen[i].Hits) > k {
 					pool = append(pool, ssa.Perch{Counts: seen[i].Hits[k], Weight: 1})
@@ -92,14 +99,14 @@ const (
 )
 
 // next places the rung after the last, or finds that the last stage leads home.
-func (j *job) next(ctx context.Context, c *ssa.Climber, l *ladder, offered []step, pool []ssa.Perch) ([]ssa.Perch, []step, error) {
+func (j *job) next(ctx context.Context, c *ssa.Climber, l *ladder, offered []step, pool []ssa.Perch) (next []ssa.Perch, left []step, runs int, err error) {
 	last := l.steps[len(l.steps)-1]
 	stage := ssa.Stage{Rungs: rungs(offered), Open: true, Guide: last.Rung}
 	var made []ssa.Climb
-	for runs := pilotRuns; ; runs *= 4 {
-		climbs, err := c.Climb(ctx, stage, deal(pool, runs, c.Draw()))
+	for more := pilotRuns; ; more *= 4 {
+		climbs, err := c.Climb(ctx, stage, deal(pool, more, c.Draw()))
 		if err != nil {
-			return nil, nil, err
+			return nil, nil, 0, err
 		}
 		made = append(made, climbs...)
 		k, share := choose(made, len(offered), j.plan.To)
@@ -107,13 +114,13 @@ func (j *job) next(ctx context.Context, c *ssa.Climber, l *ladder, offered []ste
 		switch enough := float64(home) / float64(len(made)); {
 		case enough >= aim || home >= leastCrossings && k < 0:
 			l.chances = append(l.chances, enough)
-			return nil, nil, nil
+			return nil, nil, len(made), nil
 		case k >= 0 && share*float64(len(made)) >= leastCrossings:
 			l.chances, l.steps = append(l.chances, share), append(l.steps, offered[k])
-			return met(made, k), offered[k+1:], nil
+			return met(made, k), offered[k+1:], len(made), nil
 		case len(made) >= mostPilotRuns:
 			l.stuck = j.neverAdvances(l, made, last.share)
-			return nil, nil, nil
+			return nil, nil, len(made), nil
 		}
 	}
 }

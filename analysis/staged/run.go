@@ -19,6 +19,9 @@ const (
 	// inflation what its variance is likely to be over that of independent stages.
 	spread    = 0.3
 	inflation = 1.5
+	// entrance is about the relative variance of what comes of one crossing of the first
+	// rung, with that of their number.
+	entrance = 2.5
 	// spare repeats, over those that the pilot says, make a miss of the precision rare.
 	spare = 1.2
 	// Streams of the pilots; repeat i has stream i.
@@ -73,15 +76,20 @@ func Run(ctx context.Context, p Plan) (*Result, error) {
 	return r, nil
 }
 
-// design sizes the repeats for ladder l.
+// design sizes the repeats for ladder l. The relative variance of one is about
+// entrance/crossings for where runs enter the ladder and rest/runs for how they get
+// on, at a cost of events that the pilot has seen; the ratio of the two is the one that is cheapest.
 func (l *ladder) design() *design {
 	d := &design{ladder: l}
-	sum := 2.0
+	rest := 0.0
 	for _, p := range l.chances {
-		sum += (1 - p) / p
+		rest += inflation * (1 - p) / p
 	}
-	d.runs = int(math.Max(100, inflation*sum/(spread*spread)))
-	d.time = float64(d.runs) / 2 / l.flux
+	rest = math.Max(rest, 0.1)
+	ratio := math.Sqrt(entrance * float64(len(l.chances)) * l.run / (rest * l.crossing))
+	ratio = math.Max(0.05, math.Min(ratio, 1))
+	d.runs = int(math.Max(100, math.Ceil((entrance/ratio+rest)/(spread*spread))))
+	d.time = math.Max(ratio*float64(d.runs), leastCrossings) / l.flux
 	return d
 }
 
