@@ -34,6 +34,9 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	if err != nil {
 		return nil, err
 	}
+	if err := options.checkAlong(network); err != nil {
+		return nil, err
+	}
 	list := options.States
 	if list == nil {
 		if list, err = resting.States(ctx, network); err != nil {

@@ -33,6 +33,9 @@ type Options struct {
 	// Step is the step of Langevin paths, in the design's unit; 0: 0.02 over the
 	// fastest rate at a resting state.
 	Step float64
+	// Along is what the progress of staged runs is measured along: AlongPath, AlongLine
+	// or the name of a species; empty: AlongPath. Other choices cost time, never truth.
+	Along string
 	// Until is the longest time that one run lasts, in the design's unit; 0: no limit.
 	Until float64
 

@@ -43,6 +43,9 @@ type Report struct {
 	// counted as in States without saddles.
 	Rates []records.Rate `json:"-"`
 
+	// Staged tells how staged runs went, where they were made, pair by pair.
+	Staged []StagedReport `json:"staged,omitempty"`
+
 	// Species are the names of the species, in the design's order.
 	Species []string `json:"-"`
 	// List says how far the list of states can be trusted: "complete (proved)", or

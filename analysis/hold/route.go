@@ -21,12 +21,15 @@ const (
 	// Langevin makes paths of the chemical Langevin equation, an approximation.
 	Langevin = "langevin"
 
+	// Staged makes exact runs by stages, for flips that are rare.
+	Staged = "staged"
+
 	// absorbing marks what needs no route: no reaction leads out of the state.
 	absorbing = "absorbing"
 )
 
 // Routes lists the routes that can be asked for.
-func Routes() []string { return []string{Auto, Runs, Lattice, Langevin} }
+func Routes() []string { return []string{Auto, Runs, Staged, Lattice, Langevin} }
 
 // patience is the longest that auto lets the lattice take, in seconds of one core of
 // a usual machine by its own estimate, before it turns to runs. Neither this machine nor
@@ -113,6 +116,8 @@ func (j *job) take(ctx context.Context, route string) error {
 		return j.byLattice(ctx)
 	case Langevin:
 		return j.byLangevin(ctx)
+	case Staged:
+		return j.byStaged(ctx)
 	}
 	return j.byRuns(ctx)
 }

@@ -66,8 +66,11 @@ type Result struct {
 	// own families lead to expect; Missed tells that it is more than chance.
 	Disagreement float64
 	Missed       bool
-	Ending       Ending
-	Events       int64 // reaction firings, those of the pilots included
+	// Emptied counts the runs that came to a state that no reaction leads out of and
+	// that lies in no core: that way of leaving is in no rate.
+	Emptied int64
+	Ending  Ending
+	Events  int64 // reaction firings, those of the pilots included
 }
 
 // estimate takes the repeats together. It needs two that are done.
@@ -79,6 +82,7 @@ func estimate(d *design, repeats []*repeat) *Result {
 		r.Repeats = append(r.Repeats, one.rate)
 		within += one.within
 		crossings += one.crossings
+		r.Emptied += int64(one.emptied)
 		r.WatchEvents += one.events[0]
 		for k := range r.Stages {
 			won[k], made[k] = won[k]+one.won[k], made[k]+one.made[k]

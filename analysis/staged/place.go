@@ -32,7 +32,7 @@ type ladder struct {
 	chances []float64 // of each stage: from rung k on
 	// crossing is the number of events that a crossing takes, run that of one run of a stage.
 	crossing, run float64
-	stuck   *StuckError
+	stuck         *StuckError
 }
 
 // place chooses the rungs, one by one, from those that the coordinate offers.

@@ -81,6 +81,9 @@ func (p *Plan) checkCoordinate() error {
 		return fmt.Errorf("coordinate has %d points and %d directions; it must have as many of both, two at least", len(c.Points), len(c.Normals))
 	}
 	for k := range c.Points {
+		if unit(c.Normals[k]) == nil {
+			return fmt.Errorf("coordinate has no direction at point %d", k)
+		}
 		if len(c.Points[k]) != len(p.Network.Species) || len(c.Normals[k]) != len(p.Network.Species) {
 			return fmt.Errorf("coordinate's point %d has %d counts and %d directions; the network has %d species", k, len(c.Points[k]), len(c.Normals[k]), len(p.Network.Species))
 		}

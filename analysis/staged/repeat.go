@@ -25,6 +25,7 @@ type repeat struct {
 	done      bool
 	rate      float64
 	crossings int
+	emptied   int
 	within    float64 // relative variance, from its own families
 	won, made []float64
 	events    []int64
@@ -47,6 +48,8 @@ func (j *job) repeat(ctx context.Context, c *ssa.Climber, d *design) (*repeat, e
 			pool = append(pool, ssa.Perch{Counts: s.Hits[0], Weight: 1, Family: s.Family})
 		case s.Ending == ssa.Arrived && s.Core == j.plan.To:
 			shares[s.Family]++
+		case s.Ending == ssa.Emptied:
+			r.emptied++
 		}
 	}
 	r.crossings = len(pool)
@@ -85,6 +88,8 @@ func (j *job) stage(ctx context.Context, c *ssa.Climber, d *design, r *repeat, k
 		case o.Ending == ssa.Arrived && o.Core == j.plan.To:
 			shares[o.Family] += o.Weight
 			won += o.Weight
+		case o.Ending == ssa.Emptied:
+			r.emptied++
 		}
 	}
 	r.won, r.made, r.events = append(r.won, won), append(r.made, made), append(r.events, c.Events()-before)

@@ -57,6 +57,7 @@ func effortFlags(f *pflag.FlagSet, o *hold.Options, memory *float64) {
 	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
 	countFlag(f, &o.Events, "events", "most reaction events in all, or steps of Langevin paths\n(6e8 if no limit is given)")
 	positiveFlag(f, &o.Step, "step", "step of Langevin paths, in the design's unit (0.02 over\nthe fastest rate if not given)")
+	f.StringVar(&o.Along, "along", "", "what the progress of staged runs is measured along: `path`\n(of least action, if not given), line or a species")
 	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
 	f.Uint64Var(&o.Seed, "seed", 1, "`number` that chooses the random numbers")
 }
@@ -116,6 +117,7 @@ func writeHold(w io.Writer, r *hold.Report) error {
 	writeVerdicts(w, r)
 	writeLattice(w, r)
 	writeLangevin(w, r)
+	writeStaged(w, r)
 	fmt.Fprintf(w, "\n%s in %s s on %d threads\n", workText(r.Work), number(r.Work.Seconds), r.Work.Threads)
 	writeWarnings(w, r.Warnings)
 	_, err := fmt.Fprintln(w, "These are a model's estimates; a strain must be tested ('holdfast help').")
