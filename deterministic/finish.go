@@ -12,6 +12,7 @@ func (m *Map) finish(o Options) error {
 		return err
 	}
 	m.markAbsorbing()
+	m.variationWarning()
 	m.stateWarnings()
 	m.searchWarnings()
 	if err := m.distinct(); err != nil {
@@ -148,4 +149,15 @@ func (s Search) String() string {
 		text += "; the states' indices add up"
 	}
 	return text
+}
+
+// variationWarning says that constants vary, which nothing here follows.
+func (m *Map) variationWarning() {
+	var names []string
+	for _, i := range m.Network.Varying() {
+		names = append(names, m.Network.Constants[i].Name)
+	}
+	if names != nil {
+		m.warn("constants vary (%s): states, cores and basins are those at their medians; a cell's own may lie elsewhere, or be missing", strings.Join(names, ", "))
+	}
 }

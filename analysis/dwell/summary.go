@@ -26,6 +26,10 @@ type Options struct {
 	// samples that it rejects; 0: 0.01.
 	Level float64
 
+	// Mixed tells that the dwells are those of cells that differ, or whose rates vary in
+	// time, and so are not memoryless, whatever the test can see of that.
+	Mixed bool
+
 	oneTarget bool // the state can be left for one other state only
 }
 
@@ -77,7 +81,7 @@ func Summarise(obs []Observation, states int, options Options) (Summary, error) 
 	for _, target := range targets {
 		s.To = append(s.To, s.estimate(obs, target, o))
 	}
-	s.warn()
+	s.warn(o.Mixed)
 	return s, nil
 }
 
@@ -109,10 +113,11 @@ func (s *Summary) targets(obs []Observation, states int) (targets []int) {
 
 func (s *Summary) estimate(obs []Observation, target int, o Options) Estimate {
 	e := Estimate{To: target, Flips: countFlips(obs, target), Exposure: s.Exposure}
-	e.interval(obs, o, !s.Memory.Rejected)
+	memoryless := !s.Memory.Rejected && !o.Mixed
+	e.interval(obs, o, memoryless)
 	e.fill(o.Generation)
 	switch {
-	case !s.Memory.Rejected:
+	case memoryless:
 		e.holds(o, nil)
 	case target == Any:
 		e.holds(o, &s.Survival)
@@ -123,14 +128,18 @@ func (s *Summary) estimate(obs []Observation, target int, o Options) Estimate {
 	return e
 }
 
-func (s *Summary) warn() {
+func (s *Summary) warn(mixed bool) {
 	if s.Flips == 0 {
 		s.Warnings = append(s.Warnings, fmt.Sprintf("no flip was seen in a time of %.4g: the mean dwell has a lower limit only", s.Exposure))
 	}
-	if !s.Memory.Rejected {
+	why := s.Memory.String()
+	switch {
+	case mixed:
+		why = "a mixture over cells whose rates differ or vary, not memoryless"
+	case !s.Memory.Rejected:
 		return
 	}
-	s.Warnings = append(s.Warnings, "dwells are "+s.Memory.String()+
+	s.Warnings = append(s.Warnings, "dwells are "+why+
 		"; intervals come from the spread of the dwells, and chances of holding from the observed survival")
 	if s.Censored > 0 {
 		s.Warnings = append(s.Warnings, fmt.Sprintf("%d of %d dwells were cut off while dwells are not memoryless: "+

@@ -98,6 +98,20 @@ func TestNotMemoryless(t *testing.T) {
 	}
 }
 
+// Dwells known to be a mixture are taken as such though the test sees nothing.
+func TestMixed(t *testing.T) {
+	stream := stream.New(33, 0, 0)
+	obs := exponential().sample(&stream, 300, 0)
+	plain := summarise(t, obs, 2, Options{Generation: 0.1})
+	s := summarise(t, obs, 2, Options{Generation: 0.1, Mixed: true})
+	if s.Memory.Rejected || plain.Any.Method != Gamma || s.Any.Method != Ratio || s.Any.Mean != plain.Any.Mean {
+		t.Errorf("%v, %v and %v", s.Memory, plain.Any.Method, s.Any.Method)
+	}
+	if h := s.Any.Hold[0]; h.Source != Observed || len(s.Warnings) != 1 || !strings.Contains(s.Warnings[0], "mixture") {
+		t.Errorf("%+v, %q", h, s.Warnings)
+	}
+}
+
 func TestFewFlipsTakeTheWider(t *testing.T) {
 	obs := make([]Observation, 20) // as regular as can be
 	for i := range obs {

@@ -53,8 +53,11 @@ func plan(flips int, events int64, seenFlips int, seenEvents int64) allowance {
 }
 
 // longRuns shares so many events among a few long runs.
-func longRuns(events int64) allowance {
-	runs := min(max(events/spareEvents, 1), pilotRuns)
+func longRuns(events int64) allowance { return shared(events, pilotRuns) }
+
+// shared shares so many events among at most so many runs.
+func shared(events, most int64) allowance {
+	runs := min(max(events/spareEvents, 1), most)
 	return allowance{runs: int(runs), work: max(1, events/runs), expect: events, again: true}
 }
 

@@ -37,6 +37,7 @@ func (j *job) estimate(r *stateRuns) error {
 	if err != nil {
 		return err
 	}
+	j.tellStuck(r)
 	for _, w := range summary.Warnings {
 		j.warn("%s: %s", r.label(from), w)
 	}
@@ -64,7 +65,9 @@ func (r *stateRuns) label(state string) string {
 
 // summarise does the statistics of the dwells seen in one state.
 func (j *job) summarise(r *stateRuns) (dwell.Summary, error) {
-	return dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{From: r.state, Generation: j.network.Generation, Holds: j.options.Holds})
+	return dwell.Summarise(r.seen, len(j.survey.Stable()), dwell.Options{
+		From: r.state, Generation: j.network.Generation, Holds: j.options.Holds, Mixed: j.varies(),
+	})
 }
 
 func (j *job) addRow(route, from string, summary *dwell.Summary, e dwell.Estimate) {

@@ -8,13 +8,18 @@ import (
 	"holdfast/ssa"
 )
 
-// exact is the engine of the route runs.
-func (j *job) exact() engine { return engine{route: Runs, work: "events", run: j.exactRuns} }
+// exact is the engine of the route runs, with constants that vary in time held for an
+// interval.
+func (j *job) exact(interval float64) engine {
+	return engine{route: Runs, work: "events", run: func(ctx context.Context, b batch) (made, error) {
+		return j.exactRuns(ctx, b, interval)
+	}}
+}
 
 // exactRuns makes exact runs. One that goes wrong is an error of the design: all stop.
-func (j *job) exactRuns(ctx context.Context, b batch) (made, error) {
+func (j *job) exactRuns(ctx context.Context, b batch, interval float64) (made, error) {
 	p := j.runPlan(b.state, b.first, b.runs, b.most)
-	p.Progress = b.progress
+	p.Progress, p.Interval = b.progress, interval
 	result, err := ssa.Run(ctx, p)
 	m := made{work: result.Events, stops: errors.Is(err, context.Canceled)}
 	if err != nil && !m.stops {

@@ -17,8 +17,10 @@ type job struct {
 	options Options
 	survey  *deterministic.Map
 	sink    *sink // nil: nothing is recorded
-	report  *Report
-	rates   []records.Rate // the same rows as the report's, for the records
+	// interval is the time for which constants that vary in time are held; 0: none does.
+	interval float64
+	report   *Report
+	rates    []records.Rate // the same rows as the report's, for the records
 }
 
 // Run surveys the network, estimates how long each resting state holds, and
@@ -50,6 +52,9 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	j.newReport()
 	j.report.List = list.String()
 	j.report.Warnings = append(j.report.Warnings, list.Warnings...)
+	if err := j.setVariation(); err != nil {
+		return nil, err
+	}
 	if err := j.openSink(); err != nil {
 		return nil, err
 	}

@@ -127,7 +127,8 @@ func (l *langevin) paths(ctx context.Context, b batch, step float64) (made, erro
 	result, err := sde.Run(ctx, sde.Plan{
 		System: l.system, Start: l.start(b.state), Cores: l.survey.Cores, From: b.state,
 		Runs: b.runs, FirstReplicate: b.first, Seed: l.options.Seed, Point: l.options.Point, Group: uint64(b.state), Step: step,
-		Until: l.options.Until, MaxSteps: b.most, Limit: float64(l.mostMolecules()),
+		Interval: l.interval * step / l.step,
+		Until:    l.options.Until, MaxSteps: b.most, Limit: float64(l.mostMolecules()),
 		Threads: l.options.Threads, Lanes: l.options.Lanes, Progress: b.progress,
 	})
 	m := made{work: result.Steps, stops: errors.Is(err, context.Canceled)}
@@ -159,25 +160,12 @@ func langevinFate(e sde.Ending) fate {
 // compareSteps reports what halving the step does to the mean dwell of a state.
 func (l *langevin) compareSteps(full, half *stateRuns) error {
 	row := StepReport{State: l.survey.Stable()[full.state].Name, Paths: len(full.seen), Lost: full.lost + half.lost}
-	a, b := math.NaN(), math.NaN()
-	row.Mean, a = l.mean(full)
-	row.Half, b = l.mean(half)
-	row.Change = row.Half/row.Mean - 1
-	row.Sampling = Value(math.Hypot(a, b)) * row.Half / row.Mean
+	row.Mean, row.Half, row.Change, row.Sampling = l.halving(full, half)
 	l.report.Langevin.States = append(l.report.Langevin.States, row)
 	if c := math.Abs(float64(row.Change)); c > 2*float64(row.Sampling) && c > l.options.Precision/2 {
 		l.warn("langevin: %s: halving the step moves the mean by %.2g %%, more than chance: take a smaller step (--step)", row.State, 100*float64(row.Change))
 	}
 	return nil
-}
-
-// mean gives the mean dwell and its relative standard error; NaN without flips.
-func (l *langevin) mean(r *stateRuns) (Value, float64) {
-	s, err := l.summarise(r)
-	if err != nil || s.Any.Flips == 0 {
-		return Value(math.NaN()), math.NaN()
-	}
-	return Value(s.Any.Mean), s.Any.StandardError / s.Any.Mean
 }
 
 // tellLost says how many paths were stopped, and why the first one was.

@@ -36,6 +36,10 @@ type Options struct {
 	// Along is what the progress of staged runs is measured along: AlongPath, AlongLine
 	// or the name of a species; empty: AlongPath. Other choices cost time, never truth.
 	Along string
+	// Interval is the time, in the design's unit, for which constants that vary in time
+	// are held; 0: a twentieth of the shortest memory or less (see the page on
+	// variation). Runs are made again with half of it.
+	Interval float64
 	// Until is the longest time that one run lasts, in the design's unit; 0: no limit.
 	Until float64
 
@@ -113,6 +117,8 @@ func (o Options) complete() (Options, error) {
 		return o, &OptionError{"until", o.Until, "a time above 0, at most 1e300"}
 	case !(o.Step >= 0 && o.Step <= 1e300):
 		return o, &OptionError{"step", o.Step, "a time above 0, at most 1e300"}
+	case !(o.Interval >= 0 && o.Interval <= 1e200):
+		return o, &OptionError{"interval", o.Interval, "a time above 0, at most 1e200"}
 	case o.Memory < 0:
 		return o, &OptionError{"memory", o.Memory, "a number of bytes above 0"}
 	case o.Threads < 0 || o.Threads > 4096:

@@ -46,6 +46,9 @@ type Report struct {
 	// Staged tells how staged runs went, where they were made, pair by pair.
 	Staged []StagedReport `json:"staged,omitempty"`
 
+	// Variation tells how constants vary, where some do.
+	Variation *VariationReport `json:"variation,omitempty"`
+
 	// Species are the names of the species, in the design's order.
 	Species []string `json:"-"`
 	// List says how far the list of states can be trusted: "complete (proved)", or

@@ -51,15 +51,15 @@ func (j *job) takeRoutes(ctx context.Context) error {
 		return err
 	}
 	j.report.Route = first + ": " + reason
-	if err := j.take(ctx, first); err != nil || j.options.Second == "" {
-		return err
-	}
 	second := j.options.Second
 	if second == Auto {
-		second = other(first)
+		second = j.other(first)
 	}
-	if second == first {
-		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first, which is " + first + " (--route chooses it)"}
+	if err := j.checkRoutes(first, second); err != nil {
+		return err
+	}
+	if err := j.take(ctx, first); err != nil || second == "" {
+		return err
 	}
 	if err := j.take(ctx, second); err != nil {
 		return err
@@ -68,9 +68,28 @@ func (j *job) takeRoutes(ctx context.Context) error {
 	return nil
 }
 
-func other(route string) string {
-	if route == Lattice {
+// checkRoutes refuses routes that are the same, or that know nothing of constants that
+// vary, before any work is done.
+func (j *job) checkRoutes(first, second string) error {
+	if err := j.checkVaried(first); err != nil {
+		return err
+	}
+	if second == "" {
+		return nil
+	}
+	if second == first {
+		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first, which is " + first + " (--route chooses it)"}
+	}
+	return j.checkVaried(second)
+}
+
+// other is the route that auto holds against the first.
+func (j *job) other(route string) string {
+	switch {
+	case route == Lattice, j.varies() && route != Runs:
 		return Runs
+	case j.varies():
+		return Langevin
 	}
 	return Lattice
 }
@@ -80,6 +99,8 @@ func (j *job) choose(ctx context.Context) (route, reason string, err error) {
 	switch o := j.options; {
 	case o.Route != Auto:
 		return o.Route, "as asked for", nil
+	case j.varies():
+		return Runs, "exact stochastic runs, since constants vary: " + j.varyingNames(), nil
 	case o.sampled && o.Second != Runs && o.Second != Langevin:
 		return Runs, "exact stochastic runs, since a precision, a number of runs or a budget was given", nil
 	}

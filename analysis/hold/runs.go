@@ -30,8 +30,11 @@ type stateRuns struct {
 
 // byRuns estimates the hold time of every state in turn by exact runs.
 func (j *job) byRuns(ctx context.Context) error {
+	if j.interval > 0 {
+		return j.byVariedRuns(ctx)
+	}
 	return j.eachState(func(s int, budget int64) (int64, error) {
-		r := &stateRuns{engine: j.exact(), state: s, span: 1}
+		r := &stateRuns{engine: j.exact(0), state: s, span: 1}
 		_, err := j.runState(ctx, r, budget)
 		j.report.Work.Events += r.spent
 		if err != nil {
@@ -75,7 +78,7 @@ func (j *job) runState(ctx context.Context, r *stateRuns, budget int64) (allowan
 func (j *job) spendAll(ctx context.Context, r *stateRuns, allowed allowance, budget int64) error {
 	err := j.spend(ctx, r, allowed)
 	for err == nil && allowed.again && !r.interrupted && budget-r.spent >= spareEvents {
-		err = j.spend(ctx, r, longRuns(budget-r.spent))
+		err = j.spend(ctx, r, j.more(budget-r.spent))
 	}
 	return err
 }
@@ -115,7 +118,11 @@ func (j *job) allow(ctx context.Context, r *stateRuns, budget int64) (allowance,
 			seen++
 		}
 	}
-	return plan(flips, budget, seen, m.work), nil
+	allowed := plan(flips, budget, seen, m.work)
+	if j.varies() {
+		allowed = allowed.mixed(flips, budget, m)
+	}
+	return allowed, nil
 }
 
 // perRun shares work among runs; 0 stays no limit.

@@ -47,6 +47,9 @@ func Run(ctx context.Context, network *model.Network, o Options, out Output) (*S
 	if survey == nil {
 		survey = &deterministic.Map{Network: network}
 	}
+	if len(network.Varying()) > 0 {
+		s.Warnings = append(s.Warnings, "constants vary: each path is of a cell with its own; states and cores are those at the medians")
+	}
 	if s.Paths, err = New(network, survey, o); err != nil {
 		return nil, err
 	}

@@ -91,6 +91,10 @@ func New(network *model.Network, survey *deterministic.Map, o Options) (*Paths, 
 		return nil, &hold.OptionError{Name: "runs", Value: o.Runs, Allowed: "from 1 to 2³¹"}
 	}
 	p.samples = int64(math.Floor(p.Until/p.Every*(1+1e-12))) + 1
+	if p.samples > segment && len(network.Varying()) > 0 {
+		// Segments would each draw constants of their own.
+		return nil, &hold.OptionError{Name: "every", Value: p.Every, Allowed: fmt.Sprintf("at least %.6g: where constants vary, a path keeps at most %d samples", p.Until/(segment-1), segment)}
+	}
 	return p, p.setStart(o.From)
 }
 

@@ -212,3 +212,46 @@ func TestLongRunsGoOn(t *testing.T) {
 		t.Errorf("%d rows, want 600001", rows)
 	}
 }
+
+// Constants that vary: paths are the same for any number of threads, differ from those
+// at the medians, say so, and may not be so long that they would be made in segments.
+func TestConstantsThatVary(t *testing.T) {
+	load := func(set func(*model.Constant)) *model.Network {
+		d, err := model.Load("../../testdata/designs/varied.toml")
+		if err != nil {
+			t.Fatal(err)
+		}
+		for i := range d.Constants {
+			set(&d.Constants[i])
+		}
+		n, err := d.Bind(0, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return n
+	}
+	varied := load(func(*model.Constant) {})
+	plain := load(func(c *model.Constant) { c.Spread, c.Memory = 0, 0 })
+	collect := func(n *model.Network, threads int) (counts []int64) {
+		p := paths(t, n, trace.Options{Runs: 5, Until: 100, Every: 1, Seed: 2, Threads: threads})
+		err := p.Make(context.Background(), func(r trace.Row) error {
+			counts = append(counts, r.Counts...)
+			return nil
+		})
+		if err != nil {
+			t.Fatal(err)
+		}
+		return counts
+	}
+	one := collect(varied, 1)
+	if !slices.Equal(one, collect(varied, 3)) || slices.Equal(one, collect(plain, 1)) {
+		t.Error("paths depend on threads, or not on what varies")
+	}
+	s, err := trace.Run(context.Background(), varied, trace.Options{Until: 10}, trace.Output{})
+	if err != nil || len(s.Warnings) == 0 || !strings.Contains(s.Warnings[0], "constants vary") {
+		t.Errorf("%v, %v", s, err)
+	}
+	if _, err := trace.New(varied, survey(t, varied), trace.Options{Until: 1e6, Every: 1}); err == nil || !strings.Contains(err.Error(), "constants vary") {
+		t.Errorf("a path in segments: %v", err)
+	}
+}

@@ -59,6 +59,7 @@ func effortFlags(f *pflag.FlagSet, o *hold.Options, memory *float64) {
 	positiveFlag(f, &o.Step, "step", "step of Langevin paths, in the design's unit (0.02 over\nthe fastest rate if not given)")
 	f.StringVar(&o.Along, "along", "", "what the progress of staged runs is measured along: `path`\n(of least action, if not given), line or a species")
 	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
+	positiveFlag(f, &o.Interval, "interval", "time for which constants that vary in time are held, in the\ndesign's unit (chosen if not given)")
 	f.Uint64Var(&o.Seed, "seed", 1, "`number` that chooses the random numbers")
 }
 
@@ -116,6 +117,7 @@ func writeHold(w io.Writer, r *hold.Report) error {
 	}
 	writeVerdicts(w, r)
 	writeLattice(w, r)
+	writeVariation(w, r)
 	writeLangevin(w, r)
 	writeStaged(w, r)
 	fmt.Fprintf(w, "\n%s in %s s on %d threads\n", workText(r.Work), number(r.Work.Seconds), r.Work.Threads)

@@ -16,15 +16,17 @@ func writeLangevin(w io.Writer, r *hold.Report) {
 	}
 	fmt.Fprintf(w, "\nLangevin paths, an approximation: step %s %s, at most %s; as many paths again with half of it\n", value(l.Step), r.TimeUnit, value(l.Largest))
 	for _, s := range l.States {
-		fmt.Fprintf(w, "  %s: %d paths; %s\n", s.State, s.Paths, halvingText(s))
+		fmt.Fprintf(w, "  %s: %d paths; %s\n", s.State, s.Paths, changeText(halved(r), s.Change, s.Sampling))
 	}
 }
 
-func halvingText(s hold.StepReport) string {
-	if math.IsNaN(float64(s.Change)) {
-		return "too few flips to tell what halving the step does"
+// halved names what is halved: the step, and, with it, the interval for which constants
+// that vary in time are held.
+func halved(r *hold.Report) string {
+	if v := r.Variation; v != nil && !math.IsNaN(float64(v.Interval)) {
+		return "step and the interval"
 	}
-	return fmt.Sprintf("halving the step moves the mean by %s %%, sampling error %s %%", signed(100*s.Change), digits(100*float64(s.Sampling), 2))
+	return "step"
 }
 
 // signed writes a value with two digits and its sign.
