@@ -177,7 +177,7 @@ func TestRefused(t *testing.T) {
 		{sizing.Knob{Name: "a", Low: 1, High: 1}, "high >= 10 min", "two different ends"},
 		{sizing.Knob{Name: "a", Low: -1, High: 1}, "high >= 10 min", "not below 0"},
 		{sizing.Knob{Name: "a", Low: 0.1, High: math.Inf(1)}, "high >= 10 min", "finite"},
-		{sizing.Knob{Name: "copies", Low: 0.2, High: 0.9}, "high >= 10 min", "holds nothing"},
+		{sizing.Knob{Name: "copies", Low: 0.2, High: 0.9}, "high >= 10 min", "holds no whole number"},
 		{sizing.Knob{Name: "copies", Low: 0, High: 9}, "high >= 10 min", "whole numbers from 1"},
 	} {
 		_, err := sizing.Run(context.Background(), n, sizing.Options{Knob: c.knob, Specs: specs(t, n, c.text)})

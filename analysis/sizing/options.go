@@ -104,6 +104,8 @@ func (k Knob) check(constant bool) error {
 		problem = "both ends of the range must be finite numbers, not below 0"
 	case !constant && k.Low < 1:
 		problem = "copies are looked for among whole numbers from 1 on"
+	case !constant && k.Low > k.High:
+		problem = "the range holds no whole number, or its ends are the wrong way round"
 	case k.Low > k.High:
 		problem = fmt.Sprintf("the range from %s to %s holds nothing; give the lower end first", short(k.Low), short(k.High))
 	case k.Low == k.High:

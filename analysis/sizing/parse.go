@@ -242,5 +242,12 @@ func (p *parser) errorf(hint, format string, a ...any) error {
 	return &SpecError{p.text, p.column() + 1, fmt.Sprintf(format, a...), hint}
 }
 
-// short writes a number in the fewest digits that give it again.
-func short(v float64) string { return strconv.FormatFloat(v, 'g', -1, 64) }
+// short writes a number in the fewest digits that give it again, plainly from 0.001 to a
+// million.
+func short(v float64) string {
+	if v >= 1e-3 && v < 1e6 || v == 0 {
+		return strconv.FormatFloat(v, 'f', -1, 64)
+	}
+	text := strings.ReplaceAll(strconv.FormatFloat(v, 'e', -1, 64), "e+", "e")
+	return strings.Replace(strings.Replace(text, "e0", "e", 1), "e-0", "e-", 1)
+}

@@ -89,7 +89,10 @@ type SpecError struct {
 
 // Error gives the message, the specification with a caret under the place, and the hint.
 func (e *SpecError) Error() string {
-	text := fmt.Sprintf("spec: %s\n    %s\n    %s^", e.Message, e.Text, strings.Repeat(" ", e.Column-1))
+	text := "spec: " + e.Message
+	if strings.TrimSpace(e.Text) != "" {
+		text += fmt.Sprintf("\n    %s\n    %s^", e.Text, strings.Repeat(" ", e.Column-1))
+	}
 	if e.Hint != "" {
 		text += "\n    " + e.Hint
 	}

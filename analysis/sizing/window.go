@@ -74,25 +74,72 @@ const edgeSteps = 4
 
 // limits sets the interval of an end: where the lower and the upper limit of what was
 // found cross what was asked.
-func (s *searcher) limits(out *ending, b bracket, direction float64) error {
+func (s *searcher) limits(out *ending, b bracket, direction float64) (err error) {
 	inward, outward := s.scale.high, s.scale.low
 	if direction > 0 {
 		inward, outward = outward, inward
 	}
-	step := edgeSteps * s.scale.tolerance(s.at(b.meets))
 	if lowerLimit(b.meets) < 0 {
-		fails, meets, err := s.walk(b.meets, walk{measure: lowerLimit, direction: -direction, limit: inward, step: step, wanted: true})
-		if out.Surely, err = s.edge(fails, meets, lowerLimit, math.NaN(), err); err != nil {
+		w := walk{measure: lowerLimit, direction: -direction, limit: inward, wanted: true}
+		if out.Surely, err = s.limit(b.meets, w, math.NaN()); err != nil {
 			return err
 		}
 	}
 	if upperLimit(b.fails) >= 0 {
-		meets, fails, err := s.walk(b.fails, walk{measure: upperLimit, direction: direction, limit: outward, step: step})
-		if out.May, err = s.edge(fails, meets, upperLimit, outward, err); err != nil {
-			return err
+		w := walk{measure: upperLimit, direction: direction, limit: outward}
+		out.May, err = s.limit(b.fails, w, outward)
+	}
+	return err
+}
+
+// limit walks from the end of a window to where a limit crosses what was asked, and on
+// from neighbours beyond that contradict it; none is what it is where it does so nowhere.
+func (s *searcher) limit(root *Evaluation, w walk, none float64) (hold.Value, error) {
+	from := root
+	w.step = edgeSteps * s.scale.tolerance(s.at(root))
+	for range mostRestarts {
+		before, found, err := s.walk(from, w)
+		if err != nil || found == nil {
+			return hold.Value(none), err
+		}
+		b := bracket{fails: before, meets: found}
+		if !w.wanted {
+			b = bracket{fails: found, meets: before}
+		}
+		if b, err = s.narrow(b, w.measure); err != nil {
+			return 0, err
+		}
+		outer := b.fails
+		if w.wanted {
+			outer = b.meets
+		}
+		again, err := s.beyond(outer, math.Abs(s.at(outer)-s.at(root))/2, w)
+		if again == nil || err != nil {
+			return hold.Value(b.meets.Setting), err
+		}
+		from = again
+	}
+	return hold.Value(none), nil
+}
+
+// beyond evaluates neighbours of the end of an interval on its outer side, so far
+// apart, and gives the farthest that belongs inside, if any does.
+func (s *searcher) beyond(outer *Evaluation, apart float64, w walk) (*Evaluation, error) {
+	var out *Evaluation
+	for k := 1; k <= neighbours; k++ {
+		setting := s.scale.setting(s.at(outer) + w.direction*apart*float64(k))
+		if setting == outer.Setting || setting == w.limit {
+			break
+		}
+		e, err := s.evaluate(setting)
+		if err != nil {
+			return nil, err
+		}
+		if w.measure(e) >= 0 != w.wanted {
+			out = e
 		}
 	}
-	return nil
+	return out, nil
 }
 
 // setBack goes from where a switch vanishes back towards a setting that meets the
@@ -105,15 +152,6 @@ func (s *searcher) setBack(meets, inside float64) float64 {
 		return meets
 	}
 	return s.scale.setting(from + math.Copysign(back, to-from))
-}
-
-// edge narrows a bracket that may have one end only, and gives none in that case.
-func (s *searcher) edge(fails, meets *Evaluation, m measure, none float64, err error) (hold.Value, error) {
-	if err != nil || fails == nil || meets == nil {
-		return hold.Value(none), err
-	}
-	b, err := s.narrow(bracket{fails, meets}, m)
-	return hold.Value(b.meets.Setting), err
 }
 
 // vanishing bisects, by surveys alone, between a setting with a switch and one without,

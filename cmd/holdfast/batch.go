@@ -32,7 +32,13 @@ second of four parts, on another machine say, in the same folder or one of its o
 DIR' then makes the tables.
 
 A point where the switch has vanished, or whose answer failed, is a row that says so. The
-exit status is 1 if any point failed.`
+exit status is 1 if any point failed.
+
+--spec "high >= 1000 generations" looks for the smallest copy number that meets it,
+instead of a table; --size a=0.3:0.6 for the setting of a constant nearest to the
+design's. The other form is --spec "high holds 200 generations with chance 0.999"; every
+stands for each state, and times are in generations or the design's unit. --out is then
+not needed; it receives the table sizing, of all that was evaluated.`
 
 func batchCommand() command {
 	return command{name: "batch", args: "FILE", summary: "map and hold times at many points; killable, in shards", about: batchAbout, setup: setupBatch}
@@ -48,6 +54,7 @@ type batchChoice struct {
 	hold                hold.Options
 	out, shard          string
 	join, asJSON, quiet bool
+	size                *sizeChoice
 	flags               *pflag.FlagSet
 }
 
@@ -59,6 +66,7 @@ func setupBatch(f *pflag.FlagSet) work {
 	effortFlags(f, &c.hold, &c.memory)
 	countFlag(f, &c.threads, "threads", "goroutines (one a processor if not given)")
 	f.StringVar(&c.out, "out", "", "`folder` of the batch")
+	c.size = sizeFlags(f)
 	f.StringVar(&c.shard, "shard", "", "make part `i/n` only; auto: as a job array says")
 	f.BoolVar(&c.join, "join", false, "make the tables of the shards in the folders named")
 	f.BoolVar(&c.asJSON, "json", false, "print one JSON object instead of tables")
@@ -67,6 +75,12 @@ func setupBatch(f *pflag.FlagSet) work {
 }
 
 func (c *batchChoice) run(ctx context.Context, t terminal, args []string) error {
+	if sizing, err := c.sizes(); sizing || err != nil {
+		if err != nil {
+			return err
+		}
+		return c.runSize(ctx, t, args)
+	}
 	if c.out == "" {
 		return misusef("batch: --out FOLDER is needed: finished points and tables are kept there")
 	}

@@ -11,7 +11,7 @@ import (
 // numbers nor bytes. The same work so has the same records, whatever the number
 // of threads, the folder, or the order in which the options were typed.
 func canonical(command, path string, f *pflag.FlagSet) string {
-	silent := map[string]bool{"threads": true, "out": true, "json": true, "quiet": true, "with": true, "knob": true, "vary": true, "points": true, "shard": true, "join": true}
+	silent := map[string]bool{"threads": true, "out": true, "json": true, "quiet": true, "with": true, "knob": true, "vary": true, "spec": true, "points": true, "shard": true, "join": true}
 	parts := []string{"holdfast", command, path}
 	f.VisitAll(func(flag *pflag.Flag) {
 		if flag.Changed && !silent[flag.Name] {

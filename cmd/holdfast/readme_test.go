@@ -59,9 +59,24 @@ func checkPage(t *testing.T, page string, least int) {
 
 func init() { flag.Bool("update-readme", false, "write the outputs in the README and docs anew") }
 
+// shellWords splits a command at blanks outside double quotes, which it takes away.
+func shellWords(command string) []string {
+	quoted := false
+	words := strings.FieldsFunc(command, func(r rune) bool {
+		if r == '"' {
+			quoted = !quoted
+		}
+		return r == ' ' && !quoted
+	})
+	for i := range words {
+		words[i] = strings.ReplaceAll(words[i], `"`, "")
+	}
+	return words
+}
+
 func outputOf(t *testing.T, command string) string {
 	t.Helper()
-	words := strings.Fields(command)
+	words := shellWords(command)
 	if len(words) < 2 || words[0] != "$" || words[1] != "holdfast" {
 		t.Fatalf("%q is not '$ holdfast …'", command)
 	}

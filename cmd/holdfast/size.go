@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"path/filepath"
 	"strconv"
 
 	"github.com/spf13/pflag"
@@ -22,9 +23,8 @@ type sizeChoice struct {
 
 func sizeFlags(f *pflag.FlagSet) *sizeChoice {
 	c := &sizeChoice{}
-	f.StringArrayVar(&c.specs, "spec", nil, "`demand` to meet, as in \"high >= 1000 generations\" or \"every holds 200 generations with\n"+
-		"chance 0.999\"; may be repeated, and all must hold")
-	f.Var(sizeKnob{&c.knob}, "size", "what is turned to meet it, in which range: copies (1:1000000 if not given) or a constant, as in a=0.3:0.6")
+	f.Var(specTexts{&c.specs}, "spec", "what a state must do, as in \"high >= 1000 generations\";\nmay be repeated, and all must hold")
+	f.Var(sizeKnob{&c.knob}, "size", "what is turned to meet it, in which range: copies\n(1:1000000 if not given) or a constant")
 	return c
 }
 
@@ -34,6 +34,37 @@ func (c *sizeChoice) options(n *model.Network, o hold.Options) (sizing.Options, 
 	var err error
 	out.Specs, err = sizing.ParseSpecs(c.specs, n)
 	return out, err
+}
+
+// sizes tells whether a search for a size is asked for, and refuses what goes with none.
+func (c *batchChoice) sizes() (bool, error) {
+	switch {
+	case len(c.size.specs) == 0 && c.size.knob.Name != "":
+		return false, misusef("batch: --size %s for what? --spec \"high >= 1000 generations\", say", c.size.knob.Name)
+	case len(c.size.specs) == 0 || c.join:
+		return false, nil
+	case len(c.axes) > 0 || c.points != "" || c.draws > 0:
+		return false, misusef("batch: --spec looks for one setting; leave --vary, --points and --draw out")
+	case c.shard != "":
+		return false, misusef("batch: a search for one setting has no shards; leave --shard out")
+	}
+	return true, nil
+}
+
+// runSize looks for the setting that meets the specifications.
+func (c *batchChoice) runSize(ctx context.Context, t terminal, args []string) error {
+	path, err := oneFile("batch", args)
+	if err != nil {
+		return err
+	}
+	network, err := c.design.load(path)
+	if err != nil {
+		return err
+	}
+	o := c.hold
+	o.Threads, o.Memory, o.Folder = int(c.threads), bytesOf(c.memory), c.out
+	o.Command = canonical("batch", filepath.Base(path), c.flags)
+	return runSize(ctx, t, network, c.size, o, c.asJSON, c.quiet)
 }
 
 // runSize makes the search and prints its answer.
@@ -76,6 +107,29 @@ func misuseOf(err error) error {
 func (b *bar) sizeProgress(p sizing.Progress) {
 	p.Hold.Stage = fmt.Sprintf("evaluation %d at %s: %s", p.Evaluation, digits(p.Setting, 6), p.Hold.Stage)
 	b.holdProgress(p.Hold)
+}
+
+// A specTexts flag collects specifications.
+type specTexts struct{ list *[]string }
+
+func (s specTexts) String() string { return "" }
+
+// Set takes one.
+func (s specTexts) Set(text string) error {
+	*s.list = append(*s.list, text)
+	return nil
+}
+
+// Type names the value in help texts.
+func (s specTexts) Type() string { return "text" }
+
+// words writes the specifications as they would be typed.
+func (s specTexts) words() []string {
+	var out []string
+	for _, text := range *s.list {
+		out = append(out, "--spec", text)
+	}
+	return out
 }
 
 // A sizeKnob is the flag that names what is turned to meet a specification.

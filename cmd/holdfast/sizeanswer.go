@@ -102,11 +102,19 @@ func found(c *sizing.Check) string {
 	case math.IsNaN(float64(c.Found)):
 		return "above " + number(float64(c.Low))
 	case !math.IsNaN(float64(c.Losses[0])):
-		return chanceInterval(hold.HoldChance{Chance: c.Found, Low: c.Low, High: c.High, Loss: c.Losses})
+		return foundChance(c)
 	case c.Sampled:
 		return interval(c.Found, c.Low, c.High)
 	}
 	return fmt.Sprintf("%s ± %s", digits(float64(c.Found), 7), digits(float64(c.Error), 1))
+}
+
+// foundChance writes a chance, to more digits where it is not sampled.
+func foundChance(c *sizing.Check) string {
+	if c.Sampled || c.Losses[0] < 0.0005 {
+		return chanceInterval(hold.HoldChance{Chance: c.Found, Low: c.Low, High: c.High, Loss: c.Losses})
+	}
+	return digits(float64(c.Found), 7)
 }
 
 // sizeUnit names what was found.
