@@ -59,6 +59,7 @@ func moments(x []int64) (mean, variance float64) {
 // correct engine in every other seed at t = 50. So Y is taken over the root of
 // (κ−1)/2 where the law is known to be far from normal.
 func TestTimeCourses(t *testing.T) {
+	long(t)
 	const n = 10_000
 	cases := []struct {
 		name   string

@@ -15,6 +15,15 @@ import (
 // alarm is the chance that a test of a law here fails although all is right.
 const alarm = 1e-6
 
+// long leaves a test of a law, with its many million events, to the run without the
+// race detector.
+func long(t *testing.T) {
+	t.Helper()
+	if ssa.UnderRace {
+		t.Skip("long under the race detector")
+	}
+}
+
 // stationary samples a species once in each of n runs at a time when the law is
 // stationary to within e^{−rate·time} of the start.
 func stationary(t *testing.T, net *model.Network, species, n int, time float64, m ssa.Method) []int64 {
@@ -65,6 +74,7 @@ func telegraph(up, down, r float64, most int) []float64 {
 }
 
 func TestTelegraph(t *testing.T) {
+	long(t)
 	law, want := telegraph(4.3, 18.8, 103.8, 150), zoo.TelegraphStationary()
 	// The published form's numbers, to their printed digits.
 	if math.Abs(law[0]-want.P0) > 0.5e-8 || math.Abs(law[18]-want.P18) > 0.5e-7 {
@@ -78,6 +88,7 @@ func TestTelegraph(t *testing.T) {
 // Geometric bursts make a negative binomial law: P(n) ∝ Γ(k/loss+n)/n! qⁿ, q =
 // burst/(1+burst) (common practice; by generating function).
 func TestBursts(t *testing.T) {
+	long(t)
 	const k, burst, loss = 2.0, 5.0, 1.0
 	q := burst / (1 + burst)
 	law := make([]float64, 200)
@@ -94,6 +105,7 @@ func TestBursts(t *testing.T) {
 
 // Poisson law of immigration–death at every time.
 func TestImmigrationDeathLaw(t *testing.T) {
+	long(t)
 	law := make([]float64, 60)
 	for n := range law {
 		law[n] = distuv.Poisson{Lambda: 10 * -math.Expm1(-0.5)}.Prob(float64(n))
@@ -107,6 +119,7 @@ func TestImmigrationDeathLaw(t *testing.T) {
 // 98 (2001) 8614, from memory), each within 4.9 standard errors (1e-6). That of a
 // variance is taken from the sample's fourth moment.
 func TestTwoStage(t *testing.T) {
+	long(t)
 	const n = 10_000
 	mean, fano := zoo.TwoStageLaw(1, 1, 10, 0.5)
 	for _, m := range methods {
@@ -128,6 +141,7 @@ func TestTwoStage(t *testing.T) {
 // The chain of one-way conversions has multinomial counts; see zoo.ChainMean. The
 // counts of a species are binomial: z of its sum over the runs within 4.9.
 func TestChain(t *testing.T) {
+	long(t)
 	const n, k, molecules, runs, at = 100, 1.0, 50.0, 400, 20.0
 	for _, m := range append(methods, ssa.Auto) {
 		for _, i := range []int{5, 15, 20, 25, 40} {
@@ -171,6 +185,7 @@ func twoSample(t *testing.T, what string, a, b []int64) {
 // two halves, has the same law: two samples of n = 5000, χ² at 1e-6. So have the
 // two methods.
 func TestSameLaw(t *testing.T) {
+	long(t)
 	const n, at = 5000, 20.0
 	net := zoo.Latch(10)
 	for _, m := range methods {

@@ -62,6 +62,7 @@ func births(net *model.Network) (up, down func(int64) float64) {
 // First-passage times within three (exact) standard errors of the exact mean, and
 // the recursion within the digits of the computed values of the zoo.
 func TestPassages(t *testing.T) {
+	long(t)
 	cases := []struct {
 		name     string
 		net      *model.Network

@@ -66,6 +66,7 @@ func at(t testing.TB, p ssa.Plan, time float64) []int64 {
 // textbook). n = 10,000; started at the median and seen after 12/γ, when e^(−12) of the
 // start is left.
 func TestFrozenBirthRate(t *testing.T) {
+	long(t)
 	for _, m := range methods {
 		const k, s, gamma = 20.0, 0.3, 1.0
 		p := ssa.Plan{Network: immigration(t, model.Constant{Value: k, Spread: s}, gamma), Runs: 10_000, Seed: 1, Method: m}
@@ -116,6 +117,7 @@ func series(s float64, f func(k float64) float64) (sum float64) {
 // process's by less than 0.2 %, which is checked too; held for a whole memory it does so
 // by far more than the sampling error, and has to be the scheme's.
 func TestModulatedBirthRate(t *testing.T) {
+	long(t)
 	const k, s, gamma = 20.0, 0.5, 1.0
 	for _, c := range []struct{ memory, interval float64 }{{0.3, 0}, {1, 0}, {1, 1}, {1, 3}, {30, 0}} {
 		net := immigration(t, model.Constant{Value: k, Spread: s, Memory: c.memory}, gamma)
@@ -136,6 +138,7 @@ func TestModulatedBirthRate(t *testing.T) {
 // The two ends of the memory: one much shorter than the network's time averages out,
 // so that the count is Poisson; one much longer is as good as none.
 func TestMemoryLimits(t *testing.T) {
+	long(t)
 	const k, s, gamma = 20.0, 0.5, 1.0
 	mean := k * math.Exp(s*s/2) / gamma
 	if _, v := modulated(k, s, 1e-9, gamma); math.Abs(v/mean-1) > 1e-6 {
@@ -333,6 +336,7 @@ func TestWaitsForConstants(t *testing.T) {
 // (2001) 8614, from memory). So the mean is M₁ and the variance M₁ + 2M₂ − M₁², with
 // the moments Mᵢ = bⁱ e^(i²s²/2). n = 20,000.
 func TestFrozenBurst(t *testing.T) {
+	long(t)
 	d, err := model.Parse("burst.toml", []byte(`time = "min"
 [species]
 a = { start = 4 }
@@ -361,6 +365,7 @@ mass_action = 1
 // 2E[1/k²] − E[1/k]² = (2e^(2s²) − e^(s²))/k². n = 20,000 dwells; beyond 5.5 standard
 // errors the test fails.
 func TestFrozenDwell(t *testing.T) {
+	long(t)
 	const k, s, n = 0.5, 0.4, 20_000
 	p := ssa.Plan{
 		Network: oneLaw(t, model.Constant{Value: k, Spread: s}, "uses", "k*a"), Runs: n, From: 0, Seed: 9,
