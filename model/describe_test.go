@@ -23,7 +23,7 @@ func load(t *testing.T, name string) *Network {
 
 // TestDescribe holds the description of the demo designs against stored texts.
 func TestDescribe(t *testing.T) {
-	for _, name := range []string{"latch", "leakless", "pair", "operator"} {
+	for _, name := range []string{"latch", "leakless", "pair", "operator", "varied"} {
 		n := load(t, name)
 		n.File = filepath.Base(n.File)
 		var b strings.Builder

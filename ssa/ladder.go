@@ -51,6 +51,9 @@ func (l *Ladder) system() (*system, error) {
 	if len(l.Network.Species) == 0 {
 		return nil, errors.New("network has no species")
 	}
+	if len(l.Network.Varying()) > 0 {
+		return nil, errors.New("network has constants that vary: runs by stages know them at their medians only")
+	}
 	return newSystem(p), nil
 }
 

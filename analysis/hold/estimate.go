@@ -38,6 +38,7 @@ func (j *job) estimate(r *stateRuns) error {
 		return err
 	}
 	j.tellStuck(r)
+	j.tellTail(r)
 	for _, w := range summary.Warnings {
 		j.warn("%s: %s", r.label(from), w)
 	}

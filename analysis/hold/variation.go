@@ -30,6 +30,9 @@ const (
 	// mixedRuns is the most runs that share a budget in which few flips are in reach:
 	// each cell is another one.
 	mixedRuns = 256
+	// tailShare of the time watched in the longest hundredth of the dwells is a sign that
+	// the mean hangs on few cells; of memoryless dwells it is 5.6 %, (1 + ln 100)/100.
+	tailShare = 0.15
 	// mixedSpread is the most by which a pilot's spread of dwells raises the number of
 	// runs that a precision takes.
 	mixedSpread = 10
@@ -251,5 +254,26 @@ func (j *job) tellStuck(r *stateRuns) {
 	if cut > 0 {
 		j.warn("%s: %d of %d runs were cut off by their budget of %s: in some cells the constants drawn hold this state very long, or leave no way out of it; "+
 			"the chance of holding tells more than the mean", r.label(j.survey.Stable()[r.state].Name), cut, len(r.seen), r.work)
+	}
+}
+
+// tellTail says where the mean hangs on the longest few dwells.
+func (j *job) tellTail(r *stateRuns) {
+	if !j.varies() || len(r.seen) < 100 {
+		return
+	}
+	times, total := make([]float64, len(r.seen)), 0.0
+	for i := range r.seen {
+		times[i] = r.seen[i].Time
+		total += times[i]
+	}
+	slices.Sort(times)
+	longest := 0.0
+	for _, t := range times[len(times)-len(times)/100:] {
+		longest += t
+	}
+	if share := longest / total; share > tailShare {
+		j.warn("%s: the longest hundredth of its dwells holds %.2g %% of the time watched: the mean hangs on few cells, and its interval may be too narrow; "+
+			"the chance of holding tells more", r.label(j.survey.Stable()[r.state].Name), 100*share)
 	}
 }
