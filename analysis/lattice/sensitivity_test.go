@@ -137,31 +137,8 @@ func TestSensitivityOfLoss(t *testing.T) {
 
 // Bursts whose mean is a constant, and one whose mean is a formula of two.
 func TestSensitivityOfBursts(t *testing.T) {
-	n := burstLatch(t)
-	p := Problem{Network: n, Cores: []model.Core{zoo.Interval("low", 0, 4, 2), zoo.Interval("high", 30, 40, 35)}}
+	p := Problem{Network: zoo.BurstLatch(10), Cores: []model.Core{zoo.Interval("low", 0, 4, 2), zoo.Interval("high", 30, 40, 35)}}
 	checkDifferences(t, "bursts", p, []reading{mean(0), mean(1)}, means)
-}
-
-// burstLatch makes protein in bursts: size·plenty molecules a burst, in mean.
-func burstLatch(t *testing.T) *model.Network {
-	t.Helper()
-	x, c := model.SpeciesRef(0), model.ConstantRef
-	d := model.Draft{
-		Title: "latch in bursts", TimeUnit: "min", Copies: 10, Species: []model.Species{{Name: "x"}},
-		Constants: []model.Constant{{Name: "leak", Value: 0.02}, {Name: "drive", Value: 0.5}, {Name: "steep", Value: 3}, {Name: "size", Value: 2}, {Name: "plenty", Value: 1.2}, {Name: "loss", Value: 0.4}},
-	}
-	d.Reactions = []model.DraftReaction{
-		{
-			Name: "burst", Makes: []model.Term{{Species: 0, Mean: model.Call(model.OpMul, c(3), c(4))}},
-			Rate: model.Call(model.OpAdd, c(0), model.Call(model.OpMul, c(1), model.Call(model.OpHill, x, model.Number(1.5), c(2)))),
-		},
-		{Name: "loss", Uses: []model.Term{{Species: 0, Count: 1}}, MassAction: c(5)},
-	}
-	n, err := d.Bind(0, nil)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return n
 }
 
 // slopes are derivatives of a chain's rates up and down, written out by hand.

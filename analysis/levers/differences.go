@@ -64,10 +64,9 @@ func (j *job) addRows(today *hold.Report) {
 
 // none gives one slope for each block, all of a value that is exact, or not known.
 func (j *job) none(value float64) []Slope {
-	v := hold.Value(value)
 	out := make([]Slope, len(j.report.Blocks))
 	for i := range out {
-		out[i] = Slope{Differences, v, v, v}
+		out[i] = newSlope(Differences, value, 0)
 	}
 	return out
 }
@@ -138,7 +137,9 @@ func (s *sides) slope(b *Block) Slope {
 	v := math.Log(float64(up.Mean/down.Mean)) / (2 * s.step)
 	above := math.Hypot(math.Log(float64(up.High/up.Mean)), math.Log(float64(down.Mean/down.Low))) / (2 * s.step)
 	below := math.Hypot(math.Log(float64(up.Mean/up.Low)), math.Log(float64(down.High/down.Mean))) / (2 * s.step)
-	return Slope{Differences, hold.Value(v), hold.Value(v - below), hold.Value(v + above)}
+	out := newSlope(Differences, v, 0)
+	out.Low, out.High = hold.Value(v-below), hold.Value(v+above)
+	return out
 }
 
 // sampled tells whether any of the hold times comes from runs.
@@ -188,20 +189,19 @@ func (j *job) step(k int) float64 {
 	return step
 }
 
-// seedStride sets the seeds of the jobs of one difference apart: their errors are then
-// independent, as the interval takes them to be.
-const seedStride = 1 << 32
-
 // holdAt makes the hold job number n, with parameter k multiplied by a factor, between
-// today's cores.
+// today's cores. Each has random numbers of its own, so that errors are independent, as
+// the intervals of differences take them to be.
 func (j *job) holdAt(ctx context.Context, n, k int, factor float64) (*hold.Report, error) {
 	network, err := j.turned(k, factor)
 	if err != nil {
 		return nil, err
 	}
 	o := j.options.Hold
-	o.Seed += uint64(n) * seedStride
-	o.Folder, o.Cores = "", j.survey.Cores
+	o.Point, o.Folder, o.Cores = uint64(n), "", j.survey.Cores
+	if j.varies() && o.Route == "" {
+		o.Route = hold.Runs
+	}
 	if k == len(j.network.Constants) && j.network.TotalsScale() {
 		o.Cores = nil // another total has other counts
 	}

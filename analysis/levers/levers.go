@@ -81,29 +81,79 @@ func (j *job) read(k int) bool {
 // estimate.
 const patience = 60
 
-// takeRoute finds the slopes by the route asked for, or by the lattice where it serves.
+// takeRoute finds the slopes by the route asked for, or by the cheapest that serves.
 func (j *job) takeRoute(ctx context.Context) error {
 	switch j.options.Route {
 	case Lattice:
 		j.report.Route = "lattice: as asked for"
-		return j.byLattice(ctx)
+		if j.varies() {
+			j.warn("some constants vary, and the lattice takes each at its median: --route differences takes in how they vary")
+		}
+		return j.latticeAndAction(ctx)
+	case Action:
+		j.report.Route = "action: as asked for"
+		return j.byAction(ctx, true)
 	case Differences:
 		j.report.Route = j.differencesText("as asked for")
 		return j.byDifferences(ctx)
 	}
-	e, err := j.problem().Estimate(ctx)
-	switch {
-	case ctx.Err() != nil:
-		return context.Cause(ctx)
-	case err != nil:
-		j.report.Route = j.differencesText(why(err))
-		return j.byDifferences(ctx)
-	case e.Seconds > patience:
-		j.report.Route = j.differencesText(fmt.Sprintf("the lattice of %d states would take about %.0f s", e.States, e.Seconds))
+	return j.choose(ctx)
+}
+
+// choose takes the cheapest route that serves.
+func (j *job) choose(ctx context.Context) error {
+	if j.varies() {
+		j.report.Route = j.differencesText("some constants vary, and the other routes know their medians alone")
 		return j.byDifferences(ctx)
 	}
-	j.report.Route = "lattice: the master equation itself, differentiated in all constants at once"
-	return j.byLattice(ctx)
+	reason, err := j.tooLarge(ctx)
+	if err != nil {
+		return err
+	}
+	if reason == "" {
+		j.report.Route = "lattice: the master equation itself, differentiated in all constants at once"
+		return j.latticeAndAction(ctx)
+	}
+	if err := j.byAction(ctx, false); err == nil || ctx.Err() != nil {
+		j.report.Route = "action: the exponent of large copies, differentiated; " + reason
+		return err
+	}
+	j.report.Route = j.differencesText(reason)
+	return j.byDifferences(ctx)
+}
+
+// hopeless is the size of a box whose lattice is not even counted: far beyond patience.
+const hopeless = 4e6
+
+// tooLarge says why the lattice cannot serve; empty where it can.
+func (j *job) tooLarge(ctx context.Context) (string, error) {
+	if points := j.points(j.network.Copies); points > hopeless {
+		return fmt.Sprintf("the lattice would have about %.2g states", points), nil
+	}
+	p := j.problem(j.survey)
+	e, err := p.Estimate(ctx)
+	switch {
+	case ctx.Err() != nil:
+		return "", context.Cause(ctx)
+	case err != nil:
+		return why(err), nil
+	case e.Seconds > patience:
+		return fmt.Sprintf("the lattice of %d states would take about %.0f s", e.States, e.Seconds), nil
+	}
+	return "", nil
+}
+
+// latticeAndAction takes the slopes from the lattice and puts those by action beside.
+func (j *job) latticeAndAction(ctx context.Context) error {
+	if err := j.byLattice(ctx); err != nil {
+		return err
+	}
+	return j.addAction(ctx)
+}
+
+// varies tells whether a constant varies across cells or in time.
+func (j *job) varies() bool {
+	return slices.ContainsFunc(j.network.Constants, func(c model.Constant) bool { return c.Spread > 0 })
 }
 
 func (j *job) differencesText(reason string) string {

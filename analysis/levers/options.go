@@ -11,16 +11,20 @@ import (
 
 // The routes to the slopes.
 const (
-	// Auto takes the lattice where it serves, and differences elsewhere.
+	// Auto takes the lattice where it serves, with action beside it; action where it takes
+	// too long; and differences elsewhere.
 	Auto = "auto"
 	// Lattice differentiates the master equation's mean dwell times.
 	Lattice = "lattice"
+	// Action differentiates the exponent by which hold times grow with copies, and takes
+	// the prefactor's part from lattices at fewer copies.
+	Action = "action"
 	// Differences makes two hold jobs for each constant.
 	Differences = "differences"
 )
 
 // Routes lists the routes that can be asked for.
-func Routes() []string { return []string{Auto, Lattice, Differences} }
+func Routes() []string { return []string{Auto, Lattice, Action, Differences} }
 
 const (
 	// defaultStep, 10 % up, balances two errors of a difference of sampled hold times:

@@ -18,6 +18,9 @@ type Report struct {
 	Seed     uint64  `json:"seed"`
 	// Route says which route was taken and why, in a line.
 	Route string `json:"route"`
+	// Action says what slopes by action hold, or why there are none; empty where they
+	// were not tried.
+	Action string `json:"action,omitempty"`
 	// Blocks has one entry for each hold time: for each state, or, where a dwell can end
 	// in several ways, for leaving it at all and then for each other state.
 	Blocks []Block `json:"blocks"`
@@ -58,9 +61,12 @@ type Lever struct {
 	PerUnit bool `json:"per_unit"`
 	// Below and Above are where, turning the constant from today's value, the first of
 	// the stable states is lost; nil where none is in reach.
-	Below *Loss  `json:"below"`
-	Above *Loss  `json:"above"`
-	Note  string `json:"note,omitempty"`
+	Below *Loss `json:"below"`
+	Above *Loss `json:"above"`
+	// Agreement holds the first two slopes against each other: "agree", or how far they
+	// are apart; empty where there are not two.
+	Agreement string `json:"agreement,omitempty"`
+	Note      string `json:"note,omitempty"`
 }
 
 // A Slope is d ln(hold time)/d ln(constant) by one route: the per cent change of the
@@ -70,6 +76,8 @@ type Slope struct {
 	Value hold.Value `json:"slope"` // NaN: not known, and Lever.Note says why
 	Low   hold.Value `json:"low"`   // error bounds, or a 95 % interval
 	High  hold.Value `json:"high"`
+	// Leading is the part of a slope by action that grows with copies; NaN for other routes.
+	Leading hold.Value `json:"leading_order"`
 }
 
 // A Loss is where a stable state of today is lost.
@@ -99,9 +107,11 @@ func (l *Lever) By(route string) Slope {
 	return noSlope(route)
 }
 
-func noSlope(route string) Slope {
-	nan := hold.Value(math.NaN())
-	return Slope{route, nan, nan, nan}
+func noSlope(route string) Slope { return newSlope(route, math.NaN(), math.NaN()) }
+
+// newSlope gives a slope with an error to either side.
+func newSlope(route string, value, off float64) Slope {
+	return Slope{route, hold.Value(value), hold.Value(value - off), hold.Value(value + off), hold.Value(math.NaN())}
 }
 
 // Routes lists the routes to the block's slopes, that to go by first.

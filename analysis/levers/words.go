@@ -122,12 +122,24 @@ func percentStep(direction float64) string {
 	return "−1 %"
 }
 
-// longer writes a per cent change with two digits.
+// longer writes a per cent change with two digits, or, beyond a factor of three, the
+// factor.
 func longer(percent float64) string {
-	word := "longer"
+	factor, word := 1+percent/100, "longer"
 	if percent < 0 {
-		word = "shorter"
+		factor, word = 1/factor, "shorter"
 	}
-	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(math.Abs(percent), 'g', 2, 64), 64)
-	return strconv.FormatFloat(rounded, 'f', -1, 64) + " % " + word
+	if factor > 3 {
+		return short(factor) + " times " + word
+	}
+	return short(math.Abs(percent)) + " % " + word
+}
+
+// short writes a number with two digits.
+func short(v float64) string {
+	if v >= 1e4 {
+		return strconv.FormatFloat(v, 'g', 2, 64)
+	}
+	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 2, 64), 64)
+	return strconv.FormatFloat(rounded, 'f', -1, 64)
 }

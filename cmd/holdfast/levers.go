@@ -93,8 +93,11 @@ func runLevers(ctx context.Context, t terminal, path string, design *designChoic
 }
 
 func writeLevers(w io.Writer, r *levers.Report) error {
-	fmt.Fprintf(w, "%s: copies %s, time in %s\nroute: %s\n\n", r.Design, number(r.Copies), r.TimeUnit, r.Route)
-	fmt.Fprintf(w, "Per cent change of each hold time for +1 %% of a constant: + longer, − shorter. Last, how far it\ncan be turned, down and up, before a state is lost.\n")
+	fmt.Fprintf(w, "%s: copies %s, time in %s\nroute: %s\n", r.Design, number(r.Copies), r.TimeUnit, r.Route)
+	if r.Action != "" {
+		fmt.Fprintf(w, "by action: %s\n", r.Action)
+	}
+	fmt.Fprintf(w, "\nPer cent change of each hold time for +1 %% of a constant: + longer, − shorter. Last, how far it\ncan be turned, down and up, before a state is lost.\n")
 	for i := range r.Blocks {
 		if err := writeBlock(w, r, &r.Blocks[i]); err != nil {
 			return err
@@ -114,19 +117,25 @@ func writeBlock(w io.Writer, r *levers.Report, b *levers.Block) error {
 		_, err := fmt.Fprintf(w, "\n%s: %s\n", b.From, b.Note)
 		return err
 	}
-	fmt.Fprintf(w, "\n%s → %s: holds %s %s today (%s)\n", b.From, b.To, meanText(b), r.TimeUnit, b.HoldRoute)
+	fmt.Fprintf(w, "\n%s → %s: %s\n", b.From, b.To, meanText(r, b))
 	routes := b.Routes()
 	head := []string{"constant", "today"}
 	for _, route := range routes {
 		head = append(head, "% for +1 %, by "+route)
 	}
 	t := &table{}
+	if len(routes) > 1 {
+		head = append(head, "")
+	}
 	t.add(append(head, "lost below", "lost above", "")...)
 	for i := range b.Levers {
 		l := &b.Levers[i]
 		row := []string{l.Name, value(l.Value)}
 		for _, route := range routes {
 			row = append(row, slopeText(l.By(route)))
+		}
+		if len(routes) > 1 {
+			row = append(row, l.Agreement)
 		}
 		t.add(append(row, lossText(l.Below), lossText(l.Above), l.Note)...)
 	}
@@ -137,11 +146,16 @@ func writeBlock(w io.Writer, r *levers.Report, b *levers.Block) error {
 	return err
 }
 
-func meanText(b *levers.Block) string {
-	if (b.High-b.Low)/b.Mean < 1e-3 {
-		return value(b.Mean)
+// meanText writes today's hold time.
+func meanText(r *levers.Report, b *levers.Block) string {
+	text := value(b.Mean)
+	switch {
+	case text == "–":
+		return "'holdfast hold' tells how long"
+	case (b.High-b.Low)/b.Mean >= 1e-3:
+		text += fmt.Sprintf(" [%s, %s]", value(b.Low), value(b.High))
 	}
-	return fmt.Sprintf("%s [%s, %s]", value(b.Mean), value(b.Low), value(b.High))
+	return fmt.Sprintf("holds %s %s today (%s)", text, r.TimeUnit, b.HoldRoute)
 }
 
 // slopeText writes a slope with its sign and its error.

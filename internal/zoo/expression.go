@@ -36,6 +36,19 @@ func BurstExpression(k, burst, loss float64) *model.Network {
 		network()
 }
 
+// BurstLatch is one species that switches itself on, made in geometric bursts of size·plenty
+// molecules in mean at leak + drive x³/(1.5³+x³), lost at loss each: two resting
+// states, and a burst mean made of two constants.
+func BurstLatch(copies float64) *model.Network {
+	g := newBuilder("latch in bursts", "min", copies).species("x", 0).
+		constant("leak", 0.03).constant("drive", 0.6).constant("steep", 3).
+		constant("size", 2).constant("plenty", 1.2).constant("loss", 0.4)
+	law := add(g.c("leak"), mul(g.c("drive"), model.Call(model.OpHill, g.x("x"), num(1.5), g.c("steep"))))
+	g.add(reaction{name: "burst", law: law}).add(reaction{name: "loss", uses: counts{"x": 1}, k: "loss"})
+	g.draft.Reactions[0].Makes = []model.Term{{Species: 0, Mean: mul(g.c("size"), g.c("plenty"))}}
+	return g.network()
+}
+
 // Telegraph is a gene that goes on at 4.3 and off at 18.8 and makes transcripts at
 // 103.8 while on; transcripts are lost at 1 each. The gene is one copy.
 func Telegraph() *model.Network {

@@ -1,0 +1,125 @@
+package levers
+
+import (
+	"context"
+	"errors"
+	"math"
+	"testing"
+
+	"gonum.org/v1/gonum/integrate/quad"
+
+	"holdfast/analysis/action"
+	"holdfast/analysis/lattice"
+	"holdfast/internal/zoo"
+)
+
+// leakyAction gives S and its derivatives in r and s for the way from one root of
+// x' = s − r x + x²/(1+x²) to another, by quadrature: S = ∫ ln(d/b) dx for a chain of
+// single steps with birth b and death d (Gardiner, Handbook of Stochastic Methods, section
+// 7.4, by Laplace's method), and its derivatives under the integral.
+func leakyAction(r, s, from, to float64) [3]float64 {
+	birth := func(x float64) float64 { return s + x*x/(1+x*x) }
+	along := func(f func(x float64) float64) float64 {
+		if to < from {
+			return -quad.Fixed(f, to, from, 200, nil, 0)
+		}
+		return quad.Fixed(f, from, to, 200, nil, 0)
+	}
+	return [3]float64{
+		along(func(x float64) float64 { return math.Log(r * x / birth(x)) }),
+		(to - from) / r,
+		along(func(x float64) float64 { return -1 / birth(x) }),
+	}
+}
+
+// root finds the root of the drift between two amounts by halving.
+func root(r, s, low, high float64) float64 {
+	drift := func(x float64) float64 { return s - r*x + x*x/(1+x*x) }
+	for range 200 {
+		middle := (low + high) / 2
+		if drift(low)*drift(middle) <= 0 {
+			high = middle
+		} else {
+			low = middle
+		}
+	}
+	return low
+}
+
+// The leading order against quadrature, Ω S for copies among it, and the whole slope
+// against the lattice's.
+func TestActionOfOneSpecies(t *testing.T) {
+	const r, s, copies = 0.45, 0.02, 400
+	rep := run(t, zoo.LeakyActivator(r, s, copies), Options{})
+	low, saddle, high := root(r, s, 0, 0.2), root(r, s, 0.2, 1), root(r, s, 1, 5)
+	for state, from := range map[string]float64{"low": low, "high": high} {
+		want := leakyAction(r, s, from, saddle)
+		b := block(t, rep, state)
+		for name, lead := range map[string]float64{"copies": copies * want[0], "r": copies * r * want[1], "s": copies * s * want[2]} {
+			l := b.lever(name)
+			a := l.By(Action)
+			if math.Abs(float64(a.Leading)/lead-1) > 1e-5 {
+				t.Errorf("%s, %s: leading order %v, by quadrature %v", state, name, a.Leading, lead)
+			}
+			if l.Agreement != "agree" || !(float64(a.High-a.Low) < 0.5+0.02*math.Abs(lead)) {
+				t.Errorf("%s, %s: %v by lattice, %v by action: %q", state, name, l.Slope(), a, l.Agreement)
+			}
+		}
+	}
+}
+
+// What the lattice's slopes have beside the leading order settles as copies grow: from
+// copies to twice and four times as many it must change by less each time. A gradient of
+// S off by δ would make it grow by δ times the copies instead. In bursts, whose mean is
+// made of two constants.
+func TestPrefactorSettles(t *testing.T) {
+	n := zoo.BurstLatch(100)
+	var parts [3][]float64
+	for i, copies := range []float64{100, 200, 400} {
+		m, err := n.Rebind(copies, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		rep := run(t, m, Options{})
+		for _, state := range []string{"low", "high"} {
+			for _, name := range []string{"leak", "drive", "steep", "size", "plenty", "loss"} {
+				l := block(t, rep, state).lever(name)
+				parts[i] = append(parts[i], float64(l.By(Lattice).Value-l.By(Action).Leading))
+			}
+		}
+	}
+	for k := range parts[0] {
+		first, second := math.Abs(parts[1][k]-parts[0][k]), math.Abs(parts[2][k]-parts[1][k])
+		if second > first || second > 0.2 {
+			t.Errorf("slope %d: parts %v, %v, %v", k, parts[0][k], parts[1][k], parts[2][k])
+		}
+	}
+}
+
+// By action alone, from lattices at fewer copies, against the lattice there.
+func TestActionAlone(t *testing.T) {
+	n := zoo.LeakyActivator(0.45, 0.02, 2000)
+	exact, far := run(t, n, Options{Route: Lattice}), run(t, n, Options{Route: Action})
+	for i := range far.Blocks {
+		b := &far.Blocks[i]
+		for k := range b.Levers {
+			s, want := b.Levers[k].Slope(), block(t, exact, b.From).lever(b.Levers[k].Name).Slope()
+			if !(s.Low <= want.Value && want.Value <= s.High) || !(s.High-s.Low < 0.5) {
+				t.Errorf("%s, %s: %v, want %v", b.From, b.Levers[k].Name, s, want)
+			}
+		}
+	}
+}
+
+// What each route refuses, and what stands in its place.
+func TestRoutesRefuse(t *testing.T) {
+	n := design(t, "operator", 0, nil)
+	var noise *action.FixedNoiseError
+	if _, err := Run(context.Background(), n, Options{Route: Action}); !errors.As(err, &noise) {
+		t.Errorf("action of an operator: %v", err)
+	}
+	var deep *lattice.DimensionError
+	if _, err := Run(context.Background(), n, Options{Route: Lattice}); !errors.As(err, &deep) {
+		t.Errorf("lattice of seven species: %v", err)
+	}
+}
