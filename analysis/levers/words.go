@@ -7,11 +7,9 @@ import (
 	"strings"
 )
 
-// change gives the per cent change of a hold time for a change of a constant by one per
-// cent up (+1) or down (−1), taking the slope to hold over it.
-func change(slope float64, direction float64) float64 {
-	return 100 * math.Expm1(slope*math.Log1p(direction/100))
-}
+// change gives the change of a hold time's logarithm for a change of a constant by one
+// per cent up (+1) or down (−1), taking the slope to hold over it.
+func change(slope, direction float64) float64 { return slope * math.Log1p(direction/100) }
 
 // first says what to change first for a hold time to be longer.
 func (j *job) first(b *Block) string {
@@ -101,8 +99,8 @@ func (j *job) together() string {
 	return fmt.Sprintf("for all states at once: %s; %s of it makes each hold at least %s", name, percentStep(direction), longer(least))
 }
 
-// weakest is the smallest change of a hold time, in per cent, that a change of one per
-// cent makes; 0 where some state's is not known.
+// weakest is the smallest change of a hold time's logarithm that a change of one per cent
+// makes; 0 where some state's is not known.
 func weakest(states []*Block, name string, direction float64) float64 {
 	least := math.Inf(1)
 	for _, b := range states {
@@ -122,24 +120,30 @@ func percentStep(direction float64) string {
 	return "−1 %"
 }
 
-// longer writes a per cent change with two digits, or, beyond a factor of three, the
-// factor.
-func longer(percent float64) string {
-	factor, word := 1+percent/100, "longer"
-	if percent < 0 {
-		factor, word = 1/factor, "shorter"
+// longer writes the change of a hold time, given by its logarithm, in per cent with two
+// digits, or, beyond a factor of three, as a factor.
+func longer(log float64) string {
+	word := "longer"
+	if log < 0 {
+		word = "shorter"
 	}
-	if factor > 3 {
-		return short(factor) + " times " + word
+	if size := math.Abs(log); size > math.Log(3) {
+		return factor(size) + " times " + word
 	}
-	return short(math.Abs(percent)) + " % " + word
+	return short(math.Abs(100*math.Expm1(log))) + " % " + word
+}
+
+// factor writes e to the power of log with two digits, however large.
+func factor(log float64) string {
+	if log < math.Log(1e4) {
+		return short(math.Exp(log))
+	}
+	whole, part := math.Modf(log / math.Ln10)
+	return short(math.Pow(10, part)) + "e" + short(whole)
 }
 
 // short writes a number with two digits.
 func short(v float64) string {
-	if v >= 1e4 {
-		return strconv.FormatFloat(v, 'g', 2, 64)
-	}
 	rounded, _ := strconv.ParseFloat(strconv.FormatFloat(v, 'g', 2, 64), 64)
 	return strconv.FormatFloat(rounded, 'f', -1, 64)
 }

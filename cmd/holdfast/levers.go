@@ -23,10 +23,13 @@ error; and how far it can be turned before a state is lost in a fold.
 in that of the constant, so it is good for small changes; for larger ones set them with
 --with and ask again.
 
-The slopes come from the master equation on its lattice, for all constants at once, or,
-where no lattice serves, from the difference of two hold jobs for each constant, one with
-it turned up and one down (--route differences; --precision and --events are those of
-each job). All are taken between the cores of today, held in molecules.`
+The slopes come from the master equation on its lattice, for all constants at once. Beside
+them stand those by action: the part that grows with copies, from the path of least
+action, and the prefactor's part from lattices at fewer copies. They serve by themselves
+where the lattice takes too long. Where neither serves, two hold jobs are made for each
+constant, one with it turned up and one down (--route differences; --hold-route, --precision
+and --events are those of each job). All but those by action are taken between the cores of
+today, held in molecules.`
 
 func leversCommand() command {
 	return command{name: "levers", args: "FILE", summary: "which constant to change first: per cent of hold time for each per cent", about: leversAbout, setup: setupLevers}
@@ -39,6 +42,7 @@ func setupLevers(f *pflag.FlagSet) work {
 	var threads int64
 	var memory, step float64
 	f.StringVar(&o.Route, "route", levers.Auto, "`route` to the slopes: "+strings.Join(levers.Routes(), ", "))
+	f.StringVar(&o.Hold.Route, "hold-route", hold.Auto, "`route` of the hold jobs of differences")
 	positiveFlag(f, &step, "step", "per cent by which differences turn a constant up and down\n(10 if not given; less where a fold is near)")
 	positiveFlag(f, &memory, "memory", "most GiB that the lattice may take (4 if not given)")
 	positiveFlag(f, &o.Hold.Precision, "precision", "relative half-width of each hold time's 95 % interval, for\ndifferences (0.1 if not given)")
