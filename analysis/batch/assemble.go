@@ -94,6 +94,10 @@ func (s *store) assemble(ctx context.Context, get source) error {
 		l.names = []string{"none"}
 	}
 	if err := s.writeTables(ctx, get, l); err != nil {
+		var full *records.WriteError
+		if errors.As(err, &full) {
+			return fmt.Errorf("%w, but every finished point is safe: make room and give the same command again", err)
+		}
 		return err
 	}
 	return s.removeParts()

@@ -16,7 +16,11 @@ import (
 func compute(ctx context.Context, points *Points, o hold.Options, at Point) (a *answer, err error) {
 	a = &answer{Point: at}
 	defer func() {
-		if r := recover(); r != nil { // one point must not end a night's work
+		switch r := recover(); {
+		case r == nil:
+		case ctx.Err() != nil:
+			a, err = nil, context.Cause(ctx)
+		default: // one point must not end a night's work
 			a, err = &answer{Point: at, Status: Failed, Message: fmt.Sprintf("holdfast itself failed at this point: %v; please report it", r)}, nil
 		}
 	}()

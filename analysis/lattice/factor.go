@@ -45,6 +45,9 @@ func factor(ctx context.Context, p *plan, threads int, tell func(done float64)) 
 		}
 		f.front(k, f.team, f.store(k, k+1))
 	}
+	if ctx.Err() != nil {
+		return nil, ctx.Err() // some fronts were left out
+	}
 	f.gatherKept()
 	return f, ctx.Err()
 }

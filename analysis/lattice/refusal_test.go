@@ -5,6 +5,7 @@ import (
 	"errors"
 	"strings"
 	"testing"
+	"time"
 
 	"holdfast/internal/zoo"
 	"holdfast/model"
@@ -142,5 +143,22 @@ func TestHugeCounts(t *testing.T) {
 	err := refusal(t, Problem{Network: n, Cores: []model.Core{box("low", low, low, low), box("high", high, high, high)}}, "at least")
 	if !errors.As(err, &large) {
 		t.Errorf("got %v, want a TooLargeError", err)
+	}
+}
+
+// Cancelled at any moment, Solve gives the context's error: it does not go on with what
+// was left half done. The moments are spread over the whole solution.
+func TestCancelAnywhere(t *testing.T) {
+	p := latchProblem(12, 1)
+	p.Threads = 1
+	begun := time.Now()
+	solve(t, p)
+	took := time.Since(begun)
+	for i := range 30 {
+		ctx, cancel := context.WithTimeout(context.Background(), took*time.Duration(i)/30)
+		if s, err := Solve(ctx, p); err == nil && ctx.Err() != nil && s == nil || err != nil && !errors.Is(err, context.DeadlineExceeded) {
+			t.Errorf("moment %d: %v", i, err)
+		}
+		cancel()
 	}
 }

@@ -43,6 +43,9 @@ func (f *factors) upward(x columns, visit func(w *worker, fr *front, x, tail []f
 			step(w, k)
 		}
 	})
+	if f.ctx.Err() != nil {
+		return // some fronts were left out, and have passed nothing on
+	}
 	for _, k := range f.top {
 		step(f.team[0], k)
 	}
