@@ -162,7 +162,7 @@ func (l *langevin) compareSteps(full, half *stateRuns) error {
 	row := StepReport{State: l.survey.Stable()[full.state].Name, Paths: len(full.seen), Lost: full.lost + half.lost}
 	row.Mean, row.Half, row.Change, row.Sampling = l.halving(full, half)
 	l.report.Langevin.States = append(l.report.Langevin.States, row)
-	if c := math.Abs(float64(row.Change)); c > 2*float64(row.Sampling) && c > l.options.Precision/2 {
+	if c := math.Abs(float64(row.Change)); c > 3*float64(row.Sampling) && c > l.options.Precision/2 {
 		l.warn("langevin: %s: halving the step moves the mean by %.2g %%, more than chance: take a smaller step (--step)", row.State, 100*float64(row.Change))
 	}
 	return nil

@@ -33,3 +33,29 @@ func TestCompare(t *testing.T) {
 		}
 	}
 }
+
+func TestCompareApproximation(t *testing.T) {
+	exact := func(mean Value) DwellReport {
+		return DwellReport{Route: Lattice, Mean: mean, Low: mean * (1 - 1e-9), High: mean * (1 + 1e-9)}
+	}
+	rough := func(mean, se, flips Value) DwellReport {
+		return DwellReport{Route: Langevin, Sampled: true, Mean: mean, Low: 0.9 * mean, High: 1.1 * mean, StandardError: se, Flips: flips}
+	}
+	none := DwellReport{Route: Langevin, Sampled: true, Mean: Value(math.NaN()), Low: 500, High: Value(math.Inf(1))}
+	never := DwellReport{Route: Lattice, Never: true, Mean: Value(math.Inf(1))}
+	for _, c := range []struct {
+		a, b DwellReport
+		text string
+	}{
+		{exact(100), rough(88, 1.347, 4000), "approximation off by −12 % ± 2.6 %"}, // 88·1.96·1.347/88
+		{rough(88, 1.347, 4000), exact(100), "approximation off by −12 % ± 2.6 %"},
+		{exact(100), rough(104, 1, 4000), "approximation off by +4 % ± 2 %"},
+		{exact(100), rough(1200, 12, 4000), "approximation off by a factor of 12 [11.8, 12.2]"},
+		{exact(100), none, "the approximation saw no flip: its mean is above 500"},
+		{never, rough(88, 1, 4000), "the approximation flips; lattice does not"},
+	} {
+		if v := compare(&c.a, &c.b); v.Text != c.text {
+			t.Errorf("%q, want %q", v.Text, c.text)
+		}
+	}
+}

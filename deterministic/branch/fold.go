@@ -62,7 +62,7 @@ const leastTransversal = 1e-6
 // mark gives the fold's mark.
 func (d *fold) mark(f *field) Mark {
 	m := Mark{Kind: Fold, Knob: d.u[f.n], Amounts: append([]float64(nil), d.u[:f.n]...), Turns: true, Opens: 1}
-	m.setNull(f, d.weight, d.null, d.left)
+	m.Bend = d.quadratic / m.setNull(f, d.weight, d.null, d.left)
 	drive := -2 * d.quadratic * d.push[0]
 	m.RateCoefficient = math.Sqrt(math.Abs(drive))
 	if drive < 0 {
@@ -71,8 +71,9 @@ func (d *fold) mark(f *field) Mark {
 	return m
 }
 
-// setNull sets the null vectors on the side and of the size that Mark promises.
-func (m *Mark) setNull(f *field, weight, null, left []float64) {
+// setNull sets the null vectors on the side and of the size that Mark promises, and
+// gives what null was divided by.
+func (m *Mark) setNull(f *field, weight, null, left []float64) float64 {
 	best := 0.0
 	for i, v := range null {
 		if r := v / weight[i]; math.Abs(r) > math.Abs(best) {
@@ -86,4 +87,5 @@ func (m *Mark) setNull(f *field, weight, null, left []float64) {
 	for _, i := range f.independent {
 		m.Left[i] = left[i] * best
 	}
+	return best
 }

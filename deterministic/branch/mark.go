@@ -70,6 +70,9 @@ type Mark struct {
 	// RateCoefficient is, for a fold, the c of the slow rate c·√|knob − fold| of
 	// both its states near it, 1/time over the root of the knob's unit.
 	RateCoefficient float64
+	// Bend is, for a fold, Σ leftᵢ·∂²(dxᵢ/dt)/∂xⱼ∂xₖ·nullⱼ·nullₖ: the flow along Null, z
+	// nulls away from Amounts at the fold's knob, is Bend/2·z², 1/time.
+	Bend float64
 	// Frequency is, for a Hopf point, that of the oscillation, radians per unit of
 	// time: the imaginary part of the crossing pair.
 	Frequency float64
