@@ -144,9 +144,9 @@ func TestRoutesAgree(t *testing.T) {
 
 func TestThreadsAndLanesChangeNothing(t *testing.T) {
 	n := demo(t, "latch", 15)
-	want := run(t, n, hold.Options{Seed: 5, Precision: 0.2, Threads: 1, Lanes: 1})
+	want := run(t, n, hold.Options{Seed: 5, Route: hold.Runs, Precision: 0.2, Threads: 1, Lanes: 1})
 	for _, o := range []hold.Options{{Threads: 2}, {Threads: 7, Lanes: 3}, {Threads: 2, Lanes: 64}} {
-		o.Seed, o.Precision = 5, 0.2
+		o.Seed, o.Route, o.Precision = 5, hold.Runs, 0.2
 		got := run(t, n, o)
 		if got.Work.Events != want.Work.Events {
 			t.Errorf("%d threads, %d lanes: %d events, want %d", o.Threads, o.Lanes, got.Work.Events, want.Work.Events)

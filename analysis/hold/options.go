@@ -75,7 +75,11 @@ type Options struct {
 	// at once.
 	Progress func(Progress)
 
-	sampled bool // an option was given that only runs understand
+	// Notice, if not nil, is told before a route that auto has chosen begins, where it is
+	// likely to take long: one plain sentence.
+	Notice func(string)
+
+	sampled bool // a number or a budget was given that only runs understand
 }
 
 // Progress tells how far a job is.
@@ -147,7 +151,7 @@ func (o Options) complete() (Options, error) {
 	if o.Step > 0 && o.Route != Langevin && o.Second != Langevin {
 		return o, &OptionError{"step", o.Step, "left out but for Langevin paths (--route langevin): no other route takes steps"}
 	}
-	o.sampled = o.Precision != 0 || o.Runs != 0 || o.Events != 0 || o.Until != 0
+	o.sampled = o.Runs != 0 || o.Events != 0 || o.Until != 0
 	if o.Precision == 0 {
 		o.Precision = defaultPrecision
 	}

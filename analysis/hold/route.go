@@ -2,12 +2,9 @@ package hold
 
 import (
 	"context"
-	"errors"
 	"fmt"
 	"slices"
 	"strings"
-
-	"holdfast/analysis/lattice"
 )
 
 // The routes that can be asked for.
@@ -31,11 +28,6 @@ const (
 // Routes lists the routes that can be asked for.
 func Routes() []string { return []string{Auto, Runs, Staged, Lattice, Langevin} }
 
-// patience is the longest that auto lets the lattice take, in seconds of one core of
-// a usual machine by its own estimate, before it turns to runs. Neither this machine nor
-// its number of cores has a say, so that the same design takes the same route anywhere.
-const patience = 120
-
 func checkRoute(name, route string) error {
 	if !slices.Contains(Routes(), route) {
 		return &OptionError{name, fmt.Sprintf("%q", route), "one of " + strings.Join(Routes(), ", ")}
@@ -46,20 +38,19 @@ func checkRoute(name, route string) error {
 // takeRoutes estimates the hold times by the route asked for and, if a second one
 // is asked for, by that as well, and holds the two against each other.
 func (j *job) takeRoutes(ctx context.Context) error {
-	first, reason, err := j.choose(ctx)
-	if err != nil {
+	if err := j.checkSecond(); err != nil {
 		return err
 	}
-	j.report.Route = first + ": " + reason
+	first, err := j.takeFirst(ctx)
+	if err != nil || j.options.Second == "" {
+		return err
+	}
 	second := j.options.Second
 	if second == Auto {
 		second = j.other(first)
 	}
-	if err := j.checkRoutes(first, second); err != nil {
-		return err
-	}
-	if err := j.take(ctx, first); err != nil || second == "" {
-		return err
+	if second == first {
+		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first, which is " + first + " (--route chooses it)"}
 	}
 	if err := j.take(ctx, second); err != nil {
 		return err
@@ -68,19 +59,13 @@ func (j *job) takeRoutes(ctx context.Context) error {
 	return nil
 }
 
-// checkRoutes refuses routes that are the same, or that know nothing of constants that
-// vary, before any work is done.
-func (j *job) checkRoutes(first, second string) error {
-	if err := j.checkVaried(first); err != nil {
-		return err
-	}
-	if second == "" {
+// checkSecond refuses a second route that knows nothing of constants that vary, before
+// any work is done.
+func (j *job) checkSecond() error {
+	if j.options.Second == "" || j.options.Second == Auto {
 		return nil
 	}
-	if second == first {
-		return &OptionError{"second", fmt.Sprintf("%q", second), "another route than the first, which is " + first + " (--route chooses it)"}
-	}
-	return j.checkVaried(second)
+	return j.checkVaried(j.options.Second)
 }
 
 // other is the route that auto holds against the first.
@@ -92,42 +77,6 @@ func (j *job) other(route string) string {
 		return Langevin
 	}
 	return Lattice
-}
-
-// choose gives the route to take first and why.
-func (j *job) choose(ctx context.Context) (route, reason string, err error) {
-	switch o := j.options; {
-	case o.Route != Auto:
-		return o.Route, "as asked for", nil
-	case j.varies():
-		return Runs, "exact stochastic runs, since constants vary: " + j.varyingNames(), nil
-	case o.sampled && o.Second != Runs && o.Second != Langevin:
-		return Runs, "exact stochastic runs, since a precision, a number of runs or a budget was given", nil
-	}
-	e, err := j.problem().Estimate(ctx)
-	if ctx.Err() != nil {
-		return "", "", context.Cause(ctx)
-	}
-	if err != nil {
-		return Runs, "exact stochastic runs; " + why(err), nil
-	}
-	if e.Seconds > patience {
-		return Runs, fmt.Sprintf("exact stochastic runs; the lattice of %d states would take about %.0f s", e.States, e.Seconds), nil
-	}
-	return Lattice, fmt.Sprintf("the master equation itself, the cheapest here: %d lattice states, about %.1g s", e.States, e.Seconds), nil
-}
-
-// why says in a few words why the lattice cannot serve.
-func why(err error) string {
-	var dimensions *lattice.DimensionError
-	var large *lattice.TooLargeError
-	switch {
-	case errors.As(err, &dimensions):
-		return fmt.Sprintf("the lattice serves three independent species at most, and this design has %d", dimensions.Dimensions)
-	case errors.As(err, &large):
-		return fmt.Sprintf("the lattice would need about %.3g GiB or more", float64(large.Estimate.Bytes)/(1<<30))
-	}
-	return "the lattice cannot serve: " + err.Error()
 }
 
 // take estimates the hold times by one route.

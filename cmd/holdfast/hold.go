@@ -70,6 +70,9 @@ func runHold(ctx context.Context, t terminal, path string, design *designChoice,
 	}
 	bar := newBar(t.err, quiet)
 	o.Progress = bar.holdProgress
+	if !quiet {
+		o.Notice = func(text string) { fmt.Fprintln(t.err, "holdfast:", text) }
+	}
 	report, err := hold.Run(ctx, network, o)
 	bar.close()
 	if err != nil {
