@@ -199,6 +199,9 @@ func (j *job) holdAt(ctx context.Context, n, k int, factor float64) (*hold.Repor
 	}
 	o := j.options.Hold
 	o.Point, o.Folder, o.Cores = uint64(n), "", j.survey.Cores
+	if network == j.network {
+		o.States = j.list
+	}
 	if k == len(j.network.Constants) && j.network.TotalsScale() {
 		o.Cores = nil // another total has other counts
 	}

@@ -21,7 +21,8 @@ import (
 type job struct {
 	network *model.Network
 	options Options
-	survey  *deterministic.Map
+	list    *resting.List
+	survey  *deterministic.Map // of the list
 	report  *Report
 	losses  [][2]*Loss // by parameter: below and above
 }
@@ -43,7 +44,7 @@ func Run(ctx context.Context, network *model.Network, options Options) (*Report,
 	if err != nil {
 		return nil, err
 	}
-	j := &job{network: network, options: options, survey: list.Map, report: newReport(network, options)}
+	j := &job{network: network, options: options, list: list, survey: list.Map, report: newReport(network, options)}
 	for _, w := range slices.Concat(list.Map.Warnings, list.Warnings) {
 		j.warn("%s", w)
 	}
@@ -199,7 +200,7 @@ func (j *job) finish() {
 		slices.SortStableFunc(b.Levers, func(x, y Lever) int { return cmp.Compare(rank(&y), rank(&x)) })
 	}
 	for i := range j.report.Blocks {
-		j.report.Blocks[i].First = j.first(&j.report.Blocks[i])
+		j.report.Blocks[i].First = j.first(i)
 	}
 	j.report.Together = j.together()
 }
@@ -224,6 +225,8 @@ func (j *job) lever(k int) Lever {
 	switch {
 	case !j.read(k):
 		l.Note = "no reaction reads it"
+	case k < len(j.network.Constants) && j.network.Constants[k].Spread > 0:
+		l.Note = "varies: its median is turned"
 	case l.PerUnit:
 		l.Note = "0 today: % for each 0.01 added"
 	}

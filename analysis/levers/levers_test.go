@@ -5,6 +5,7 @@ import (
 	"errors"
 	"math"
 	"path/filepath"
+	"strings"
 	"testing"
 
 	"holdfast/analysis/hold"
@@ -256,4 +257,115 @@ func TestTable(t *testing.T) {
 		}
 	}
 	t.Errorf("%d rows in %+v", rows, opened.Manifest.Tables)
+}
+
+// A chain of three states between declared counts: the middle one has a table for leaving
+// it, and one for each end, whose slopes follow from the chances of the ends: with p the
+// chance of one end, Σ over ends of p (slope of the pair − slope of the state) = 0, since
+// the chances add up to 1 (algebra).
+func TestSeveralEnds(t *testing.T) {
+	d := zoo.LeakyActivator(0.45, 0.02, 20).Draft()
+	core := func(name string, low, high int64) model.DeclaredCore {
+		return model.DeclaredCore{State: name, Ranges: []model.Range{{Species: 0, Min: low, Max: high}}}
+	}
+	d.Declared = []model.DeclaredCore{core("empty", 0, 2), core("half", 9, 12), core("full", 30, 40)}
+	n, err := d.Bind(0, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r := run(t, n, Options{})
+	var blocks []*Block
+	for i := range r.Blocks {
+		if r.Blocks[i].From == "half" {
+			blocks = append(blocks, &r.Blocks[i])
+		}
+	}
+	if len(blocks) != 3 || blocks[0].To != anyState {
+		t.Fatalf("%d blocks of half", len(blocks))
+	}
+	for _, name := range []string{"r", "s", "copies"} {
+		sum := 0.0
+		for _, b := range blocks[1:] {
+			sum += float64(blocks[0].Mean/b.Mean) * float64(b.lever(name).Slope().Value-blocks[0].lever(name).Slope().Value)
+		}
+		if math.Abs(sum) > 1e-9 {
+			t.Errorf("%s: the chances of the ends change by %v in all", name, sum)
+		}
+	}
+	if !strings.Contains(blocks[1].First, "the time between flips from half to") {
+		t.Errorf("of a pair: %q", blocks[1].First)
+	}
+}
+
+// A closed pair of forms: another number of copies is another total, and the lattice's
+// derivative in copies gives way to a difference, between cores that move.
+func TestClosedTotal(t *testing.T) {
+	x, c := model.SpeciesRef, model.ConstantRef
+	up := model.Call(model.OpMul, x(0), model.Call(model.OpAdd, c(0), model.Call(model.OpMul, c(1), model.Call(model.OpHill, x(1), model.Number(0.8), model.Number(4)))))
+	d := model.Draft{
+		Title: "closed pair", TimeUnit: "min", Copies: 20, Readout: 1,
+		Species:   []model.Species{{Name: "off", Start: 2}, {Name: "on"}},
+		Constants: []model.Constant{{Name: "up", Value: 0.05}, {Name: "push", Value: 1}, {Name: "down", Value: 0.45}},
+		Reactions: []model.DraftReaction{
+			{Name: "up", Uses: []model.Term{{Species: 0, Count: 1}}, Makes: []model.Term{{Species: 1, Count: 1}}, Rate: up},
+			{Name: "down", Uses: []model.Term{{Species: 1, Count: 1}}, Makes: []model.Term{{Species: 0, Count: 1}}, MassAction: c(2)},
+		},
+	}
+	n, err := d.Bind(0, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r := run(t, n, Options{})
+	for _, state := range []string{"low", "high"} {
+		b := block(t, r, state)
+		sum := float64(b.lever("up").Slope().Value + b.lever("push").Slope().Value + b.lever("down").Slope().Value)
+		if math.Abs(sum+1) > 1e-10 {
+			t.Errorf("%s: rates add up to %v", state, sum)
+		}
+		if l := b.lever("copies"); l.Slope().Route != Differences || l.Note != ownCores || math.IsNaN(float64(l.Slope().Value)) {
+			t.Errorf("%s: copies %+v", state, l)
+		}
+	}
+}
+
+// Constants that vary from cell to cell: differences of runs, each constant turned in its
+// median.
+func TestVaryingConstants(t *testing.T) {
+	d := design(t, "latch", 8, nil).Draft()
+	d.Constants[5].Spread = 0.05
+	n, err := d.Bind(0, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r := run(t, n, Options{Hold: hold.Options{Runs: 60}})
+	l := block(t, r, "low").lever("a")
+	if s := l.Slope(); s.Route != Differences || !(s.Low < s.High) || l.Note != "varies: its median is turned" {
+		t.Errorf("%+v", l)
+	}
+	if !strings.Contains(r.Route, "constants vary") {
+		t.Errorf("route %q", r.Route)
+	}
+}
+
+// Stopped in the middle of differences, the report holds what was known by then.
+func TestInterrupted(t *testing.T) {
+	ctx, stop := context.WithCancel(context.Background())
+	defer stop()
+	o := Options{Route: Differences, Hold: hold.Options{Route: hold.Runs, Runs: 30}}
+	o.Hold.Progress = func(p hold.Progress) {
+		if p.Stage == "hold times a step away in b" {
+			stop()
+		}
+	}
+	r, err := Run(ctx, design(t, "latch", 8, nil), o)
+	if err != nil {
+		t.Fatal(err)
+	}
+	b := block(t, r, "low")
+	if s := b.lever("leak").Slope(); math.IsNaN(float64(s.Value)) {
+		t.Errorf("leak was done before the stop: %+v", s)
+	}
+	if l := b.lever("a"); !r.Interrupted || !math.IsNaN(float64(l.Slope().Value)) || l.Note == "" {
+		t.Errorf("after the stop: %+v", l)
+	}
 }

@@ -3,6 +3,7 @@ package levers
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 )
@@ -11,23 +12,43 @@ import (
 // per cent up (+1) or down (−1), taking the slope to hold over it.
 func change(slope, direction float64) float64 { return slope * math.Log1p(direction/100) }
 
-// first says what to change first for a hold time to be longer.
-func (j *job) first(b *Block) string {
-	best := -1
-	for i := range b.Levers {
-		if l := &b.Levers[i]; !l.PerUnit && l.certain() {
-			best = i
-			break // they are sorted
-		}
-	}
+// first says what to change first for block i's hold time to be longer.
+func (j *job) first(i int) string {
+	b := &j.report.Blocks[i]
+	best := slices.IndexFunc(b.Levers, func(l Lever) bool { return !l.PerUnit && l.certain() }) // they are sorted
 	if best < 0 {
 		return ""
 	}
 	l := &b.Levers[best]
 	slope := float64(l.Slope().Value)
 	direction := math.Copysign(1, slope)
-	text := fmt.Sprintf("change first: %s; %s of it makes %s hold %s", l.Name, percentStep(direction), b.name(), longer(change(slope, direction)))
-	return text + j.others(b, l.Name, direction)
+	text := fmt.Sprintf("change first: %s%s; %s of it makes ", l.Name, b.alike(best), percentStep(direction))
+	if !j.leads(i) {
+		return text + fmt.Sprintf("the time between flips from %s to %s %s", b.From, b.To, longer(change(slope, direction)))
+	}
+	return text + fmt.Sprintf("%s hold %s", b.From, longer(change(slope, direction))) + j.others(b, l.Name, direction)
+}
+
+// alike lists the levers that may be as strong as the first, their intervals being wide.
+func (b *Block) alike(best int) string {
+	var names []string
+	least := b.Levers[best].weakest()
+	for i := range b.Levers {
+		l := &b.Levers[i]
+		if s := l.Slope(); i != best && !l.PerUnit && math.Max(float64(s.High), -float64(s.Low)) > least {
+			names = append(names, l.Name)
+		}
+	}
+	if len(names) == 0 {
+		return ""
+	}
+	return " (or " + strings.Join(names, ", ") + ", which may be as strong)"
+}
+
+// weakest is the smallest size that a slope may have.
+func (l *Lever) weakest() float64 {
+	s := l.Slope()
+	return math.Max(math.Max(float64(s.Low), -float64(s.High)), 0)
 }
 
 // certain tells that the slope is known, and that it is not 0 within its error.
@@ -68,9 +89,6 @@ func (b *Block) lever(name string) *Lever {
 	}
 	return nil
 }
-
-// name names the hold time: the state, and where it leads if there are several ways.
-func (b *Block) name() string { return b.From }
 
 // together says which change of one per cent makes every state hold longer, and the
 // least of them longest.

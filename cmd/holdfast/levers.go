@@ -76,6 +76,9 @@ func runLevers(ctx context.Context, t terminal, path string, design *designChoic
 	o.Hold.Progress = bar.holdProgress
 	report, err := levers.Run(ctx, network, o)
 	bar.close()
+	if errors.Is(err, context.Canceled) {
+		return errors.New("stopped before any slope was known")
+	}
 	if err != nil {
 		return hold.Advise(err, path)
 	}
