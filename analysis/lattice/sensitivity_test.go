@@ -1,10 +1,12 @@
 package lattice
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"math/big"
 	"testing"
+	"time"
 
 	"holdfast/internal/zoo"
 	"holdfast/model"
@@ -299,4 +301,23 @@ func TestSensitivityErrorCoversTruncation(t *testing.T) {
 			}
 		}
 	}
+}
+
+// BenchmarkSensitivities reports what the derivatives in all seven parameters cost beside
+// the mean dwell times alone, timed in the same run.
+func BenchmarkSensitivities(b *testing.B) {
+	p := latchProblem(60, 1)
+	p.MeansOnly = true
+	var spent [2]time.Duration
+	for b.Loop() {
+		for i := range spent {
+			p.Sensitivities = i == 1
+			begun := time.Now()
+			if _, err := Solve(context.Background(), p); err != nil {
+				b.Fatal(err)
+			}
+			spent[i] += time.Since(begun)
+		}
+	}
+	b.ReportMetric(float64(spent[1])/float64(spent[0]), "with/without")
 }

@@ -221,7 +221,7 @@ func TestThreads(t *testing.T) {
 
 func TestRefusals(t *testing.T) {
 	var option *hold.OptionError
-	for _, o := range []Options{{Route: "guess"}, {Step: 2}, {Step: math.NaN()}, {Step: -0.1}} {
+	for _, o := range []Options{{Route: "guess"}, {Step: 2}, {Step: math.NaN()}, {Step: -0.1}, {Hold: hold.Options{Route: "guess"}}, {Hold: hold.Options{Precision: 2}}} {
 		if _, err := Run(context.Background(), zoo.Latch(10), o); !errors.As(err, &option) {
 			t.Errorf("%+v: %v", o, err)
 		}

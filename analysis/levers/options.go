@@ -63,6 +63,9 @@ func (o Options) complete() (Options, error) {
 	if !(o.Step >= leastStep && o.Step <= mostStep) {
 		return o, &hold.OptionError{Name: "step", Value: o.Step, Allowed: fmt.Sprintf("from %g to %g", leastStep, mostStep)}
 	}
+	if err := o.Hold.Check(); err != nil {
+		return o, err
+	}
 	if o.Hold.Threads == 0 {
 		o.Hold.Threads = runtime.GOMAXPROCS(0)
 	}
