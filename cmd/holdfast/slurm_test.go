@@ -17,8 +17,8 @@ const unavailable = 69
 // Slurm where it is missing and may be installed; in CI it must run, elsewhere it is
 // skipped with what was missing.
 func TestSlurm(t *testing.T) {
-	if testing.Short() {
-		t.Skip("a cluster takes a minute")
+	if testing.Short() || underRace {
+		t.Skip("a cluster takes a minute; left to the plain run")
 	}
 	scripts, err := filepath.Abs(filepath.Join("testdata", "slurm"))
 	if err != nil {

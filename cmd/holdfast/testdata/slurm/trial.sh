@@ -27,7 +27,7 @@ END
 holdfast batch "$design" "${points[@]}" --out alone >alone.out
 
 array=$(sbatch --parsable array.sh)
-join=$(sbatch --parsable --dependency=afterok:"$array" --kill-on-invalid-dep=yes join.sh)
+join=$(sbatch --parsable --dependency=afterany:"$array" join.sh)
 
 finished() { find cluster/parts -name 'point-*' 2>/dev/null | wc -l; }
 
