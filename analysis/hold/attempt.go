@@ -108,8 +108,8 @@ func (j *job) reset(p progressed) {
 	j.report.Work, j.report.Warnings = work, warnings
 }
 
-// tell reports a stage of the job.
-func (j *job) tell(stage string, share float64) {
+// say reports a stage of the job.
+func (j *job) say(stage string, share float64) {
 	if j.options.Progress != nil {
 		j.options.Progress(Progress{Stage: stage, Share: share, Events: j.report.Work.Events})
 	}

@@ -63,7 +63,7 @@ func (j *job) explore(ctx context.Context) (*weighing, error) {
 
 // try makes the pilot of one state.
 func (w *weighing) try(ctx context.Context, s int) error {
-	w.tell("auto: a pilot of exact runs", 0)
+	w.say("auto: a pilot of exact runs", 0)
 	states := int64(len(w.survey.Stable()))
 	m, err := w.exact(0).run(ctx, batch{state: s, first: pilotReplicate, runs: pilotRuns, most: weighEvents / states / pilotRuns})
 	w.report.Work.Events += m.work
@@ -91,7 +91,7 @@ func (w *weighing) try(ctx context.Context, s int) error {
 // findExponents finds the exponents of all mean times, and with them what staged runs
 // are likely to take.
 func (w *weighing) findExponents(ctx context.Context) error {
-	w.tell("auto: paths of least action", 0.5)
+	w.say("auto: paths of least action", 0.5)
 	routes, err := action.Survey(ctx, w.survey, action.Options{Tolerance: pathTolerance})
 	if ctx.Err() != nil {
 		return context.Cause(ctx)
