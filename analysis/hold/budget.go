@@ -25,6 +25,10 @@ type allowance struct {
 	work   int64 // most of one run, in events or steps; 0: no limit
 	expect int64 // work that all of them are likely to take; 0: not known
 	again  bool  // what is left of the budget afterwards goes into more runs
+	// chunk, where above 0, is the most runs that are made before their work is held
+	// against limit, beyond which no more are.
+	chunk int
+	limit int64
 }
 
 // pilotAllowance is the pilot of a state with so many events to spend.
@@ -63,6 +67,6 @@ func shared(events, most int64) allowance {
 
 // doubled allows the same runs twice the work.
 func (a allowance) doubled() allowance {
-	a.work, a.expect = 2*a.work, 2*a.expect
+	a.work, a.expect, a.limit = 2*a.work, 2*a.expect, 2*a.limit
 	return a
 }

@@ -19,3 +19,10 @@ func (j *job) mean(r *stateRuns) (Value, float64) {
 	}
 	return Value(s.Any.Mean), s.Any.StandardError / s.Any.Mean
 }
+
+// beyondChance tells whether what halving moves a mean by is more than three standard
+// errors of its logarithm.
+func beyondChance(change, sampling Value) bool {
+	ratio := 1 + float64(change)
+	return math.Abs(math.Log(ratio)) > 3*float64(sampling)/ratio
+}

@@ -85,8 +85,12 @@ func (j *job) spendAll(ctx context.Context, r *stateRuns, allowed allowance, bud
 
 // spend makes the runs that are allowed, a block at a time.
 func (j *job) spend(ctx context.Context, r *stateRuns, allowed allowance) error {
-	for done := 0; done < allowed.runs && !r.interrupted; done += block {
-		b := batch{state: r.state, first: r.next, runs: min(block, allowed.runs-done), most: allowed.work}
+	size := block
+	if allowed.chunk > 0 {
+		size = allowed.chunk
+	}
+	for done := 0; done < allowed.runs && !r.interrupted && !allowed.exhausted(r.spent); done += size {
+		b := batch{state: r.state, first: r.next, runs: min(size, allowed.runs-done), most: allowed.work}
 		b.progress = j.progressOf(r, done, allowed)
 		if err := j.count(ctx, r, b); err != nil {
 			return err

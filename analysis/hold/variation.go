@@ -203,7 +203,10 @@ func (j *job) byVariedRuns(ctx context.Context) error {
 }
 
 // mixed is what plan allows, a, for dwells that are not memoryless: as many more runs as
-// the variance of the pilot's dwells is above that of memoryless ones, within the budget.
+// the variance of the pilot's dwells is above that of memoryless ones, each cut off the
+// earlier the more of the pilot's runs had found no way out. Runs are made an eighth at a
+// time, until the budget is spent; that the last of them are left out where dwells are
+// long makes the mean by a little too small, which its interval covers.
 func (a allowance) mixed(flips int, budget int64, pilot made) allowance {
 	left := float64(budget) * (1 - pilotShare)
 	if a.again {
@@ -216,11 +219,20 @@ func (a allowance) mixed(flips int, budget int64, pilot made) allowance {
 		}
 	}
 	mean, variance := stat.MeanVariance(times, nil)
+	stuck := 1 - float64(len(times))/float64(len(pilot.paths))
 	perDwell := float64(pilot.work) / float64(len(times))
+	most := perDwell * math.Min(mixedCap, math.Max(1/stuck, 3))
+	perRun := perDwell + stuck*most
 	runs := math.Ceil(float64(flips) * math.Min(math.Max(variance/mean/mean, 1), mixedSpread))
-	runs = math.Min(runs, math.Max(1, math.Floor(left/perDwell)))
-	return allowance{runs: int(runs), work: int64(math.Ceil(perDwell * mixedCap)), expect: int64(perDwell * runs)}
+	runs = math.Min(runs, math.Max(1, math.Floor(left/perRun)))
+	return allowance{
+		runs: int(runs), work: int64(math.Ceil(most)), expect: int64(perRun * runs),
+		chunk: int(math.Ceil(runs / 8)), limit: budget,
+	}
 }
+
+// exhausted tells whether no more runs are to be made after so much work.
+func (a *allowance) exhausted(spent int64) bool { return a.limit > 0 && spent >= a.limit }
 
 // more is what is allowed of the rest of a budget.
 func (j *job) more(rest int64) allowance {
@@ -235,7 +247,7 @@ func (j *job) compareIntervals(full, half *stateRuns) {
 	row := IntervalReport{State: j.survey.Stable()[full.state].Name, Runs: len(full.seen)}
 	row.Mean, row.Half, row.Change, row.Sampling = j.halving(full, half)
 	j.report.Variation.States = append(j.report.Variation.States, row)
-	if c := math.Abs(float64(row.Change)); c > 3*float64(row.Sampling) && c > j.options.Precision/2 {
+	if c := math.Abs(float64(row.Change)); beyondChance(row.Change, row.Sampling) && c > j.options.Precision/2 {
 		j.warn("%s: halving the interval of its constants moves the mean by %.2g %%, more than chance: take a shorter one (--interval)", row.State, 100*float64(row.Change))
 	}
 }
