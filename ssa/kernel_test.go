@@ -82,6 +82,14 @@ func shapes() map[string]Plan {
 		"chain":                  {Network: zoo.Chain(7, 1, 50), From: -1, Until: 20},
 		"long chain":             {Network: zoo.Chain(30, 1, 50), From: -1, Until: 20},
 	}
+	for n := 2; n <= maxRows; n++ {
+		low, high := make([]int64, n), make([]int64, n)
+		for i := range high {
+			high[i] = 1
+		}
+		out[fmt.Sprint(n, " genes")] = Plan{Network: genes(n, ""), From: -1, Until: 30, Times: times, Cores: []model.Core{target("low", low, high)}}
+		out[fmt.Sprint(n, " genes in bursts")] = Plan{Network: genes(n, "burst"), From: -1, MaxEvents: 3000}
+	}
 	for name, p := range out {
 		p.Runs, p.Seed, p.Threads = 20, 3, 1
 		out[name] = p
@@ -110,6 +118,51 @@ func TestKernelsMakeTheSameRuns(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+// genes are n genes that keep themselves on, each with a row of its own; the first may
+// be made in bursts.
+func genes(n int, first string) *model.Network {
+	text := "title = \"genes\"\ntime = \"min\"\ncopies = 1\n"
+	for i := range n {
+		made := "1"
+		if i == 0 && first != "" {
+			made = "{ burst = 2.5 }"
+		}
+		text += fmt.Sprintf("[species.x%d]\nstart = %d\n", i, 3*i)
+		text += fmt.Sprintf("[[reaction]]\nname = \"making %d\"\nmakes = { x%d = %s }\nrate = \"0.5 + 3*hill(x%d, 10, 2)\"\n", i, i, made, i)
+		text += fmt.Sprintf("[[reaction]]\nname = \"loss %d\"\nuses = { x%d = 1 }\nmass_action = 0.1\n", i, i)
+		text += fmt.Sprintf("[[reaction]]\nname = \"loss in pairs %d\"\nuses = { x%d = 2 }\nmass_action = 0.004\n", i, i)
+	}
+	d, err := model.Parse("genes.toml", []byte(text))
+	if err != nil {
+		panic(err)
+	}
+	net, err := d.Bind(0, nil)
+	if err != nil {
+		panic(err)
+	}
+	return net
+}
+
+// Between them the shapes have every number of rows, one to eight, with and without bursts.
+func TestShapesHaveAllRows(t *testing.T) {
+	seen := map[[2]int]bool{}
+	for name, p := range shapes() {
+		p.Times = nil
+		p, err := p.normal()
+		if err != nil {
+			t.Fatalf("%s: %v", name, err)
+		}
+		if k := newLookup(newWorker(newJob(newSystem(p)), 1)); k != nil {
+			seen[[2]int{len(k.rows), min(int(k.bursty), 1)}] = true
+		}
+	}
+	for n := 1; n <= maxRows; n++ {
+		if !seen[[2]int{n, 0}] || !seen[[2]int{n, 1}] {
+			t.Errorf("%d rows are missing, without bursts or with: %v", n, seen)
+		}
 	}
 }
 

@@ -6,8 +6,7 @@ import (
 	"holdfast/internal/stream"
 )
 
-// A lane is a run under way. What a rush needs comes first and fills a line of the
-// cache; kernels in assembly ask that draws be aligned.
+// A lane is a run under way. What a rush needs comes first, side by side.
 type lane struct {
 	at   position // see lookup
 	time float64
@@ -36,8 +35,6 @@ type lane struct {
 
 	values, sums, ends []float64 // see direct
 	classes            *classes  // see sparse
-
-	_ [32]byte // to a whole number of lines of the cache
 }
 
 // never is a total propensity below which nothing is ever going to happen: the
