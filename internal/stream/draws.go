@@ -19,8 +19,8 @@ const Block = 64
 type Batch struct{ Exp, Unit [Block]float64 }
 
 // Draws are two streams that make Draws: draw k of a run is made of numbers 2k and
-// 2k+1 of Main, whatever came before. Edge serves the one exponential in a hundred
-// that needs more.
+// 2k+1 of Main, whatever came before. Edge serves the one exponential in fifty that
+// needs more.
 type Draws struct{ Main, Edge Stream }
 
 // Next gives the next draw.

@@ -93,15 +93,24 @@ TEXT ·fillWide(SB), NOSPLIT, $32-48
 	JMP  numbers
 
 loop:
-	ADVANCE(DX, Y0, Y1)
 	ADVANCE(DX, Y2, Y3)
 
 numbers:
-	// Exponential numbers: the places of their strips go to the stack.
+	// Exponential numbers: the places of their strips go to the stack, and come back
+	// below, when they have got there.
 	OUTPUT(Y0, Y1)
+	VMOVDQA Y8, Y4
 	VPSLLQ $4, Y8, Y9
 	VPAND 64(BX), Y9, Y9
 	VMOVDQU Y9, places-32(SP)
+	// Units.
+	OUTPUT(Y2, Y3)
+	VPSRLQ $12, Y8, Y8
+	VPOR 192(BX), Y8, Y8
+	VSUBPD 192(BX), Y8, Y8
+	VMOVUPD Y8, Batch_Unit(DI)(AX*1)
+	ADVANCE(DX, Y0, Y1)
+	// Their strips.
 	MOVQ places-32(SP), R8
 	MOVQ places-24(SP), R9
 	MOVQ places-16(SP), R10
@@ -114,26 +123,20 @@ numbers:
 	VUNPCKHPD Y10, Y9, Y12 // Width
 	// The 53 bits b>>11 as a number: their upper 21 and lower 32 bits in the last places
 	// of large powers of two, which are taken off again.
-	VPSRLQ $11, Y8, Y9
-	VPSRLQ $43, Y8, Y10
+	VPSRLQ $11, Y4, Y9
+	VPSRLQ $43, Y4, Y10
 	VPCMPGTQ Y9, Y11, Y11
 	VPOR 128(BX), Y10, Y10
 	VPBLENDD $0xaa, 96(BX), Y9, Y9
 	VSUBPD 160(BX), Y10, Y10
 	VADDPD Y9, Y10, Y10
 	VMULPD Y12, Y10, Y10
-	VBLENDVPD Y11, Y10, Y8, Y8
+	VBLENDVPD Y11, Y10, Y4, Y8
 	VMOVUPD Y8, Batch_Exp(DI)(AX*1)
 	VMOVMSKPD Y11, R8
 	SHRQ $4, CX
 	SHLQ $60, R8
 	ORQ R8, CX
-	// Units.
-	OUTPUT(Y2, Y3)
-	VPSRLQ $12, Y8, Y8
-	VPOR 192(BX), Y8, Y8
-	VSUBPD 192(BX), Y8, Y8
-	VMOVUPD Y8, Batch_Unit(DI)(AX*1)
 	ADDQ $32, AX
 	CMPQ AX, $512
 	JB   loop
