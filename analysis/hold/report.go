@@ -38,6 +38,8 @@ type Report struct {
 	Lattice *LatticeReport `json:"lattice,omitempty"`
 	// Langevin describes the Langevin route, where it was taken.
 	Langevin *LangevinReport `json:"langevin,omitempty"`
+	// Action describes the route action, where it was taken.
+	Action *ActionReport `json:"action,omitempty"`
 
 	// Rates are the rows of the table rates, as they are recorded; states are
 	// counted as in States without saddles.
@@ -91,8 +93,16 @@ type DwellReport struct {
 	// Note says in plain words what the numbers cannot: "never returns", say.
 	Note string `json:"note,omitempty"`
 
-	// Never tells that the state is never left; Sampled that the numbers come
-	// from sampled flips.
+	// Logs are the mean and its limits by their logarithms to the base of 10, where
+	// they are too large for a number of double precision; nil otherwise.
+	Logs *Logs `json:"log10,omitempty"`
+	// LogGenerations and LogPerGeneration are the same for Generations and
+	// PerGeneration.
+	LogGenerations   *Logs `json:"-"`
+	LogPerGeneration *Logs `json:"log10_per_generation,omitempty"`
+
+	// Never tells that the state is never left; Sampled that the numbers have an
+	// interval, from sampled flips or from carrying a prefactor on.
 	Never, Sampled bool `json:"-"`
 	// StandardError of Mean, for sampled rows; Bound on the relative error of Mean,
 	// for the others.

@@ -17,6 +17,8 @@ const (
 	Lattice = "lattice"
 	// Langevin makes paths of the chemical Langevin equation, an approximation.
 	Langevin = "langevin"
+	// Action takes exponents from paths of least action, the rest from fewer copies.
+	Action = "action"
 
 	// Staged makes exact runs by stages, for flips that are rare.
 	Staged = "staged"
@@ -26,7 +28,7 @@ const (
 )
 
 // Routes lists the routes that can be asked for.
-func Routes() []string { return []string{Auto, Runs, Staged, Lattice, Langevin} }
+func Routes() []string { return []string{Auto, Runs, Staged, Lattice, Action, Langevin} }
 
 func checkRoute(name, route string) error {
 	if !slices.Contains(Routes(), route) {
@@ -88,6 +90,8 @@ func (j *job) take(ctx context.Context, route string) error {
 		return j.byLangevin(ctx)
 	case Staged:
 		return j.byStaged(ctx)
+	case Action:
+		return j.byAction(ctx)
 	}
 	return j.byRuns(ctx)
 }

@@ -123,6 +123,7 @@ func writeHold(w io.Writer, r *hold.Report) error {
 	writeVariation(w, r)
 	writeLangevin(w, r)
 	writeStaged(w, r)
+	writeAction(w, r)
 	fmt.Fprintf(w, "\n%s in %s s on %d threads\n", workText(r.Work), number(r.Work.Seconds), r.Work.Threads)
 	writeWarnings(w, r.Warnings)
 	_, err := fmt.Fprintln(w, "These are a model's estimates; a strain must be tested ('holdfast help').")
@@ -191,10 +192,9 @@ func dwellTable(r *hold.Report) *table {
 	}
 	t.add(append(head, "flips", "route")...)
 	for _, d := range r.Dwells {
-		row := []string{d.From, d.To, estimate(d, d.Mean, d.Low, d.High)}
+		row := []string{d.From, d.To, estimate(d, d.Logs, d.Mean, d.Low, d.High)}
 		if generations {
-			row = append(row, estimate(d, d.Generations, d.GenerationsLow, d.GenerationsHigh),
-				ranged(d, d.PerGeneration, d.PerGenerationLow, d.PerGenerationHigh))
+			row = append(row, estimate(d, d.LogGenerations, d.Generations, d.GenerationsLow, d.GenerationsHigh), frequency(d))
 		}
 		t.add(append(row, flips(d), d.Route)...)
 	}
@@ -221,14 +221,24 @@ func holdsTable(r *hold.Report) *table {
 }
 
 // estimate writes a mean with its limits, or the note that stands for it.
-func estimate(d hold.DwellReport, mean, low, high hold.Value) string {
+func estimate(d hold.DwellReport, logs *hold.Logs, mean, low, high hold.Value) string {
 	switch {
+	case logs != nil:
+		return powers(logs)
 	case d.Never:
 		return d.Note
 	case d.Flips == 0 && d.Sampled:
 		return "above " + number(float64(low))
 	}
 	return ranged(d, mean, low, high)
+}
+
+// frequency writes the flips in a generation.
+func frequency(d hold.DwellReport) string {
+	if d.LogPerGeneration != nil {
+		return powers(d.LogPerGeneration)
+	}
+	return ranged(d, d.PerGeneration, d.PerGenerationLow, d.PerGenerationHigh)
 }
 
 // ranged writes a value with its limits, or, if it is not sampled, with the bound of
