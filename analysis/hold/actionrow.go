@@ -5,7 +5,6 @@ import (
 	"strings"
 
 	"holdfast/analysis/action"
-	"holdfast/analysis/records"
 )
 
 // largestLog is the logarithm of the largest number of double precision.
@@ -26,47 +25,20 @@ func newLogs(log, half float64) *Logs {
 // addAction adds one row: a mean time whose logarithm is known, with the half-width of
 // its interval. only tells that the chance of holding stands with it.
 func (j *job) addAction(from, to int, w way, only bool) {
-	mean, low, high := math.Exp(w.log), math.Exp(w.log-w.half), math.Exp(w.log+w.half)
-	deviation := mean * w.half / 1.96
-	nan := Value(math.NaN())
-	row := DwellReport{
-		From: j.survey.Stable()[from].Name, To: j.recordName(to), Route: Action, Sampled: true,
-		Mean: Value(mean), Low: Value(low), High: Value(high), StandardError: Value(deviation), Flips: nan, Exposure: nan,
-		PerGeneration: nan, PerGenerationLow: nan, PerGenerationHigh: nan,
+	row := logRow{
+		from: from, to: to, route: Action, interval: "prefactor carried on from fewer copies", holds: only, flips: math.NaN(),
+		mean: math.Exp(w.log), low: math.Min(math.Exp(w.log-w.half), math.MaxFloat64), high: math.Exp(w.log + w.half),
+		standardError: math.Exp(w.log) * w.half / 1.96,
 	}
-	rate := records.Rate{
-		From: from, To: to, Route: Action, Interval: "extrapolation of the prefactor", Mean: mean, Low: math.Min(low, math.MaxFloat64), High: high,
-		StandardError: deviation, Flips: -1, Dwells: -1, Exposure: math.NaN(), PerGeneration: records.Absent(),
+	j.addLog(row)
+	if w.log+w.half <= largestLog {
+		return
 	}
-	if w.log+w.half > largestLog {
-		row.Logs = newLogs(w.log, w.half)
-		rate.StandardError = math.NaN()
-	}
+	last := &j.report.Dwells[len(j.report.Dwells)-1]
+	last.Logs = newLogs(w.log, w.half)
 	if g := j.network.Generation; g > 0 {
-		row.PerGeneration, row.PerGenerationLow, row.PerGenerationHigh = Value(g/mean), Value(g/high), Value(g/low)
-		rate.PerGeneration = records.Range{Value: g / mean, Low: g / high, High: g / low}
-		if row.Logs != nil {
-			row.LogGenerations, row.LogPerGeneration = newLogs(w.log-math.Log(g), w.half), newLogs(math.Log(g)-w.log, w.half)
-		}
-		if only {
-			row.Holds = j.constantHolds(w)
-		}
+		last.LogGenerations, last.LogPerGeneration = newLogs(w.log-math.Log(g), w.half), newLogs(math.Log(g)-w.log, w.half)
 	}
-	rate.Hold = j.holdRecords(row.Holds, "constant rate")
-	j.rates = append(j.rates, rate)
-	j.add(row)
-}
-
-// constantHolds gives the chances of holding at a constant rate: a dwell is longer than
-// t with the chance exp(−t/mean), but for the time that it takes to forget its start.
-func (j *job) constantHolds(w way) []HoldChance {
-	var out []HoldChance
-	for _, n := range j.options.Holds {
-		t := math.Log(n * j.network.Generation)
-		loss := func(log float64) float64 { return -math.Expm1(-math.Exp(t - log)) }
-		out = append(out, newHoldChance(n, loss(w.log), loss(w.log-w.half), loss(w.log+w.half)))
-	}
-	return out
 }
 
 // addNever adds a pair that does not occur.

@@ -34,12 +34,6 @@ const (
 	prefactorTruncation = 1e-6
 )
 
-// A solved is the lattice's answer at a number of copies.
-type solved struct {
-	solution *lattice.Solution
-	names    []string
-}
-
 // findPrefactors finds the prefactors of all ways, those of like exponents at the same
 // numbers of copies, and carries them on to the design's.
 func (j *job) findPrefactors(ctx context.Context, ways []*way) error {
@@ -50,7 +44,12 @@ func (j *job) findPrefactors(ctx context.Context, ways []*way) error {
 		for end < len(ways) && ways[end].pair.S <= kindred*ways[begin].pair.S {
 			end++
 		}
-		if err := j.latticePrefactors(ctx, ways[begin:end]); err != nil {
+		err := j.latticePrefactors(ctx, ways[begin:end])
+		var out *reachError
+		if errors.As(err, &out) && !out.indistinct {
+			err = j.stagedPrefactors(ctx, ways[begin:end])
+		}
+		if err != nil {
 			return err
 		}
 		begin = end
@@ -78,7 +77,7 @@ func (j *job) latticePrefactors(ctx context.Context, ways []*way) error {
 			return fmt.Errorf("the prefactor's lattice at %.4g copies: %w", copies, err)
 		}
 		for _, w := range ways {
-			log := s.logTime(w)
+			log := w.logTime(s)
 			if math.IsInf(log, 0) || math.IsNaN(log) {
 				return fmt.Errorf("the lattice at %.4g copies sees no flip from %s to %s, which least action finds: take --route runs or lattice", copies, w.pair.From, w.pair.To)
 			}
@@ -122,37 +121,57 @@ func (j *job) reach(ctx context.Context, s float64) (float64, error) {
 
 // estimateAt tells what the lattice takes at a number of copies.
 func (j *job) estimateAt(ctx context.Context, copies float64) (lattice.Estimate, error) {
-	p, _, err := j.problemAt(ctx, copies)
+	p, err := j.problemAt(ctx, copies)
 	if err != nil {
 		return lattice.Estimate{}, err
 	}
 	return p.Estimate(ctx)
 }
 
+// A reachError tells that the lattice cannot give a prefactor.
+type reachError struct {
+	problem    string
+	indistinct bool // at fewer copies two states are one
+}
+
+func (e *reachError) Error() string { return e.problem }
+
 // outOfReach says why the lattice cannot give the prefactor.
 func (j *job) outOfReach(err error) error {
 	var same *deterministic.IndistinctError
 	if errors.As(err, &same) {
-		return fmt.Errorf("the prefactor is found at fewer copies, where flips are seen, but there %s and %s have the same whole molecules: take --route runs or lattice", same.First, same.Second)
+		return &reachError{fmt.Sprintf("the prefactor is found at fewer copies, where flips are seen, but there %s and %s have the same whole molecules: take --route runs or lattice", same.First, same.Second), true}
 	}
-	return fmt.Errorf("the exponents are known, but not the prefactor, which the lattice gives at fewer copies: %s; take --route staged, or runs at copies where flips are seen", why(err))
+	return &reachError{"the lattice cannot give the prefactor: " + why(err), false}
 }
 
-// problemAt states the design at other copies for the lattice.
-func (j *job) problemAt(ctx context.Context, copies float64) (lattice.Problem, []string, error) {
+// at gives a job of the same design at other copies, with a report of its own.
+func (j *job) at(ctx context.Context, copies float64) (*job, error) {
 	n, err := j.network.Rebind(copies, nil)
 	if err != nil {
-		return lattice.Problem{}, nil, err
+		return nil, err
 	}
 	n.Declared = nil // in molecules: they mean something else at other copies
 	survey, err := deterministic.Survey(ctx, n, deterministic.Options{Seeds: amountsOf(j.survey)})
 	if err != nil {
-		return lattice.Problem{}, nil, err
+		return nil, err
 	}
-	at := &job{network: n, survey: survey, options: j.options}
+	at := &job{network: n, survey: survey, options: j.options, report: &Report{}}
+	if !slices.Equal(at.stateNames(), j.stateNames()) {
+		return nil, fmt.Errorf("at %.4g copies there are other states: %v", copies, at.stateNames())
+	}
+	return at, nil
+}
+
+// problemAt states the design at other copies for the lattice.
+func (j *job) problemAt(ctx context.Context, copies float64) (lattice.Problem, error) {
+	at, err := j.at(ctx, copies)
+	if err != nil {
+		return lattice.Problem{}, err
+	}
 	p := at.problem()
 	p.MeansOnly, p.Truncation = true, prefactorTruncation
-	return p, at.stateNames(), nil
+	return p, nil
 }
 
 func amountsOf(survey *deterministic.Map) [][]float64 {
@@ -166,32 +185,20 @@ func amountsOf(survey *deterministic.Map) [][]float64 {
 }
 
 // solveAt solves the lattice at a number of copies.
-func (j *job) solveAt(ctx context.Context, copies float64) (*solved, error) {
-	p, names, err := j.problemAt(ctx, copies)
+func (j *job) solveAt(ctx context.Context, copies float64) (*lattice.Solution, error) {
+	p, err := j.problemAt(ctx, copies)
 	if err != nil {
 		return nil, err
 	}
-	s, err := lattice.Solve(ctx, p)
-	if err != nil {
-		return nil, err
-	}
-	return &solved{s, names}, nil
+	return lattice.Solve(ctx, p)
 }
 
 // logTime is the logarithm of the mean time of a way.
-func (s *solved) logTime(w *way) float64 {
-	from := indexOf(s.names, w.pair.From)
-	if from < 0 {
-		return math.NaN()
-	}
+func (w *way) logTime(s *lattice.Solution) float64 {
 	if w.to == records.Elsewhere {
-		return math.Log(s.solution.Mean[from] / s.solution.Lost[from])
+		return math.Log(s.Mean[w.from] / s.Lost[w.from])
 	}
-	to := indexOf(s.names, w.pair.To)
-	if to < 0 {
-		return math.NaN()
-	}
-	return math.Log(s.solution.Pair[from][to])
+	return math.Log(s.Pair[w.from][w.to])
 }
 
 // wholeTotals gives the number of copies nearest to the one wanted at which the

@@ -65,10 +65,10 @@ func dwellCells(s *batch.Summary, r *batch.Row) []string {
 	}
 	d := r.Dwell
 	h := hold.DwellReport{Never: d.Never, Sampled: d.Sampled, Flips: d.Flips, Note: "never", Bound: d.High/d.Mean - 1}
-	out := []string{d.From, d.To, estimate(h, d.Mean, d.Low, d.High)}
+	out := []string{d.From, d.To, estimate(h, nil, d.Mean, d.Low, d.High)}
 	if s.Generation > 0 {
 		g := hold.Value(s.Generation)
-		out = append(out, estimate(h, d.Mean/g, d.Low/g, d.High/g))
+		out = append(out, estimate(h, nil, d.Mean/g, d.Low/g, d.High/g))
 	}
 	return append(out, d.Route)
 }
