@@ -53,11 +53,6 @@ type way struct {
 // byAction takes the exponents of the hold times from paths of least action and the
 // rest from what can be had at fewer copies.
 func (j *job) byAction(ctx context.Context) error {
-	for i := range j.network.Constants {
-		if c := &j.network.Constants[i]; c.Spread > 0 {
-			return fmt.Errorf("%s varies from cell to cell: least action takes constants as fixed; take exact runs (--route runs), or leave out its spread", c.Name)
-		}
-	}
 	if err := j.checkDeclared(); err != nil {
 		return err
 	}

@@ -15,8 +15,8 @@ func writeAction(w io.Writer, r *hold.Report) {
 	}
 	fmt.Fprintf(w, "\nLeast action: mean dwell = C·exp(S·copies), copies = %s\n", number(r.Copies))
 	for _, p := range r.Action.Paths {
-		fmt.Fprintf(w, "  %s to %s over the %s%s: S = %s ± %s, C = %s %s by the %s at %s copies\n", p.From, p.To, p.Saddle, othersText(p.Others),
-			digits(float64(p.Exponent), 9), digits(float64(p.Error), 1), interval(p.Prefactor, p.PrefactorLow, p.PrefactorHigh), r.TimeUnit, p.Source, copiesText(p.Copies))
+		fmt.Fprintf(w, "  %s to %s over the %s%s: S = %s ± %s, C = %s %s by %s at %s copies\n", p.From, p.To, p.Saddle, othersText(p.Others),
+			digits(float64(p.Exponent), 9), digits(float64(p.Error), 1), interval(p.Prefactor, p.PrefactorLow, p.PrefactorHigh), r.TimeUnit, sourceText(p.Source), copiesText(p.Copies))
 	}
 }
 
@@ -25,6 +25,13 @@ func othersText(others int) string {
 		return ""
 	}
 	return fmt.Sprintf(" (the cheapest of %d)", others+1)
+}
+
+func sourceText(route string) string {
+	if route == hold.Staged {
+		return "staged runs"
+	}
+	return "the " + route
 }
 
 func copiesText(copies []hold.Value) string {
