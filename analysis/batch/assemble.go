@@ -144,6 +144,7 @@ type tables struct {
 	points *pointTable
 	states *records.PointStates
 	rates  *records.PointRates
+	sizes  *sizeTable // nil: none is asked for
 	names  []string
 	events int64
 	failed []string
@@ -159,7 +160,10 @@ func newTables(folder *records.Folder, id *identity, l *labels) (*tables, error)
 	if t.states, err = records.NewPointStates(folder, id.Species, l.states); err != nil {
 		return nil, err
 	}
-	t.rates, err = records.NewPointRates(folder, l.names, l.rates)
+	if t.rates, err = records.NewPointRates(folder, l.names, l.rates); err != nil || !id.Sized {
+		return t, err
+	}
+	t.sizes, err = newSizeTable(folder)
 	return t, err
 }
 
@@ -175,6 +179,9 @@ func (t *tables) append(a *answer) error {
 		}
 	}
 	if err := t.points.append(a); err != nil {
+		return err
+	}
+	if err := t.sizes.append(a); err != nil {
 		return err
 	}
 	for i := range a.States {

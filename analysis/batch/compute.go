@@ -13,7 +13,7 @@ import (
 )
 
 // compute answers one point. The only error is that ctx was done before.
-func compute(ctx context.Context, points *Points, o hold.Options, at Point) (a *answer, err error) {
+func compute(ctx context.Context, points *Points, size *Size, o hold.Options, at Point) (a *answer, err error) {
 	a = &answer{Point: at}
 	defer func() {
 		switch r := recover(); {
@@ -36,9 +36,15 @@ func compute(ctx context.Context, points *Points, o hold.Options, at Point) (a *
 	a.takeStates(list)
 	if err != nil {
 		a.explain(err)
-		return a, nil
 	}
 	o.Seed, o.Point, o.States = points.base.Seed, uint64(at.Number), list
+	if size != nil {
+		a.takeSize(ctx, network, size, o)
+		return a, context.Cause(ctx)
+	}
+	if err != nil {
+		return a, nil
+	}
 	report, err := hold.Run(ctx, network, o)
 	switch {
 	case ctx.Err() != nil:

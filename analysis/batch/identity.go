@@ -16,7 +16,6 @@ import (
 	"holdfast/analysis/hold"
 	"holdfast/analysis/records"
 	"holdfast/internal/version"
-	"holdfast/model"
 )
 
 // identityName is the name of the file that says what the batch of a folder is.
@@ -41,13 +40,15 @@ type identity struct {
 	Points       int       `json:"points"`
 	Names        []string  `json:"names"` // of what differs from point to point
 	Draws        bool      `json:"draws"`
+	Sized        bool      `json:"sized,omitempty"`
 	Species      []string  `json:"species"`
 	Settings     []Setting `json:"settings"`
 	DesignSHA256 string    `json:"design_sha256"`
 	Design       string    `json:"design"`
 }
 
-func newIdentity(draft *model.Draft, p *Points, o hold.Options) identity {
+func newIdentity(j *Job) identity {
+	draft, p, o := j.Draft, j.Points, j.Hold
 	id := identity{
 		Program: "holdfast", Version: version.Number, Command: o.Command, Title: draft.Title, TimeUnit: draft.TimeUnit,
 		Generation: draft.Generation, Copies: draft.Copies, Seed: o.Seed, Points: p.Len(), Names: append([]string{}, p.Names...), Draws: p.draws > 0,
@@ -59,7 +60,8 @@ func newIdentity(draft *model.Draft, p *Points, o hold.Options) identity {
 	for _, s := range draft.Species {
 		id.Species = append(id.Species, s.Name)
 	}
-	id.Settings = append(p.settings(), holdSettings(o)...)
+	id.Settings = append(append(p.settings(), j.Size.settings()...), holdSettings(o)...)
+	id.Sized = j.Size != nil
 	return id
 }
 

@@ -16,6 +16,8 @@ type Job struct {
 	// Hold are the options of the hold jobs. Seed and Command are the batch's; Threads,
 	// Point, Folder and Progress are not looked at.
 	Hold hold.Options
+	// Size, if not nil, makes each point a search for a size instead of a hold job.
+	Size *Size
 	// Folder is the folder of the batch, which goes on from what is there.
 	Folder string
 	Shard  Shard
@@ -56,7 +58,10 @@ func Run(ctx context.Context, j Job) (*Result, error) {
 	if err := j.Hold.Check(); err != nil {
 		return nil, err
 	}
-	id := newIdentity(j.Draft, j.Points, j.Hold)
+	if err := j.Size.check(j.Points); err != nil {
+		return nil, err
+	}
+	id := newIdentity(&j)
 	r := &Result{Folder: j.Folder, Shard: j.Shard}
 	if whole, err := tidy(j.Folder, &id, j.Shard); whole || err != nil {
 		r.Tables, r.Already, r.Points = whole, whole, id.Points

@@ -39,6 +39,7 @@ type answer struct {
 	States   []records.State
 	Rates    []rate
 	Route    string // the first route's name
+	Sized    *Sized // of a batch that looks for sizes
 	Events   int64
 	Warnings []string
 }

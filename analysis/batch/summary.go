@@ -27,6 +27,7 @@ type Summary struct {
 	Message string  `json:"message,omitempty"`
 	// Varied names the values of each row.
 	Varied   []string  `json:"varied"`
+	Sized    bool      `json:"sized,omitempty"` // sizes were looked for
 	Extremes []Extreme `json:"extremes"`
 	Rows     []Row     `json:"rows,omitempty"`
 }
@@ -40,6 +41,8 @@ type Row struct {
 	Message string    `json:"message,omitempty"`
 	// Dwell is nil where the point has no hold time.
 	Dwell *Dwell `json:"dwell,omitempty"`
+	// Size is the answer of a search for a size, in a batch that makes them.
+	Size *SizeRow `json:"size,omitempty"`
 }
 
 // A Dwell is the hold time of a pair of states, in the design's unit.
@@ -82,7 +85,7 @@ func Summarise(folder string) (*Summary, error) {
 	}
 	s := &Summary{
 		Design: id.Title, Command: id.Command, TimeUnit: id.TimeUnit, Generation: id.Generation, Seed: id.Seed, Folder: folder,
-		Statuses: map[string]int{}, Failed: []int64{}, Varied: []string{},
+		Statuses: map[string]int{}, Failed: []int64{}, Varied: []string{}, Sized: id.Sized,
 	}
 	for _, name := range id.Names {
 		if name != Copies {
@@ -95,6 +98,11 @@ func Summarise(folder string) (*Summary, error) {
 	}
 	if err := eachBatch(record, "rates", r.rates); err != nil {
 		return nil, err
+	}
+	if id.Sized {
+		if err := eachBatch(record, sizesName, r.sizes); err != nil {
+			return nil, err
+		}
 	}
 	r.order()
 	return s, nil

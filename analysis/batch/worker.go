@@ -139,7 +139,7 @@ func (w *worker) compute(ctx context.Context, cancel context.CancelCauseFunc, do
 				}
 				o := w.Hold
 				o.Threads, o.Folder, o.Progress = max(1, threads/len(w.todo)), "", nil
-				a, err := compute(ctx, w.Points, o, w.Points.At(w.todo[k]))
+				a, err := compute(ctx, w.Points, w.Size, o, w.Points.At(w.todo[k]))
 				if err != nil {
 					cancel(err)
 					return

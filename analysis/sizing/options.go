@@ -14,11 +14,11 @@ const Copies = "copies"
 // The range of copies where none is given.
 const (
 	leastCopies = 1
-	mostCopies  = 1_000_000
+	mostCopies  = 10_000
 )
 
 // A Knob is what is turned, copies or a constant, and the range to look in, both ends
-// included. With both ends 0, copies are looked at from 1 to a million.
+// included. With both ends 0, copies are looked at from 1 to 10,000.
 type Knob struct {
 	Name      string
 	Low, High float64

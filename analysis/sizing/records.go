@@ -85,7 +85,7 @@ func (t *sizingTable) append(w *records.Writer, r *Report, e *Evaluation, check 
 	w.Text(t.spec, r.Specs[c.Spec])
 	w.Text(t.state, c.State)
 	w.Text(t.route, c.Route)
-	w.Text(t.unit, r.Asked[c.Spec].unit())
+	w.Text(t.unit, r.Asked[c.Spec].FoundUnit())
 	w.Float(t.mean, orNull(float64(c.Found)))
 	w.Float(t.low, orNull(float64(c.Low)))
 	w.Float(t.high, float64(c.High))

@@ -61,8 +61,9 @@ func (s Spec) String() string {
 	return fmt.Sprintf("%s >= %s", s.State, s.length())
 }
 
-// unit is that of what is found for the specification.
-func (s Spec) unit() string {
+// FoundUnit is the unit of what is found for the specification: generations, the
+// design's unit of time, or "chance".
+func (s Spec) FoundUnit() string {
 	if s.Chance > 0 {
 		return "chance"
 	}

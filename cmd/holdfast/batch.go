@@ -37,8 +37,9 @@ exit status is 1 if any point failed.
 --spec "high >= 1000 generations" looks for the smallest copy number that meets it,
 instead of a table; --size a=0.3:0.6 for the setting of a constant nearest to the
 design's. The other form is --spec "high holds 200 generations with chance 0.999"; every
-stands for each state, and times are in generations or the design's unit. --out is then
-not needed; it receives the table sizing, of all that was evaluated.`
+stands for each state, and times are in generations or the design's unit. Without
+--vary, --points and --draw --out is not needed; it receives the table sizing, of all
+that was evaluated. With them the search is made at each point: the table sizes.`
 
 func batchCommand() command {
 	return command{name: "batch", args: "FILE", summary: "map and hold times at many points; killable, in shards", about: batchAbout, setup: setupBatch}
@@ -125,6 +126,9 @@ func (c *batchChoice) job(path string) (*batch.Job, error) {
 	j := &batch.Job{Draft: draft, Points: points, Hold: c.hold, Folder: c.out, Threads: int(c.threads)}
 	j.Hold.Memory = bytesOf(c.memory)
 	j.Hold.Command = canonical("batch", filepath.Base(path), c.flags)
+	if j.Size, err = c.sizeOf(draft); err != nil {
+		return nil, err
+	}
 	if c.shard != "" {
 		if j.Shard, err = batch.ParseShard(c.shard); err != nil {
 			return nil, misusef("batch: --shard: %v", err)
@@ -162,7 +166,7 @@ func (c *batchChoice) conclude(ctx context.Context, t terminal, r *batch.Result,
 	case err != nil && ctx.Err() != nil && r != nil:
 		return fmt.Errorf("stopped before it was done: %d of %d points are kept in %s; the same command goes on", r.Done, r.Points, r.Folder)
 	case err != nil:
-		return err
+		return misuseOf(err)
 	case !r.Tables:
 		return c.concludeShard(t, r)
 	}

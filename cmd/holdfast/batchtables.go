@@ -7,6 +7,7 @@ import (
 
 	"holdfast/analysis/batch"
 	"holdfast/analysis/hold"
+	"holdfast/analysis/sizing"
 )
 
 // writeBatch prints a row for each hold time of a small batch, or what a large one comes to.
@@ -17,7 +18,10 @@ func writeBatch(w io.Writer, s *batch.Summary) error {
 	}
 	fmt.Fprintf(w, "%s: time in %s%s, seed %d\n%s\n\n", s.Design, s.TimeUnit, generation, s.Seed, statusText(s))
 	t := rowTable(s)
-	if s.Rows == nil {
+	switch {
+	case s.Sized:
+		t = sizeTable(s)
+	case s.Rows == nil:
 		t = extremeTable(s)
 	}
 	if len(t.rows) > 1 {
@@ -71,6 +75,49 @@ func dwellCells(s *batch.Summary, r *batch.Row) []string {
 		out = append(out, estimate(h, nil, d.Mean/g, d.Low/g, d.High/g))
 	}
 	return append(out, d.Route)
+}
+
+// sizeTable has a row for each point of a batch that looked for sizes.
+func sizeTable(s *batch.Summary) *table {
+	t := &table{}
+	sized := "setting"
+	for _, r := range s.Rows {
+		if r.Size != nil {
+			sized = r.Size.Knob
+		}
+	}
+	varied := append([]string{"point"}, s.Varied...)
+	if sized != "copies" {
+		varied = append([]string{"point", "copies"}, s.Varied...)
+	}
+	t.add(append(varied, sized, "may", "surely", "state", "found", "", "outcome")...)
+	for _, r := range s.Rows {
+		row := []string{fmt.Sprint(r.Point)}
+		if sized != "copies" {
+			row = append(row, number(r.Copies))
+		}
+		for _, v := range r.Values {
+			row = append(row, digits(v, 6))
+		}
+		t.add(append(row, sizeCells(&r)...)...)
+	}
+	return t
+}
+
+// sizeCells are the cells of one search, or what the point is instead.
+func sizeCells(r *batch.Row) []string {
+	z := r.Size
+	if z == nil || z.Route == "" {
+		return []string{"–", "", "", "", "", "", r.Status}
+	}
+	found := digits(float64(z.Found), 7)
+	if z.Sampled {
+		found = interval(z.Found, z.Low, z.High)
+	}
+	if z.Outcome == sizing.NotMet || z.Outcome == sizing.Undecided {
+		return []string{"best " + setting(z.Setting), "", "", z.State, found, z.Unit, string(z.Outcome)}
+	}
+	return []string{setting(z.Setting), setting(z.May), setting(z.Surely), z.State, found, z.Unit, string(z.Outcome)}
 }
 
 func extremeTable(s *batch.Summary) *table {

@@ -10,6 +10,7 @@ import (
 
 	"github.com/spf13/pflag"
 
+	"holdfast/analysis/batch"
 	"holdfast/analysis/hold"
 	"holdfast/analysis/sizing"
 	"holdfast/model"
@@ -24,7 +25,7 @@ type sizeChoice struct {
 func sizeFlags(f *pflag.FlagSet) *sizeChoice {
 	c := &sizeChoice{}
 	f.Var(specTexts{&c.specs}, "spec", "what a state must do, as in \"high >= 1000 generations\";\nmay be repeated, and all must hold")
-	f.Var(sizeKnob{&c.knob}, "size", "what is turned to meet it, in which range: copies\n(1:1000000 if not given) or a constant")
+	f.Var(sizeKnob{&c.knob}, "size", "what is turned to meet it, in which range: copies\n(1:10000 if not given) or a constant")
 	return c
 }
 
@@ -36,7 +37,7 @@ func (c *sizeChoice) options(n *model.Network, o hold.Options) (sizing.Options, 
 	return out, err
 }
 
-// sizes tells whether a search for a size is asked for, and refuses what goes with none.
+// sizes tells whether one search for a size is asked for, and refuses what goes with none.
 func (c *batchChoice) sizes() (bool, error) {
 	switch {
 	case len(c.size.specs) == 0 && c.size.knob.Name != "":
@@ -44,11 +45,27 @@ func (c *batchChoice) sizes() (bool, error) {
 	case len(c.size.specs) == 0 || c.join:
 		return false, nil
 	case len(c.axes) > 0 || c.points != "" || c.draws > 0:
-		return false, misusef("batch: --spec looks for one setting; leave --vary, --points and --draw out")
+		return false, nil // at each point, as a batch
 	case c.shard != "":
 		return false, misusef("batch: a search for one setting has no shards; leave --shard out")
 	}
 	return true, nil
+}
+
+// sizeOf gives the search to make at each point of a batch; nil: none.
+func (c *batchChoice) sizeOf(draft *model.Draft) (*batch.Size, error) {
+	if len(c.size.specs) == 0 {
+		return nil, nil
+	}
+	n, err := draft.Bind(0, nil)
+	if err != nil {
+		return nil, err
+	}
+	o, err := c.size.options(n, c.hold)
+	if err != nil {
+		return nil, misuseOf(err)
+	}
+	return &batch.Size{Knob: o.Knob, Specs: o.Specs}, nil
 }
 
 // runSize looks for the setting that meets the specifications.
