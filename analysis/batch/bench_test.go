@@ -27,7 +27,7 @@ func BenchmarkLatchPoints(b *testing.B) {
 		b.Fatal(err)
 	}
 	o := hold.Options{Command: "benchmark", Threads: 1}
-	s, err := openStore(filepath.Join(b.TempDir(), "out"), newIdentity(draft, points, o), Shard{})
+	s, err := openStore(filepath.Join(b.TempDir(), "out"), newIdentity(&Job{Draft: draft, Points: points, Hold: o}), Shard{})
 	if err != nil {
 		b.Fatal(err)
 	}
@@ -36,7 +36,7 @@ func BenchmarkLatchPoints(b *testing.B) {
 	for b.Loop() {
 		for i := range points.Len() {
 			begun := time.Now()
-			a, err := compute(b.Context(), points, o, points.At(i))
+			a, err := compute(b.Context(), points, nil, o, points.At(i))
 			if err != nil {
 				b.Fatal(err)
 			}
