@@ -86,34 +86,34 @@ func (c *Climber) Climb(ctx context.Context, s Stage, starts []Perch) ([]Climb, 
 	return c.course.climbs, err
 }
 
-// walk advances the lanes until none has a run.
+// patience is the number of pauses after which the context is looked at.
+const patience = 1024
+
+// walk advances the lanes in turn until none has a run.
 func (c *Climber) walk(ctx context.Context) error {
 	c.compact()
-	for c.active > 0 {
-		if ctx.Err() != nil {
+	pair := c.isPair()
+	for i, pauses := 0, 0; c.active > 0 && c.course.err == nil; pauses++ {
+		if pauses%patience == 0 && ctx.Err() != nil {
 			return context.Cause(ctx)
 		}
-		for step := 0; step < 4096 && c.active > 0; step++ {
-			if c.round(); c.course.err != nil {
-				return c.course.err
-			}
+		why := due
+		if i >= c.active {
+			i = 0
+		}
+		if pair && c.tables != nil {
+			i, why = c.rushPair(i)
+		}
+		l := &c.lanes[i]
+		goesOn := why == noted && c.look(l) || why == due && c.event(l)
+		if goesOn || c.board(l) {
+			i++
+		} else {
+			c.active--
+			c.lanes[i], c.lanes[c.active] = c.lanes[c.active], c.lanes[i]
 		}
 	}
 	return c.course.err
-}
-
-// round gives every lane one event.
-func (c *Climber) round() {
-	ended := false
-	for i := range c.lanes[:c.active] {
-		l := &c.lanes[i]
-		if !c.event(l) && !c.board(l) {
-			ended = true
-		}
-	}
-	if ended {
-		c.compact()
-	}
 }
 
 // compact drops the lanes that have no run.

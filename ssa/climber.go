@@ -24,7 +24,7 @@ type Climber struct {
 	bursty  []bool  // by place
 	random  stream.Stream
 	sizes   stream.Stream
-	units   [256]float64
+	units   stream.Units
 	used    int
 	lanes   [climbLanes]climb
 	active  int
@@ -107,9 +107,7 @@ func (c *Climber) Events() int64 { return c.events }
 // unit gives the next uniform number.
 func (c *Climber) unit() float64 {
 	if c.used == len(c.units) {
-		for i := range c.units {
-			c.units[i] = float64(c.random.Uint64()>>11) * 0x1p-53
-		}
+		c.random.FillUnits(&c.units)
 		c.used = 0
 	}
 	c.used++
@@ -142,8 +140,9 @@ type climb struct {
 // A track is a rung worked out for a ladder.
 type track struct {
 	*Rung
-	adds   []int64 // what a firing adds to the value, but for bursts, by place
-	core   int64   // no state of the core From has a value above
+	pair   [4]int64 // see rushPair
+	adds   []int64  // what a firing adds to the value, but for bursts, by place
+	core   int64    // no state of the core From has a value above
 	others [][2]int64
 	floors []int64
 	last   bool // there is no rung to reach any more
@@ -157,6 +156,11 @@ func (s *system) newTrack(r *Rung, floors []int64, last bool) *track {
 			for _, c := range s.changes.of(reaction) {
 				t.adds[g*groupWidth+j] += r.Weights[c.species] * c.by
 			}
+		}
+	}
+	for r, p := range pairPlaces {
+		if p < len(t.adds) {
+			t.pair[r] = t.adds[p]
 		}
 	}
 	_, t.core = span(&s.Cores[s.From], r.Weights)
