@@ -70,7 +70,8 @@ type Result struct {
 	// that lies in no core: that way of leaving is in no rate.
 	Emptied int64
 	Ending  Ending
-	Events  int64 // reaction firings, those of the pilots included
+	within  float64 // relative variance that a repeat's own families lead to expect
+	Events  int64   // reaction firings, those of the pilots included
 }
 
 // estimate takes the repeats together. It needs two that are done.
@@ -88,7 +89,7 @@ func estimate(d *design, repeats []*repeat) *Result {
 			won[k], made[k] = won[k]+one.won[k], made[k]+one.made[k]
 			r.Stages[k].Events += one.events[k+1]
 			if one.made[k] > 0 {
-				r.Stages[k].Runs += int64(d.runs)
+				r.Stages[k].Runs += int64(d.runs[k])
 			}
 		}
 	}
@@ -97,8 +98,9 @@ func estimate(d *design, repeats []*repeat) *Result {
 	}
 	n := float64(len(repeats))
 	r.Flux = float64(crossings) / (n * d.time)
+	r.within = within / n
 	r.interval()
-	r.disagree(within / n)
+	r.disagree()
 	return r
 }
 
@@ -119,24 +121,13 @@ func quantile(n float64) float64 {
 }
 
 // disagree holds the spread of the repeats against what each expects of itself.
-func (r *Result) disagree(within float64) {
+func (r *Result) disagree() {
 	n := float64(len(r.Repeats))
 	relative := r.StandardError * r.StandardError * n / (r.Rate * r.Rate)
-	r.Disagreement = relative / within
+	r.Disagreement = relative / r.within
 	limit := distuv.ChiSquared{K: n - 1}.Quantile(1-1e-4) / (n - 1)
 	r.Missed = r.Disagreement > margin*limit
 }
 
 // margin allows for what the families' variance does not know well.
 const margin = 2
-
-// repeatsFor gives the number of repeats that a precision takes, where one has this
-// relative variance.
-func repeatsFor(variance, precision float64) int {
-	half := math.Log1p(precision)
-	n := float64(leastRepeats)
-	for range 20 {
-		n = math.Max(leastRepeats, math.Ceil(variance*math.Pow(quantile(n)/half, 2)))
-	}
-	return int(n)
-}

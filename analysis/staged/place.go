@@ -14,7 +14,7 @@ const (
 	pilotTimes = 400
 	// crossingTimes is about how many relaxation times lie between two crossings of the
 	// first rung, so that they know little of each other.
-	crossingTimes = 3
+	crossingTimes = 1.5
 	// aim is the chance of a stage. Work at a given precision goes as
 	// (1−p)/(p ln²p), which is least at 0.2; a little more keeps families apart.
 	aim = 0.25
@@ -30,9 +30,11 @@ type ladder struct {
 	steps   []step
 	flux    float64   // crossings of the first rung in a unit of time
 	chances []float64 // of each stage: from rung k on
-	// crossing is the number of events that a crossing takes, run that of one run of a stage.
-	crossing, run float64
-	stuck         *StuckError
+	// crossing is the number of events that a crossing of the first rung takes, and costs
+	// those of one run of each stage.
+	crossing float64
+	costs    []float64
+	stuck    *StuckError
 }
 
 // place chooses the rungs, one by one, from those that the coordinate offers.
@@ -44,15 +46,13 @@ func (j *job) place(ctx context.Context) (*ladder, error) {
 	l := &ladder{}
 	offered := j.plan.Along.steps()
 	pool, offered, err := j.first(ctx, c, l, offered)
-	runs, before := 0, c.Events()
 	for err == nil && l.stuck == nil && len(l.chances) < len(l.steps) {
-		var more int
-		pool, offered, more, err = j.next(ctx, c, l, offered, pool)
-		runs += more
+		before, runs := c.Events(), 0
+		pool, offered, runs, err = j.next(ctx, c, l, offered, pool)
+		l.costs = append(l.costs, float64(c.Events()-before)/math.Max(1, float64(runs)))
 		j.tell("placing rungs", 0, c.Events())
 	}
 	j.events.Add(c.Events())
-	l.run = float64(c.Events()-before) / math.Max(1, float64(runs))
 	return l, err
 }
 

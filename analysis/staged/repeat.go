@@ -13,13 +13,6 @@ const (
 	families = ssa.Walkers * ssa.Stretches
 )
 
-// A design is what every repeat does: fixed before the first of those that count.
-type design struct {
-	*ladder
-	time float64 // watched in the first stage
-	runs int     // of each later stage
-}
-
 // A repeat is one estimate of the rate, independent of the others.
 type repeat struct {
 	done      bool
@@ -73,7 +66,7 @@ func (j *job) stage(ctx context.Context, c *ssa.Climber, d *design, r *repeat, k
 	}
 	var climbs []ssa.Climb
 	if len(pool) > 0 {
-		climbs, err = c.Climb(ctx, s, deal(pool, d.runs, c.Draw()))
+		climbs, err = c.Climb(ctx, s, deal(pool, d.runs[k], c.Draw()))
 	}
 	won, made := 0.0, 0.0
 	for i := range pool {

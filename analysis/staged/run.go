@@ -3,7 +3,6 @@ package staged
 import (
 	"context"
 	"errors"
-	"math"
 	"sync"
 	"sync/atomic"
 	"time"
@@ -13,17 +12,8 @@ import (
 
 const (
 	leastRepeats = 10
-	// pilotRepeats say how many repeats it takes.
+	// pilotRepeats are made to plan the others by.
 	pilotRepeats = 12
-	// spread is the relative standard deviation that a repeat is sized for, and
-	// inflation what its variance is likely to be over that of independent stages.
-	spread    = 0.3
-	inflation = 1.5
-	// entrance is about the relative variance of what comes of one crossing of the first
-	// rung, with that of their number.
-	entrance = 2.5
-	// spare repeats, over those that the pilot says, make a miss of the precision rare.
-	spare = 1.2
 	// Streams of the pilots; repeat i has stream i.
 	pilotStream       = 1 << 37
 	pilotRepeatStream = 1 << 36
@@ -55,12 +45,12 @@ func Run(ctx context.Context, p Plan) (*Result, error) {
 	if l.stuck != nil {
 		return nil, l.stuck
 	}
-	d := l.design()
-	pilot, err := j.repeats(ctx, d, pilotRepeats, pilotRepeatStream, "pilot")
+	first := l.design(inflation)
+	pilot, err := j.repeats(ctx, first, pilotRepeats, pilotRepeatStream, "pilot")
 	if err != nil {
 		return nil, err
 	}
-	n, ending := j.number(pilot)
+	d, n, ending := j.design(first, pilot)
 	made, err := j.repeats(ctx, d, n, 0, "repeats")
 	if ctx.Err() != nil && len(made) >= 2 {
 		ending, err = Cancelled, nil
@@ -71,61 +61,10 @@ func Run(ctx context.Context, p Plan) (*Result, error) {
 	r := estimate(d, made)
 	r.Ending, r.Events = ending, j.events.Load()
 	if r.Rate == 0 {
-		return r, &StuckError{From: j.name(p.From), To: j.name(p.To), Share: d.steps[len(d.steps)-1].share, Runs: n * d.runs}
+		return r, &StuckError{From: j.name(p.From), To: j.name(p.To), Share: d.steps[len(d.steps)-1].share, Runs: n * d.runs[len(d.runs)-1]}
 	}
 	return r, nil
 }
-
-// design sizes the repeats for ladder l. The relative variance of one is about
-// entrance/crossings for where runs enter the ladder and rest/runs for how they get
-// on, at a cost of events that the pilot has seen; the ratio of the two is the one that is cheapest.
-func (l *ladder) design() *design {
-	d := &design{ladder: l}
-	rest := 0.0
-	for _, p := range l.chances {
-		rest += inflation * (1 - p) / p
-	}
-	rest = math.Max(rest, 0.1)
-	ratio := math.Sqrt(entrance * float64(len(l.chances)) * l.run / (rest * l.crossing))
-	ratio = math.Max(0.05, math.Min(ratio, 1))
-	d.runs = int(math.Max(100, math.Ceil((entrance/ratio+rest)/(spread*spread))))
-	d.time = math.Max(ratio*float64(d.runs), leastCrossings) / l.flux
-	return d
-}
-
-// number gives the number of repeats that count.
-func (j *job) number(pilot []*repeat) (n int, e Ending) {
-	rates, within, variance := 0.0, 0.0, 0.0
-	for _, r := range pilot {
-		rates += r.rate / float64(len(pilot))
-		within += r.within / float64(len(pilot))
-	}
-	for _, r := range pilot {
-		variance += (r.rate - rates) * (r.rate - rates) / float64(len(pilot)-1) / (rates * rates)
-	}
-	if rates == 0 {
-		variance, within = 1, 1
-	}
-	n = repeatsFor(spare*math.Max(variance, within), j.plan.Precision)
-	if j.plan.Events == 0 {
-		return n, Reached
-	}
-	spent := j.events.Load()
-	each := int64(0)
-	for _, r := range pilot {
-		for _, e := range r.events {
-			each += e
-		}
-	}
-	each = max(1, each/int64(len(pilot)))
-	if most := max(int((j.plan.Events-spent)/each), fewestRepeats); most < n {
-		return most, Spent
-	}
-	return n, Reached
-}
-
-// fewestRepeats are made whatever the budget.
-const fewestRepeats = 4
 
 // climber gives a climber on the plan's ladder with the random numbers of a stream.
 func (j *job) climber(stream uint64) (*ssa.Climber, error) {
