@@ -16,10 +16,15 @@ type Passage struct {
 
 // Schlogl is the one-species chain with two states, molecules and minutes:
 // 3A→2A 2.5e-4 n(n−1)(n−2), 2A→3A 0.18 n(n−1), A→∅ 37.5 n, ∅→A 2200.
-func Schlogl() *model.Network {
+func Schlogl() *model.Network { return SchloglIn(1) }
+
+// SchloglIn is Schlogl in a volume so many times as large: k1 over its square, k2
+// over it, k4 times it. Its passage times follow from the closed sum of a birth–death
+// chain (Gardiner, Handbook of Stochastic Methods).
+func SchloglIn(volume float64) *model.Network {
 	return newBuilder("one-species chain with two states", "min", 1).
 		species("a", 0).
-		constant("k1", 2.5e-4).constant("k2", 0.18).constant("k3", 37.5).constant("k4", 2200).
+		constant("k1", 2.5e-4/(volume*volume)).constant("k2", 0.18/volume).constant("k3", 37.5).constant("k4", 2200*volume).
 		add(reaction{name: "three to two", needs: counts{"a": 2}, uses: counts{"a": 1}, k: "k1"}).
 		add(reaction{name: "two to three", needs: counts{"a": 2}, makes: counts{"a": 1}, k: "k2"}).
 		add(reaction{name: "loss", uses: counts{"a": 1}, k: "k3"}).
