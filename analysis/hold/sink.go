@@ -100,6 +100,9 @@ func (j *job) closeSink() error {
 	if err := records.WriteRates(j.sink.folder, j.stateNames(), j.rates); err != nil {
 		return err
 	}
+	if err := j.recordStages(); err != nil {
+		return err
+	}
 	o := records.Outcome{
 		Endings: j.sink.endings, Events: j.report.Work.Events, Steps: j.report.Work.Steps, Warnings: j.report.Warnings, CutShort: j.report.Interrupted,
 	}

@@ -30,6 +30,8 @@ type StagedReport struct {
 	// Disagreement is the variance between repeats over the one expected of them.
 	Disagreement Value `json:"disagreement"`
 	Events       int64 `json:"events"`
+
+	from, to int // indices of the states
 }
 
 // A StageReport is one stage of staged runs, all repeats together.
@@ -67,13 +69,12 @@ func (j *job) byStaged(ctx context.Context) error {
 
 // refuse tells what staged runs cannot serve.
 func (r *stagedJob) refuse() error {
-	for _, c := range r.network.Constants {
-		if c.Spread > 0 {
-			return fmt.Errorf("staged runs need the same constants in all cells at all times, and %s varies (spread %.4g): take --route runs, or give %s without a spread", c.Name, c.Spread, c.Name)
-		}
-	}
-	if r.options.Runs > 0 || r.options.Until > 0 {
-		return errors.New("staged runs take no --runs and no --until: their stages are as many and as long as the flip asks; --precision and --events say how well and at what cost")
+	const instead = "left out for staged runs: their stages are as many and as long as the flip asks; --precision and --events say how well and at what cost"
+	switch o := r.options; {
+	case o.Runs > 0:
+		return &OptionError{"runs", o.Runs, instead}
+	case o.Until > 0:
+		return &OptionError{"until", o.Until, instead}
 	}
 	return nil
 }
@@ -146,7 +147,7 @@ func (r *stagedJob) plan(from, to int, along staged.Coordinate, budget int64) st
 func (r *stagedJob) describe(from, to int, along string, s *staged.Result) {
 	report := StagedReport{
 		From: r.name(from), To: r.name(to), Along: along, Flux: Value(s.Flux), Repeats: len(s.Repeats),
-		Effective: Value(s.Effective), Disagreement: Value(s.Disagreement), Events: s.Events,
+		Effective: Value(s.Effective), Disagreement: Value(s.Disagreement), Events: s.Events, from: from, to: to,
 	}
 	for _, stage := range s.Stages {
 		report.Stages = append(report.Stages, StageReport{Value(stage.Share), Value(stage.Success), stage.Runs, stage.Events})
