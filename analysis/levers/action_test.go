@@ -73,6 +73,9 @@ func TestActionOfOneSpecies(t *testing.T) {
 // S off by δ would make it grow by δ times the copies instead. In bursts, whose mean is
 // made of two constants.
 func TestPrefactorSettles(t *testing.T) {
+	if underRace {
+		t.Skip("takes a minute under the race detector")
+	}
 	n := zoo.BurstLatch(100)
 	var parts [3][]float64
 	for i, copies := range []float64{100, 200, 400} {
@@ -99,7 +102,10 @@ func TestPrefactorSettles(t *testing.T) {
 // In two species: the slopes by action, prefactor's part and all, are those of the lattice
 // within their error.
 func TestActionAgrees(t *testing.T) {
-	for name, copies := range map[string]float64{"latch": 25, "leakless": 30, "pair": 40} {
+	if underRace {
+		t.Skip("takes a minute under the race detector")
+	}
+	for name, copies := range map[string]float64{"latch": 18, "leakless": 20, "pair": 26} {
 		rep := run(t, design(t, name, copies, nil), Options{})
 		for i := range rep.Blocks {
 			for k := range rep.Blocks[i].Levers {
@@ -128,6 +134,9 @@ func TestActionAlone(t *testing.T) {
 
 // What each route refuses, and what stands in its place.
 func TestRoutesRefuse(t *testing.T) {
+	if underRace {
+		t.Skip("takes a minute under the race detector")
+	}
 	n := design(t, "operator", 0, nil)
 	var noise *action.FixedNoiseError
 	if _, err := Run(context.Background(), n, Options{Route: Action}); !errors.As(err, &noise) {

@@ -182,7 +182,10 @@ func TestDifferencesOfRuns(t *testing.T) {
 // Differences of lattice hold times are extrapolated, and their intervals cover the
 // lattice's own slopes.
 func TestDifferencesOfLattice(t *testing.T) {
-	n := design(t, "pair", 10, nil)
+	if underRace {
+		t.Skip("takes a minute under the race detector")
+	}
+	n := design(t, "pair", 6, nil)
 	exact := run(t, n, Options{})
 	r := run(t, n, Options{Route: Differences})
 	for i := range r.Blocks {

@@ -111,10 +111,19 @@ func (j *job) together() string {
 			}
 		}
 	}
+	if name == "" && !known(states) {
+		return ""
+	}
 	if name == "" {
 		return "no constant by itself makes every state hold longer"
 	}
 	return fmt.Sprintf("for all states at once: %s; %s of it makes each hold at least %s", name, percentStep(direction), longer(least))
+}
+
+// known tells that no slope is missing.
+func known(states []*Block) bool {
+	missing := func(l Lever) bool { return math.IsNaN(float64(l.Slope().Value)) }
+	return !slices.ContainsFunc(states, func(b *Block) bool { return slices.ContainsFunc(b.Levers, missing) })
 }
 
 // weakest is the smallest change of a hold time's logarithm that a change of one per cent
