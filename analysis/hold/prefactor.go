@@ -32,16 +32,23 @@ const (
 	patientSeconds   = 20
 	// prefactorTruncation is the relative error that its box may cause.
 	prefactorTruncation = 1e-6
+	// goneTruncation is that where a rare end of dwells is asked for.
+	goneTruncation = 1e-13
 )
 
 // findPrefactors finds the prefactors of all ways, those of like exponents at the same
 // numbers of copies, and carries them on to the design's.
 func (j *job) findPrefactors(ctx context.Context, ways []*way) error {
 	ways = slices.Clone(ways)
-	slices.SortStableFunc(ways, func(a, b *way) int { return cmp.Compare(a.pair.S, b.pair.S) })
+	slices.SortStableFunc(ways, func(a, b *way) int {
+		if a.gone() != b.gone() {
+			return cmp.Compare(a.to, b.to)
+		}
+		return cmp.Compare(a.pair.S, b.pair.S)
+	})
 	for begin := 0; begin < len(ways); {
 		end := begin
-		for end < len(ways) && ways[end].pair.S <= kindred*ways[begin].pair.S {
+		for end < len(ways) && alike(ways[begin], ways[end]) {
 			end++
 		}
 		err := j.latticePrefactors(ctx, ways[begin:end])
@@ -62,17 +69,32 @@ func (j *job) findPrefactors(ctx context.Context, ways []*way) error {
 	return nil
 }
 
+// gone tells that the way ends where species are gone.
+func (w *way) gone() bool { return w.to == records.Elsewhere }
+
+// alike tells whether two ways share their numbers of copies; a's exponent is smaller.
+func alike(a, b *way) bool { return a.gone() == b.gone() && b.pair.S <= kindred*a.pair.S }
+
+// mostRarity is the largest rarity for a way: the lattice's box, drawn for the mean
+// dwells, need not reach to where species are gone if hardly any dwell ends there.
+func (w *way) mostRarity() float64 {
+	if w.gone() {
+		return 14
+	}
+	return math.Inf(1)
+}
+
 // latticePrefactors takes the mean times of some ways from the lattice at three
 // numbers of copies.
 func (j *job) latticePrefactors(ctx context.Context, ways []*way) error {
-	most, err := j.reach(ctx, ways[0].pair.S)
+	most, err := j.reach(ctx, ways[0])
 	if err != nil {
 		return err
 	}
 	for k, share := range fractions() {
 		copies := j.wholeTotals(most * share)
 		j.tell(fmt.Sprintf("action: lattice at %.4g copies", copies), float64(k)/3)
-		s, err := j.solveAt(ctx, copies)
+		s, err := j.solveAt(ctx, copies, ways[0].gone())
 		if err != nil {
 			return fmt.Errorf("the prefactor's lattice at %.4g copies: %w", copies, err)
 		}
@@ -89,11 +111,14 @@ func (j *job) latticePrefactors(ctx context.Context, ways []*way) error {
 }
 
 // reach gives the largest number of copies whose lattice is cheap enough.
-func (j *job) reach(ctx context.Context, s float64) (float64, error) {
+func (j *job) reach(ctx context.Context, w *way) (float64, error) {
 	found := 0.0
 	var last error
 	for _, rarity := range rarities() {
-		copies := j.wholeTotals(rarity / s)
+		if rarity > w.mostRarity() {
+			break
+		}
+		copies := j.wholeTotals(rarity / w.pair.S)
 		e, err := j.estimateAt(ctx, copies)
 		switch {
 		case ctx.Err() != nil:
@@ -185,17 +210,20 @@ func amountsOf(survey *deterministic.Map) [][]float64 {
 }
 
 // solveAt solves the lattice at a number of copies.
-func (j *job) solveAt(ctx context.Context, copies float64) (*lattice.Solution, error) {
+func (j *job) solveAt(ctx context.Context, copies float64, gone bool) (*lattice.Solution, error) {
 	p, err := j.problemAt(ctx, copies)
 	if err != nil {
 		return nil, err
+	}
+	if gone {
+		p.Truncation = goneTruncation
 	}
 	return lattice.Solve(ctx, p)
 }
 
 // logTime is the logarithm of the mean time of a way.
 func (w *way) logTime(s *lattice.Solution) float64 {
-	if w.to == records.Elsewhere {
+	if w.gone() {
 		return math.Log(s.Mean[w.from] / s.Lost[w.from])
 	}
 	return math.Log(s.Pair[w.from][w.to])

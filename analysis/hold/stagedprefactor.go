@@ -4,8 +4,6 @@ import (
 	"context"
 	"fmt"
 	"math"
-
-	"holdfast/analysis/records"
 )
 
 const (
@@ -23,7 +21,7 @@ func stagedFractions() []float64 { return []float64{0.4, 1} }
 // copies.
 func (j *job) stagedPrefactors(ctx context.Context, ways []*way) error {
 	for _, w := range ways {
-		if w.to == records.Elsewhere {
+		if w.gone() {
 			return fmt.Errorf("%s is left for where species are gone, which staged runs do not follow: take --route runs", w.pair.From)
 		}
 		w.prefactor.Deviations = []float64{}
