@@ -9,17 +9,17 @@ import (
 	"holdfast/model"
 )
 
-// How many molecules does the latch need to hold its high state for 20 generations?
+// How many molecules does the latch need to hold its high state for 5 generations?
 func Example() {
 	draft, err := model.Load("../../testdata/designs/latch.toml")
 	if err != nil {
 		log.Fatal(err)
 	}
-	network, err := draft.Bind(30, nil)
+	network, err := draft.Bind(15, nil)
 	if err != nil {
 		log.Fatal(err)
 	}
-	specs, err := sizing.ParseSpecs([]string{"high >= 20 generations"}, network)
+	specs, err := sizing.ParseSpecs([]string{"high >= 5 generations"}, network)
 	if err != nil {
 		log.Fatal(err)
 	}
@@ -32,7 +32,7 @@ func Example() {
 		fmt.Printf("%.0f: %.2f generations\n", at.Setting, at.Checks[0].Found)
 	}
 	// Output:
-	// met 43 copies
-	// 42: 18.99 generations
-	// 43: 20.51 generations
+	// met 25 copies
+	// 24: 4.73 generations
+	// 25: 5.12 generations
 }

@@ -46,17 +46,17 @@ func size(t testing.TB, n *model.Network, o sizing.Options, texts ...string) *si
 	return r
 }
 
-// The smallest latch whose high state holds 20 generations, against direct solutions of
+// The smallest latch whose high state holds 6 generations, against direct solutions of
 // the master equation at that size and at one less.
 func TestSmallestLatch(t *testing.T) {
-	n := demo(t, "latch", 30)
-	r := size(t, n, sizing.Options{}, "high >= 20 generations")
+	n := demo(t, "latch", 20)
+	r := size(t, n, sizing.Options{}, "high >= 6 generations")
 	at := float64(r.Answer.Setting)
-	if got := latticeMean(t, n, at, "high"); got < 20*45 {
-		t.Errorf("%v copies: %v min, want 900 or more", at, got)
+	if got := latticeMean(t, n, at, "high"); got < 6*45 {
+		t.Errorf("%v copies: %v min, want 270 or more", at, got)
 	}
-	if got := latticeMean(t, n, at-1, "high"); got >= 20*45 || float64(r.Answer.Short) != at-1 {
-		t.Errorf("%v copies: %v min, want less than 900", at-1, got)
+	if got := latticeMean(t, n, at-1, "high"); got >= 6*45 || float64(r.Answer.Short) != at-1 {
+		t.Errorf("%v copies: %v min, want less than 270", at-1, got)
 	}
 	if e := r.At(r.Answer.Setting); e.Checks[0].Route != hold.Lattice || e.Verdict != sizing.Meets {
 		t.Errorf("%+v", e)
@@ -68,7 +68,7 @@ func TestThreadsChangeNothing(t *testing.T) {
 	n := demo(t, "latch", 10)
 	var want []byte
 	for _, threads := range []int{1, 2, 5} {
-		o := sizing.Options{Hold: hold.Options{Seed: 4, Precision: 0.3, Threads: threads}, Knob: sizing.Knob{Name: "copies", Low: 5, High: 30}}
+		o := sizing.Options{Hold: hold.Options{Seed: 4, Route: hold.Runs, Precision: 0.3, Threads: threads}, Knob: sizing.Knob{Name: "copies", Low: 5, High: 30}}
 		got, err := json.Marshal(size(t, n, o, "high >= 80 min"))
 		if err != nil {
 			t.Fatal(err)
