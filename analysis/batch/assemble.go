@@ -45,12 +45,16 @@ func (s *store) finished() (done bool, note string, err error) {
 // labels are the names that stand in the tables, found in a first pass over the parts.
 type labels struct {
 	names  []string // of stable states
+	routes []string // that were taken first
 	states []records.State
 	rates  []records.Rate
 }
 
 // take adds the names of an answer that are new.
 func (l *labels) take(a *answer) {
+	if a.Route != "" && !slices.Contains(l.routes, a.Route) {
+		l.routes = append(l.routes, a.Route)
+	}
 	for i := range a.States {
 		n := &a.States[i]
 		if !slices.ContainsFunc(l.states, func(s records.State) bool { return s.Name == n.Name && s.Type == n.Type }) {
@@ -90,9 +94,7 @@ func (s *store) assemble(ctx context.Context, get source) error {
 	if err != nil {
 		return err
 	}
-	if l.names == nil {
-		l.names = []string{"none"}
-	}
+	l.names = orNone(l.names)
 	if err := s.writeTables(ctx, get, l); err != nil {
 		var full *records.WriteError
 		if errors.As(err, &full) {

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"strings"
 
 	"holdfast/analysis/hold"
 	"holdfast/analysis/records"
@@ -81,9 +82,7 @@ func (a *answer) takeReport(r *hold.Report, stable []deterministic.State) {
 		}
 		a.Rates = append(a.Rates, named)
 	}
-	if len(r.Rates) > 0 {
-		a.Route = r.Rates[0].Route
-	}
+	a.Route, _, _ = strings.Cut(r.Route, ":")
 }
 
 // explain takes an error as what came of the point.

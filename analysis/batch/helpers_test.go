@@ -5,6 +5,8 @@ import (
 	"fmt"
 	"os"
 	"path/filepath"
+	"slices"
+	"sync"
 	"testing"
 
 	"holdfast/analysis/batch"
@@ -24,7 +26,11 @@ func TestMain(m *testing.M) {
 		}
 		return
 	}
-	os.Exit(m.Run())
+	status := m.Run()
+	if top != "" {
+		_ = os.RemoveAll(top)
+	}
+	os.Exit(status)
 }
 
 func runChild(dir string) error {
@@ -133,15 +139,33 @@ func names(files map[string]string) (out []string) {
 	return out
 }
 
-// whole makes the quick batch in one go, once a test, and gives its folder.
+// whole gives the folder of the quick batch made in one go, once for all tests. It must
+// not be changed.
 func whole(t testing.TB) string {
 	t.Helper()
-	dir := filepath.Join(t.TempDir(), "whole")
-	run(t, quickJob(t, dir))
-	for _, name := range []string{"batch.json", "manifest.json", "points.arrow", "states.arrow", "rates.arrow"} {
-		if _, err := os.Stat(filepath.Join(dir, name)); err != nil {
-			t.Error(err)
-		}
+	dir, err := made()
+	if err != nil {
+		t.Fatal(err)
 	}
 	return dir
+}
+
+// made makes it in top, which TestMain removes.
+var (
+	top  string
+	made = sync.OnceValues(func() (dir string, err error) {
+		if top, err = os.MkdirTemp("", "batch"); err != nil {
+			return "", err
+		}
+		dir = filepath.Join(top, "whole")
+		return dir, runChild(dir)
+	})
+)
+
+func TestFiles(t *testing.T) {
+	files := names(bytesOf(t, whole(t)))
+	slices.Sort(files)
+	if want := []string{"batch.json", "manifest.json", "points.arrow", "rates.arrow", "states.arrow"}; !slices.Equal(files, want) {
+		t.Errorf("files %v, want %v", files, want)
+	}
 }

@@ -79,6 +79,8 @@ func holdSettings(o hold.Options) []Setting {
 	add("events", strconv.FormatInt(o.Events, 10), o.Events != 0)
 	add("until", number(o.Until), o.Until != 0)
 	add("step", number(o.Step), o.Step != 0)
+	add("along", o.Along, o.Along != "")
+	add("interval", number(o.Interval), o.Interval != 0)
 	add("memory", strconv.FormatInt(o.Memory, 10)+" bytes", o.Memory != 0)
 	add("generations", strings.Trim(fmt.Sprint(o.Holds), "[]"), o.Holds != nil)
 	return out
@@ -133,7 +135,7 @@ func readIdentity(dir string) (*identity, error) {
 		return nil, nil
 	}
 	if err != nil {
-		return nil, err
+		return nil, &NoBatchError{dir, "cannot be used: " + err.Error()}
 	}
 	id := &identity{}
 	if err := json.Unmarshal(data, id); err != nil || id.Program != "holdfast" {

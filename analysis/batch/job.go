@@ -14,7 +14,7 @@ type Job struct {
 	Draft  *model.Draft
 	Points *Points
 	// Hold are the options of the hold jobs. Seed and Command are the batch's; Threads,
-	// Point, Folder and Progress are not looked at.
+	// Point, Folder, Progress and Notice are not looked at.
 	Hold hold.Options
 	// Size, if not nil, makes each point a search for a size instead of a hold job.
 	Size *Size

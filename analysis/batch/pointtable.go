@@ -39,7 +39,7 @@ func columnOf(name string) string {
 
 func newPointTable(folder *records.Folder, id *identity, l *labels) (*pointTable, error) {
 	t := records.NewTable("points")
-	p := &pointTable{draws: id.Draws, routes: routesOf(l)}
+	p := &pointTable{draws: id.Draws, routes: orNone(l.routes)}
 	p.number = t.AddInt("point", "", "number of the point, from 1")
 	p.copies = t.AddFloat("copies", "molecules", "molecules in one unit of amount")
 	for i, name := range id.Names {
@@ -68,17 +68,12 @@ func newPointTable(folder *records.Folder, id *identity, l *labels) (*pointTable
 	return p, err
 }
 
-// routesOf lists the routes in order of appearance.
-func routesOf(l *labels) (routes []string) {
-	for i := range l.rates {
-		if r := l.rates[i].Route; !slices.Contains(routes, r) {
-			routes = append(routes, r)
-		}
-	}
-	if routes == nil {
+// orNone gives the names, or one where there are none: a column of names needs one.
+func orNone(names []string) []string {
+	if len(names) == 0 {
 		return []string{"none"}
 	}
-	return routes
+	return names
 }
 
 func (p *pointTable) append(a *answer) error {

@@ -59,7 +59,7 @@ func openStore(dir string, id identity, shard Shard) (*store, error) {
 		return nil, err
 	}
 	if err := os.MkdirAll(s.parts, 0o777); err != nil {
-		return nil, &WriteError{s.parts, err}
+		return nil, &NoBatchError{dir, "cannot be used: " + err.Error()}
 	}
 	err := s.lockAll()
 	if err == nil {

@@ -138,7 +138,7 @@ func (w *worker) compute(ctx context.Context, cancel context.CancelCauseFunc, do
 					return
 				}
 				o := w.Hold
-				o.Threads, o.Folder, o.Progress = max(1, threads/len(w.todo)), "", nil
+				o.Threads, o.Folder, o.Progress, o.Notice = max(1, threads/len(w.todo)), "", nil, nil
 				a, err := compute(ctx, w.Points, w.Size, o, w.Points.At(w.todo[k]))
 				if err != nil {
 					cancel(err)

@@ -41,7 +41,11 @@ func statusText(s *batch.Summary) string {
 			parts = append(parts, fmt.Sprintf("%d %s", n, status))
 		}
 	}
-	return fmt.Sprintf("%d points: %s", s.Points, strings.Join(parts, ", "))
+	points := "points"
+	if s.Points == 1 {
+		points = "point"
+	}
+	return fmt.Sprintf("%d %s: %s", s.Points, points, strings.Join(parts, ", "))
 }
 
 func rowTable(s *batch.Summary) *table {
