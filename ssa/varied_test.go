@@ -117,6 +117,9 @@ func series(s float64, f func(k float64) float64) (sum float64) {
 // process's by less than 0.2 %, which is checked too; held for a whole memory it does so
 // by far more than the sampling error, and has to be the scheme's.
 func TestModulatedBirthRate(t *testing.T) {
+	if ssa.UnderRace {
+		t.Skip("many events")
+	}
 	long(t)
 	const k, s, gamma = 20.0, 0.5, 1.0
 	for _, c := range []struct{ memory, interval float64 }{{0.3, 0}, {1, 0}, {1, 1}, {1, 3}, {30, 0}} {
