@@ -137,7 +137,7 @@ func (j *job) ways(routes *action.Routes) ([]*way, error) {
 			continue
 		}
 		if rare := p.S * j.network.Copies; rare < leastExponent {
-			return nil, fmt.Errorf("flips from %s to %s are not rare: S·copies is %.3g, and least action needs %d or more; take --route lattice or runs, which are exact and cheap here",
+			return nil, fmt.Errorf("flips from %s to %s are not rare: S·copies is %.3g, and least action needs %d or more; take --route lattice or runs, which see such flips",
 				p.From, p.To, rare, leastExponent)
 		}
 		out = append(out, &way{from: from, to: to, pair: p, prefactor: action.Prefactor{Power: action.PowerOf(p.Paths[0])}})

@@ -117,6 +117,9 @@ func TestActionRefuses(t *testing.T) {
 
 // TestActionStops: a job that is stopped says so.
 func TestActionStops(t *testing.T) {
+	if underRace {
+		t.Skip("a lattice")
+	}
 	ctx, cancel := context.WithCancel(context.Background())
 	n := demo(t, "latch", 300)
 	stop := func(p hold.Progress) {
