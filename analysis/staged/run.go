@@ -17,6 +17,10 @@ const (
 	// Streams of the pilots; repeat i has stream i.
 	pilotStream       = 1 << 37
 	pilotRepeatStream = 1 << 36
+	secondPilotStream = 1 << 35
+	// manyRepeats are so many that a second pilot, of repeats as they will be, is worth its cost: the
+	// first one's are smaller, and their variance says too much.
+	manyRepeats = 64
 )
 
 // A job is one estimate under way.
@@ -51,6 +55,12 @@ func Run(ctx context.Context, p Plan) (*Result, error) {
 		return nil, err
 	}
 	d, n, ending := j.design(first, pilot)
+	if n > manyRepeats {
+		if pilot, err = j.repeats(ctx, d, pilotRepeats, secondPilotStream, "pilot"); err != nil {
+			return nil, err
+		}
+		n = min(n, repeatsFor(spare*estimate(d, pilot).relativeVariance(), j.plan.Precision))
+	}
 	made, err := j.repeats(ctx, d, n, 0, "repeats")
 	if ctx.Err() != nil && len(made) >= 2 {
 		ending, err = Cancelled, nil
