@@ -77,7 +77,9 @@ func (c *Climber) Climb(ctx context.Context, s Stage, starts []Perch) ([]Climb, 
 	c.course = &course{tracks: tracks, keep: s.Keep, starts: starts, climbs: make([]Climb, len(starts))}
 	c.active = min(climbLanes, len(starts))
 	for i := range c.lanes[:c.active] {
-		c.lanes[i].number = -1
+		c.lanes[i].number = -1 // before board ends early, too: a lane left as it was would run on
+	}
+	for i := range c.lanes[:c.active] {
 		if !c.board(&c.lanes[i]) {
 			break
 		}
