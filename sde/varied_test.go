@@ -14,7 +14,7 @@ import (
 // immigration is ∅→a at a rate or in bursts that the text says, and a→∅ at rate 1.
 func immigration(t testing.TB, start float64, constant, birth string) *model.Network {
 	t.Helper()
-	d, err := model.Parse("birth.toml", []byte(fmt.Sprintf(`time = "min"
+	d, err := model.Parse("birth.toml", fmt.Appendf(nil, `time = "min"
 [species]
 a = { start = %v }
 [constants]
@@ -26,7 +26,7 @@ name = "birth"
 name = "death"
 uses = { a = 1 }
 mass_action = 1
-`, start, constant, birth)))
+`, start, constant, birth))
 	if err != nil {
 		t.Fatal(err)
 	}

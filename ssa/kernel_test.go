@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"reflect"
+	"strings"
 	"sync"
 	"testing"
 
@@ -124,18 +125,19 @@ func TestKernelsMakeTheSameRuns(t *testing.T) {
 // genes are n genes that keep themselves on, each with a row of its own; the first may
 // be made in bursts.
 func genes(n int, first string) *model.Network {
-	text := "title = \"genes\"\ntime = \"min\"\ncopies = 1\n"
+	var text strings.Builder
+	text.WriteString("title = \"genes\"\ntime = \"min\"\ncopies = 1\n")
 	for i := range n {
 		made := "1"
 		if i == 0 && first != "" {
 			made = "{ burst = 2.5 }"
 		}
-		text += fmt.Sprintf("[species.x%d]\nstart = %d\n", i, 3*i)
-		text += fmt.Sprintf("[[reaction]]\nname = \"making %d\"\nmakes = { x%d = %s }\nrate = \"0.5 + 3*hill(x%d, 10, 2)\"\n", i, i, made, i)
-		text += fmt.Sprintf("[[reaction]]\nname = \"loss %d\"\nuses = { x%d = 1 }\nmass_action = 0.1\n", i, i)
-		text += fmt.Sprintf("[[reaction]]\nname = \"loss in pairs %d\"\nuses = { x%d = 2 }\nmass_action = 0.004\n", i, i)
+		text.WriteString(fmt.Sprintf("[species.x%d]\nstart = %d\n", i, 3*i))
+		text.WriteString(fmt.Sprintf("[[reaction]]\nname = \"making %d\"\nmakes = { x%d = %s }\nrate = \"0.5 + 3*hill(x%d, 10, 2)\"\n", i, i, made, i))
+		text.WriteString(fmt.Sprintf("[[reaction]]\nname = \"loss %d\"\nuses = { x%d = 1 }\nmass_action = 0.1\n", i, i))
+		text.WriteString(fmt.Sprintf("[[reaction]]\nname = \"loss in pairs %d\"\nuses = { x%d = 2 }\nmass_action = 0.004\n", i, i))
 	}
-	d, err := model.Parse("genes.toml", []byte(text))
+	d, err := model.Parse("genes.toml", []byte(text.String()))
 	if err != nil {
 		panic(err)
 	}

@@ -3,6 +3,7 @@ package action
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"holdfast/deterministic"
 	"holdfast/model"
@@ -125,10 +126,8 @@ func (p *Problem) dead() []bool {
 func (p *Problem) stopped(r int, gone []int) bool {
 	for _, terms := range [][]model.Term{p.Network.Reactions[r].Net, p.Network.Reactions[r].Bursts} {
 		for _, t := range terms {
-			for _, i := range gone {
-				if t.Species == i {
-					return true
-				}
+			if slices.Contains(gone, t.Species) {
+				return true
 			}
 		}
 	}

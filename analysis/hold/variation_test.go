@@ -16,7 +16,7 @@ import (
 // j; constants are as written.
 func chain(t testing.TB, k, j string) *model.Network {
 	t.Helper()
-	d, err := model.Parse("chain.toml", []byte(fmt.Sprintf(`title = "chain"
+	d, err := model.Parse("chain.toml", fmt.Appendf(nil, `title = "chain"
 time = "min"
 generation = 1.0
 [species]
@@ -36,7 +36,7 @@ mass_action = "j"
 gate = { max = 0 }
 [core.on]
 gate = { min = 1, max = 1 }
-`, k, j)))
+`, k, j))
 	if err != nil {
 		t.Fatal(err)
 	}

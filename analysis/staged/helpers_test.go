@@ -76,7 +76,7 @@ func chain(n *model.Network) (up, down func(count int64) float64) {
 func passage(up, down func(int64) float64, from, to, highest int64) float64 {
 	step, total := 0.0, 0.0
 	if to > from {
-		for n := int64(0); n < to; n++ {
+		for n := range to {
 			if step = (1 + down(n)*step) / up(n); n >= from {
 				total += step
 			}
