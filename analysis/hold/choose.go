@@ -97,10 +97,31 @@ func (c *chooser) weigh(ctx context.Context) ([]candidate, error) {
 	if w.inReach && (c.lattice == nil || w.runs < c.lattice.Seconds) {
 		out = append(out, candidate{Runs, "exact stochastic runs, which see flips enough", w.runs, c.beside()})
 	}
-	if c.lattice != nil {
-		out = append(out, c.byMaster("the cheapest here"))
+	return append(out, c.place(w.rare(c.beside()))...), nil
+}
+
+const (
+	// worthwhile is how many times dearer than another route the lattice may be to be
+	// taken before it: it alone is exact to many digits.
+	worthwhile = 2
+	// headroom is how many times the estimated memory must be there, as the box grows where
+	// it proves too small.
+	headroom = 1.6
+)
+
+// place puts the lattice among other routes, before them if it is worth its time.
+func (c *chooser) place(others []candidate) []candidate {
+	if c.lattice == nil {
+		return others
 	}
-	return append(out, w.rare(c.beside())...), nil
+	if len(others) == 0 {
+		return []candidate{c.byMaster("the cheapest here")}
+	}
+	tight := headroom*float64(c.lattice.Bytes) > float64(c.lattice.Allowed)
+	if tight || c.lattice.Seconds > worthwhile*others[0].seconds {
+		return append(others, c.byMaster("the last resort"))
+	}
+	return append([]candidate{c.byMaster("worth its time, as it alone is exact")}, others...)
 }
 
 // beside says what the lattice would take, or why it cannot serve.

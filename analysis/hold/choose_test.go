@@ -60,6 +60,7 @@ func TestChoice(t *testing.T) {
 		{"no memory, flips in reach: runs", "latch", 15, Options{Memory: small}, []string{Runs}},
 		{"no memory, rare flips: staged", "pair", 60, Options{Memory: small}, []string{Staged}},
 		{"the same at a high copy number", "latch", 120, Options{Memory: small}, []string{Staged}},
+		{"a dear lattice that may outgrow its memory comes last", "pair", 400, Options{}, []string{actionRoute, Staged, Lattice}},
 		{"beyond staged runs: least action", "latch", 4000, Options{}, []string{actionRoute, Staged}},
 	} {
 		j := jobOf(t, c.design, c.copies, c.o)

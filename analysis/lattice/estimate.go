@@ -19,6 +19,8 @@ type Estimate struct {
 	Bytes           int64
 	Seconds         float64
 	Multiplications float64
+	// Allowed is the memory that the problem may take, in bytes.
+	Allowed int64
 }
 
 // bytesPerNode is the memory that a node takes besides the factors: its counts,
@@ -127,6 +129,7 @@ func (p *Problem) estimate(l *laid) Estimate {
 		Bytes:           residentBase + int64(residentShare*float64(8*(l.numbers+2*l.peak)+int64(l.nodes())*(bytesPerNode+8*vectors))),
 		Seconds:         l.work/usualSpeed + float64(l.nodes())*4e-6,
 		Multiplications: l.work,
+		Allowed:         p.memory(),
 	}
 }
 
