@@ -26,13 +26,8 @@ func TestFillIsRepeatedNext(t *testing.T) {
 // The loop for this machine and the plain one agree in every bit, from states with
 // long carries and from a thousand others.
 func TestFillIsPlain(t *testing.T) {
-	states := [][2]uint64{{0, 0}, {0, word}, {word, 0}, {word, word}, {1 << 63, 1 << 63}, {1<<32 - 1, 1<<32 - 1}, {word &^ (1<<32 - 1), word &^ (1<<32 - 1)}}
-	s := New(8, 0, 0)
-	for range 1000 {
-		states = append(states, [2]uint64{s.Uint64(), s.Uint64()})
-	}
 	edges := 0
-	for _, state := range states {
+	for _, state := range states() {
 		var got, want Batch
 		e := fill(&got, state[0], state[1])
 		if f := fillPlain(&want, &expZiggurat.strips, &oneAndTwo, state[0], state[1]); e != f {
@@ -48,6 +43,16 @@ func TestFillIsPlain(t *testing.T) {
 	if edges == 0 {
 		t.Error("no exponential number was at an edge")
 	}
+}
+
+// states are some with long carries and a thousand others.
+func states() [][2]uint64 {
+	out := [][2]uint64{{0, 0}, {0, word}, {word, 0}, {word, word}, {1 << 63, 1 << 63}, {1<<32 - 1, 1<<32 - 1}, {word &^ (1<<32 - 1), word &^ (1<<32 - 1)}}
+	s := New(8, 0, 0)
+	for range 1000 {
+		out = append(out, [2]uint64{s.Uint64(), s.Uint64()})
+	}
+	return out
 }
 
 // n steps of the generator are one step of that of n.

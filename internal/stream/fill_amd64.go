@@ -17,6 +17,19 @@ func fill(dst *Batch, high, low uint64) (edges uint64) {
 //go:noescape
 func fillWide(dst *Batch, strips *[256]Strip, c *[3]leap, high, low uint64) (edges uint64)
 
+// fillNormals makes normal numbers; see normalsPlain.
+func fillNormals(dst []float64, high, low uint64) (edges uint64) {
+	if cpu.X86.HasAVX2 && len(dst) > 0 && len(dst)%4 == 0 && len(dst) <= Block {
+		return normalsWide(&dst[0], len(dst), &normalZiggurat.strips, &inTurn, high, low)
+	}
+	return normalsPlain(dst, &normalZiggurat.strips, &oneAndTwo, high, low)
+}
+
+// normalsWide makes n normal numbers, a multiple of four up to Block, four at a time.
+//
+//go:noescape
+func normalsWide(dst *float64, n int, strips *[256]Strip, c *[3]leap, high, low uint64) (edges uint64)
+
 // A leap holds generators for the four states of a vector, in the form that vector
 // arithmetic needs: it multiplies numbers of 32 bits.
 type leap struct {
@@ -26,8 +39,12 @@ type leap struct {
 }
 
 // leaps are those from the state before a block to its first four exponential
-// numbers, to its first four units, and from any four to the next. They are never written.
-var leaps = [3]leap{newLeap(1, 3, 5, 7), newLeap(2, 4, 6, 8), newLeap(8, 8, 8, 8)}
+// numbers, to its first four units, and from any four to the next; inTurn are those to
+// its first four numbers, to the four after them, and on. They are never written.
+var (
+	leaps  = [3]leap{newLeap(1, 3, 5, 7), newLeap(2, 4, 6, 8), newLeap(8, 8, 8, 8)}
+	inTurn = [3]leap{newLeap(1, 2, 3, 4), newLeap(5, 6, 7, 8), newLeap(8, 8, 8, 8)}
+)
 
 func newLeap(steps ...int) (l leap) {
 	const half = 1<<32 - 1

@@ -119,20 +119,6 @@ func (s *Stream) Normal() float64 {
 	return signed(x, b)
 }
 
-// FillNormal overwrites dst with the numbers that as many calls of Normal would
-// give.
-func (s *Stream) FillNormal(dst []float64) {
-	for i := range dst {
-		b := s.src.Uint64()
-		l := &normalZiggurat.strips[b&255]
-		x := float64(int64(b>>11)) * l.Width
-		if b>>11 >= l.Inside {
-			x = s.normalEdge(b, x)
-		}
-		dst[i] = signed(x, b)
-	}
-}
-
 // signed gives x the sign of bit 8 of b, which neither the strip nor the place
 // in it is made of.
 func signed(x float64, b uint64) float64 {
@@ -148,12 +134,30 @@ func (s *Stream) normalEdge(b uint64, x float64) float64 {
 			return x
 		case i == 0:
 			return s.normalTail()
-		case z.height[i]+s.Float64()*(z.height[i+1]-z.height[i]) < math.Exp(-x*x/2):
+		case z.belowBell(int(i), x, z.height[i]+s.Float64()*(z.height[i+1]-z.height[i])):
 			return x
 		}
 		b = s.src.Uint64()
 		x = float64(int64(b>>11)) * z.strips[b&255].Width
 	}
+}
+
+// belowBell tells whether y < exp(−x²/2), for x in strip i ≥ 1 between its edges c < d, as
+// below does. The curve lies between the tangent at c and the chord, below the tangent
+// where it is concave, from 0 to 1, and above it beyond.
+func (z *ziggurat) belowBell(i int, x, y float64) bool {
+	const margin = 0x1p-40
+	c, d := z.edge[i+1], z.edge[i]
+	tangent := z.height[i+1] * (1 - c*(x-c))
+	chord := z.height[i] + (z.height[i+1]-z.height[i])*(d-x)/(d-c)
+	switch {
+	case c < 1 && d > 1:
+	case y < min(tangent, chord)*(1-margin):
+		return true
+	case y > max(tangent, chord)*(1+margin):
+		return false
+	}
+	return y < math.Exp(-x*x/2)
 }
 
 // normalTail draws from the normal law beyond normalRight. Marsaglia,
