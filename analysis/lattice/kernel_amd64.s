@@ -99,24 +99,6 @@ step:
 	LDMXCSR mode-8(SP)
 	RET
 
-// func identify(leaf, part uint32) (a, b, c, d uint32)
-TEXT ·identify(SB), NOSPLIT, $0-24
-	MOVL leaf+0(FP), AX
-	MOVL part+4(FP), CX
-	CPUID
-	MOVL AX, a+8(FP)
-	MOVL BX, b+12(FP)
-	MOVL CX, c+16(FP)
-	MOVL DX, d+20(FP)
-	RET
-
-// func enabledState() uint32
-TEXT ·enabledState(SB), NOSPLIT, $0-4
-	XORL CX, CX
-	XGETBV
-	MOVL AX, ret+0(FP)
-	RET
-
 // func rowSums(rows, columns int, a *float64, stride int, x, y *float64)
 //
 // y[i] += Σ a[i,j]·x[j], with the same treatment of tiny numbers as panel.
