@@ -121,6 +121,7 @@ func limit(passages [4]func(float64) float64, from float64) (value, change float
 // held against the mean time of the scheme at their step, n = 2000; that, at steps that go
 // to zero, against the values, to the change by the last order of extrapolation.
 func TestDoubleWell(t *testing.T) {
+	long(t)
 	const cell = 1e-3
 	for _, c := range []struct{ d, to, want float64 }{{0.1, 0, 30.82130}, {0.2, 0, 7.934022}, {0.2, 1, 19.09390}} {
 		s, to := doubleWell{c.d}, c.to-cell/2
@@ -145,6 +146,7 @@ func tends(t *testing.T, passages [4]func(float64) float64, from, want float64) 
 // Stochastic Modelling of Reaction–Diffusion Processes, CUP 2020, attribution from
 // memory; quadrature agrees). n = 200 a start.
 func TestCubicDrift(t *testing.T) {
+	long(t)
 	s := line{func(x float64) float64 { return ((-1e-3*x+0.75)*x-165)*x + 1e4 }, constant(200)}
 	coarse, fine := schemePassages(s, 0.004, -100, 249.5), levels(s, 4e-4, -30, 250)
 	for _, c := range []struct{ from, want float64 }{{0, 59.4871}, {200, 52.4663}, {245, 7.64529}} {
@@ -160,6 +162,7 @@ func TestCubicDrift(t *testing.T) {
 // rush past a, so the scheme's time has an error of first order in the step;
 // extrapolated, it is held to the change that this makes.
 func TestSaddleNode(t *testing.T) {
+	long(t)
 	const d, a, cell = 0.01, 3, 1e-3
 	for _, c := range []struct {
 		mu, want float64
@@ -187,6 +190,7 @@ func tail(mu, a float64) float64 {
 // The chain of Schlögl as a network: runs from 100 to 400 against the scheme's own
 // mean time, n = 500. (The exact chain takes 28.6719 min.)
 func TestSchlogl(t *testing.T) {
+	long(t)
 	s := sde.Chemical(zoo.Schlogl())
 	x := passages(t, sde.Plan{System: s, Step: 0.002, Runs: 500, Seed: 10}, 100, 399.5)
 	near(t, "Schlögl", x, identity, schemePassage(s, 0.002, 100, 0, 399.5))

@@ -80,6 +80,7 @@ a pair of genes that repress each other: [32.0789127129 14.9553893175]
 // Half the step: the double well at a coarse step has a passage time that is too long by
 // what the scheme itself has; the helper shows it. n = 20,000 twice.
 func TestHalve(t *testing.T) {
+	long(t)
 	p := sde.Plan{
 		System: doubleWell{0.2}, Start: []float64{-1}, From: -1, Cell: 1e-3, Cores: above(-5e-4, 1e-3), Step: 0.1, Runs: 20_000, Seed: 22,
 	}

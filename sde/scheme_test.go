@@ -41,6 +41,15 @@ func moments(x []float64, f func(float64) float64) (mean, variance float64) {
 	return mean, variance
 }
 
+// long leaves a test of a law, with its many million steps, to the run without the
+// race detector.
+func long(t *testing.T) {
+	t.Helper()
+	if sde.UnderRace {
+		t.Skip("long under the race detector")
+	}
+}
+
 // near fails the test where a mean of x is not want: the statistic is its distance
 // over its standard error, from the sample; false alarm 1e-6.
 func near(t *testing.T, what string, x []float64, f func(float64) float64, want float64) {
@@ -80,6 +89,7 @@ func varies(t *testing.T, what string, x []float64, want float64) {
 // averaged; so the runs have the noise Z + tilt·√Δ, by a drift of 2 + tilt, and
 // are weighed with its likelihood (Girsanov). 1500 runs a step and tilt.
 func TestGeometric(t *testing.T) {
+	long(t)
 	rms := []float64{0.394691, 0.576552, 0.862220, 1.329027, 2.101790}
 	weak := []float64{0.0287325, 0.0572055, 0.1133863, 0.2227799, 0.4303893}
 	for k := range rms {
@@ -116,6 +126,7 @@ func geometricErrors(t *testing.T, step, tilt float64, point uint64, f func(floa
 // autoregression, X' = (1−kΔ)X + σ√Δ Z; its stationary variance is
 // σ²/(2k)/(1−kΔ/2), exactly (algebra). 5000 runs a step, to (1−kΔ)^2N < 1e-12.
 func TestOrnsteinUhlenbeckVariance(t *testing.T) {
+	long(t)
 	const k, sigma = 2, 3
 	for _, step := range []float64{0.4, 0.2, 0.05, 0.0125} {
 		x := ends(t, sde.Plan{

@@ -78,6 +78,7 @@ const step = 0.02
 // as the counts have, its noise being exact in mean and variance where rates are
 // linear. n = 15,000; seen after 12 times 1/γ.
 func TestFrozenBirthRate(t *testing.T) {
+	long(t)
 	const k, s = 30.0, 0.2
 	for _, birth := range []string{`makes = { a = 1 }` + "\nmass_action = \"k\"", `makes = { a = 1 }` + "\nrate = \"k\""} {
 		net := immigration(t, k, "{ value = 30.0, spread = 0.2 }", birth)
@@ -105,6 +106,7 @@ func TestFrozenBurst(t *testing.T) {
 // of it, for each term with r = e^(−kΔ/memory), M²(Δ−1+q + (q+1/q−2)qr/(1−qr))/Δ with q =
 // e^(−Δ) (derived in the exact engine's test). n = 15,000.
 func TestModulatedBirthRate(t *testing.T) {
+	long(t)
 	const k, s = 30.0, 0.4
 	for _, c := range []struct{ memory, interval, held float64 }{{0.8, 0, 0.04}, {1, 0, 0.05}, {1, 2, 2}, {20, 0, 1}} {
 		net := immigration(t, k, fmt.Sprintf("{ value = 30.0, spread = 0.4, memory = %v }", c.memory), "makes = { a = 1 }\nrate = \"k\"")
