@@ -150,3 +150,14 @@ func withinPlain(x []float64, low, high float64) (within bool) {
 	}
 	return within
 }
+
+// columnsPlain puts the four rows of as many numbers that from holds end to end into to
+// as columns: those of a row follow each other at every room-th place.
+func columnsPlain(to []float64, room int, from []float64) {
+	n := len(from) / padding
+	for i := range padding {
+		for k, v := range from[i*n : (i+1)*n] {
+			to[k*room+i] = v
+		}
+	}
+}

@@ -2,6 +2,7 @@ package sde
 
 import (
 	"math"
+	"slices"
 	"testing"
 
 	"holdfast/internal/stream"
@@ -62,6 +63,22 @@ func TestLoopsByFours(t *testing.T) {
 					t.Fatalf("%s, lane %d: %v and %v of %v", name, i, x[i], y[i], a)
 				}
 			}
+		}
+	}
+}
+
+// Rows become columns, by fours or not, and nothing beside them is touched.
+func TestColumns(t *testing.T) {
+	const room, lane = 12, 4
+	for n := 1; n < 70; n++ {
+		from, got, want := make([]float64, 4*n), make([]float64, room*n), make([]float64, room*n)
+		for i := range from {
+			from[i] = float64(1 + i)
+			want[i%n*room+lane+i/n] = from[i]
+		}
+		columns(got[lane:], room, from)
+		if !slices.Equal(got, want) {
+			t.Fatalf("%d numbers a row: %v, want %v", n, got, want)
 		}
 	}
 }

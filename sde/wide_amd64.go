@@ -1,22 +1,9 @@
 package sde
 
+import "golang.org/x/sys/cpu"
+
 // wide tells whether the machine, and its operating system, has AVX2.
-var wide = haveWide()
-
-func haveWide() bool {
-	if most, _, _, _ := cpuid(0, 0); most < 7 {
-		return false
-	}
-	const avx, saved, avx2, registers = 1 << 28, 1 << 27, 1 << 5, 6
-	if _, _, c, _ := cpuid(1, 0); c&avx == 0 || c&saved == 0 || xgetbv()&registers != registers {
-		return false
-	}
-	_, b, _, _ := cpuid(7, 0)
-	return b&avx2 != 0
-}
-
-func cpuid(leaf, sub uint32) (a, b, c, d uint32)
-func xgetbv() (a uint32)
+var wide = cpu.X86.HasAVX2
 
 //go:noescape
 func addWide(to, a, b *float64, n int)
@@ -53,6 +40,9 @@ func reflectWide(x, by *float64, n int, v, limit float64) (over bool)
 
 //go:noescape
 func withinWide(x *float64, n int, low, high float64) (within bool)
+
+//go:noescape
+func columnsWide(to *float64, room int, from *float64, n int)
 
 func addLanes(to, a, b []float64) {
 	if wide && inFours(to) {
@@ -157,6 +147,15 @@ func withinLanes(x []float64, low, high float64) (within bool) {
 		return withinWide(&x[0], len(x), low, high)
 	}
 	return withinPlain(x, low, high)
+}
+
+func columns(to []float64, room int, from []float64) {
+	if wide && inFours(from[:len(from)/padding]) {
+		_ = to[(len(from)/padding-1)*room+padding-1]
+		columnsWide(&to[0], room, &from[0], len(from)/padding)
+		return
+	}
+	columnsPlain(to, room, from)
 }
 
 // inFours tells whether lanes can be taken four at a time.

@@ -3,24 +3,6 @@
 // The loops of vector.go, four lanes at a time. n is a positive multiple of 4. No product
 // is fused with a sum.
 
-// func cpuid(leaf, sub uint32) (a, b, c, d uint32)
-TEXT ·cpuid(SB), NOSPLIT, $0-24
-	MOVL leaf+0(FP), AX
-	MOVL sub+4(FP), CX
-	CPUID
-	MOVL AX, a+8(FP)
-	MOVL BX, b+12(FP)
-	MOVL CX, c+16(FP)
-	MOVL DX, d+20(FP)
-	RET
-
-// func xgetbv() (a uint32)
-TEXT ·xgetbv(SB), NOSPLIT, $0-4
-	XORL CX, CX
-	XGETBV
-	MOVL AX, a+0(FP)
-	RET
-
 // func addWide(to, a, b *float64, n int)
 TEXT ·addWide(SB), NOSPLIT, $0-32
 	MOVQ to+0(FP), DI
@@ -278,4 +260,42 @@ withinLoop:
 	VZEROUPPER
 	TESTL AX, AX
 	SETNE within+32(FP)
+	RET
+
+// func columnsWide(to *float64, room int, from *float64, n int)
+TEXT ·columnsWide(SB), NOSPLIT, $0-32
+	MOVQ to+0(FP), DI
+	MOVQ room+8(FP), R8
+	MOVQ from+16(FP), SI
+	MOVQ n+24(FP), CX
+	SHLQ $3, R8
+	SHLQ $3, CX
+	LEAQ (R8)(R8*2), R9
+	LEAQ (SI)(CX*1), R10
+	LEAQ (R10)(CX*1), R11
+	LEAQ (R11)(CX*1), R12
+	XORQ AX, AX
+
+columnsLoop:
+	VMOVUPD (SI)(AX*1), Y0
+	VMOVUPD (R10)(AX*1), Y1
+	VMOVUPD (R11)(AX*1), Y2
+	VMOVUPD (R12)(AX*1), Y3
+	VUNPCKLPD Y1, Y0, Y4
+	VUNPCKHPD Y1, Y0, Y5
+	VUNPCKLPD Y3, Y2, Y6
+	VUNPCKHPD Y3, Y2, Y7
+	VPERM2F128 $0x20, Y6, Y4, Y0
+	VPERM2F128 $0x20, Y7, Y5, Y1
+	VPERM2F128 $0x31, Y6, Y4, Y2
+	VPERM2F128 $0x31, Y7, Y5, Y3
+	VMOVUPD Y0, (DI)
+	VMOVUPD Y1, (DI)(R8*1)
+	VMOVUPD Y2, (DI)(R8*2)
+	VMOVUPD Y3, (DI)(R9*1)
+	LEAQ (DI)(R8*4), DI
+	ADDQ $32, AX
+	CMPQ AX, CX
+	JB   columnsLoop
+	VZEROUPPER
 	RET

@@ -18,3 +18,4 @@ func reflectLanes(x, by []float64, v, limit float64) (over bool) {
 	return reflectPlain(x, by, v, limit)
 }
 func withinLanes(x []float64, low, high float64) (within bool) { return withinPlain(x, low, high) }
+func columns(to []float64, room int, from []float64)           { columnsPlain(to, room, from) }

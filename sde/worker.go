@@ -27,13 +27,14 @@ type worker struct {
 	x       table // coordinates
 	before  table // those before the last step
 	z       table // the normal numbers of a block: step by step, direction by direction
-	block   int   // steps in a block
+	block   int   // steps in a block, a multiple of four
 	clock   int64 // steps of every lane
 	flagged bool  // a lane needs a look
 	inputs  []inputRow
 
-	normals []float64
-	counts  []int64
+	directions int
+	normals    []float64 // room for those of four lanes in a block
+	counts     []int64
 
 	finished, counted int64 // steps of finished runs; steps told to the job
 }
@@ -69,9 +70,9 @@ const padding = 4
 func newWorker(j *job, lanes int) *worker {
 	room := (lanes + padding - 1) / padding * padding
 	directions := len(j.System.Directions())
-	w := &worker{job: j, lanes: make([]lane, lanes), before: newTable(len(j.Start), room), counts: make([]int64, len(j.Start))}
-	w.block = max(4, min(64, blockNumbers/directions))
-	w.z, w.normals = newTable(w.block*directions, room), make([]float64, w.block*directions)
+	w := &worker{job: j, lanes: make([]lane, lanes), before: newTable(len(j.Start), room), directions: directions, counts: make([]int64, len(j.Start))}
+	w.block = max(4, min(64, blockNumbers/directions)/4*4)
+	w.z, w.normals = newTable(w.block*directions, room), make([]float64, padding*w.block*directions)
 	w.stepper = newStepper(w, room)
 	for i := range room {
 		w.place(i)
@@ -141,9 +142,7 @@ func (w *worker) place(i int) {
 // advance gives each lane a block of steps. It records runs that end, and goes on
 // with those that begin then.
 func (w *worker) advance() {
-	for i := range w.lanes {
-		w.draw(i, 0)
-	}
+	w.drawAll()
 	start := w.clock
 	for {
 		at := int(w.clock - start)
@@ -155,13 +154,29 @@ func (w *worker) advance() {
 	}
 }
 
+// drawAll makes the normal numbers of a block, for four lanes together where there are
+// as many.
+func (w *worker) drawAll() {
+	n := len(w.normals) / padding
+	i := 0
+	for ; i+padding <= len(w.lanes); i += padding {
+		for k := range padding {
+			w.lanes[i+k].random.FillNormal(w.normals[k*n : (k+1)*n])
+		}
+		columns(w.z.cells[i:], w.z.room, w.normals)
+	}
+	for ; i < len(w.lanes); i++ {
+		w.draw(i, 0)
+	}
+}
+
 // draw makes the normal numbers of a lane for the steps of a block from one on.
 func (w *worker) draw(i, step int) {
-	directions := len(w.normals) / w.block
-	z := w.normals[step*directions:]
+	first := step * w.directions
+	z := w.normals[first : w.block*w.directions]
 	w.lanes[i].random.FillNormal(z)
 	for k, v := range z {
-		w.z.cells[(step*directions+k)*w.z.room+i] = v
+		w.z.cells[(first+k)*w.z.room+i] = v
 	}
 }
 
@@ -179,7 +194,7 @@ func (w *worker) nextDue() int64 {
 // rush takes the steps of a block from one on, up to end or to the first after
 // which a lane needs a look.
 func (w *worker) rush(step, end int) {
-	directions, width := len(w.normals)/w.block, w.width()
+	directions, width := w.directions, w.width()
 	for w.flagged = false; step < end && !w.flagged; step++ {
 		copy(w.before.cells, w.x.cells)
 		w.flagged = w.stepper.step(w.z.rows(step*directions, (step+1)*directions), width)
