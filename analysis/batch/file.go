@@ -1,6 +1,7 @@
 package batch
 
 import (
+	"bufio"
 	"bytes"
 	"crypto/sha256"
 	"encoding/binary"
@@ -14,6 +15,8 @@ import (
 	"path/filepath"
 	"slices"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"holdfast/analysis/records"
 )
@@ -34,15 +37,34 @@ func ReadFile(path string) (*File, error) {
 		return nil, fmt.Errorf("cannot read the points: %w", err)
 	}
 	defer func() { _ = f.Close() }() // opened for reading
-	magic := make([]byte, 6)
-	n, err := io.ReadFull(f, magic)
-	if err != nil && !errors.Is(err, io.ErrUnexpectedEOF) && !errors.Is(err, io.EOF) {
+	r := bufio.NewReader(f)
+	head, err := r.Peek(headLength)
+	if err != nil && !errors.Is(err, io.EOF) {
 		return nil, fmt.Errorf("cannot read the points: %w", err)
 	}
-	if string(magic) == "ARROW1" {
+	switch {
+	case bytes.HasPrefix(head, []byte("ARROW1")):
 		return readArrow(path)
+	case !plain(head):
+		return nil, fmt.Errorf("%s is neither a CSV file (plain text in UTF-8) nor an Arrow IPC file; save it as one of them", path)
 	}
-	return readCSV(path, io.MultiReader(bytes.NewReader(magic[:n]), f))
+	return readCSV(path, r)
+}
+
+// headLength is how much of a file is looked at to tell what it is.
+const headLength = 512
+
+// plain tells whether a file that begins like this is text in UTF-8.
+func plain(head []byte) bool {
+	for len(head) > 0 {
+		r, size := utf8.DecodeRune(head)
+		cut := len(head) < utf8.UTFMax && !utf8.FullRune(head) // the head ends within a character
+		if r == utf8.RuneError && size == 1 && !cut || unicode.IsControl(r) && !strings.ContainsRune("\t\r\n", r) {
+			return false
+		}
+		head = head[size:]
+	}
+	return true
 }
 
 func readArrow(path string) (*File, error) {
@@ -87,6 +109,9 @@ func readCSV(path string, in io.Reader) (*File, error) {
 	}
 	if len(head) == 1 && strings.ContainsAny(head[0], ";\t") {
 		return nil, fmt.Errorf("%s: columns are set apart by commas, and the first row has none: %q", path, head[0])
+	}
+	if strings.Contains(strings.Join(head, ""), "\r") {
+		return nil, fmt.Errorf("%s: its lines end in carriage returns alone; save it with line feeds", path)
 	}
 	if err := f.checkNames(path); err != nil {
 		return nil, err

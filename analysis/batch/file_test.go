@@ -1,8 +1,10 @@
 package batch_test
 
 import (
+	"fmt"
 	"os"
 	"path/filepath"
+	"strings"
 	"testing"
 
 	"github.com/apache/arrow-go/v18/arrow"
@@ -101,5 +103,27 @@ func TestArrowPointsRefused(t *testing.T) {
 	}
 	if _, err := batch.ReadFile(damaged); err == nil {
 		t.Error("a damaged file was read")
+	}
+}
+
+// What is neither text nor an Arrow file is told by what it is not, without its bytes; old
+// line ends have their own word.
+func TestPointsOfOtherKinds(t *testing.T) {
+	for name, c := range map[string]struct{ bytes, want string }{
+		"parquet":     {"PAR1\x15\x04\x15 copies", " is neither a CSV file (plain text in UTF-8) nor an Arrow IPC file; save it as one of them"},
+		"stream":      {"\xff\xff\xff\xff\x98\x01\x00\x00", " is neither a CSV file (plain text in UTF-8) nor an Arrow IPC file; save it as one of them"},
+		"utf16.csv":   {"\xff\xfec\x00o\x00p\x00i\x00e\x00s\x00", " is neither a CSV file (plain text in UTF-8) nor an Arrow IPC file; save it as one of them"},
+		"old.csv":     {"copies,a\r8,0.4\r", ": its lines end in carriage returns alone; save it with line feeds"},
+		"unknown.csv": {"größe\n" + strings.Repeat("1\n", 600), ""},
+		"cut.csv":     {strings.Repeat("a", 511) + "ö\n1\n", ""}, // the first 512 bytes end within a character
+	} {
+		path := filepath.Join(t.TempDir(), name)
+		if err := os.WriteFile(path, []byte(c.bytes), 0o666); err != nil {
+			t.Fatal(err)
+		}
+		_, err := batch.ReadFile(path)
+		if got := fmt.Sprint(err); c.want == "" && err != nil || c.want != "" && got != path+c.want {
+			t.Errorf("%s: got %v, want %q", name, err, c.want)
+		}
 	}
 }

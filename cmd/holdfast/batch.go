@@ -187,16 +187,21 @@ func (c *batchChoice) conclude(ctx context.Context, t terminal, r *batch.Result,
 		said = "nothing was left to do: tables are in"
 	}
 	fmt.Fprintln(t.err, said, r.Folder)
-	return failures(s.Statuses[batch.Failed], s.Points, s.Message)
+	return failures(s.Statuses[batch.Failed], s.Points, firstFailure(s))
+}
+
+// firstFailure says what the first point that failed says.
+func firstFailure(s *batch.Summary) string {
+	if len(s.Failed) == 0 {
+		return ""
+	}
+	return fmt.Sprintf("; the first, point %d, says: %s", s.Failed[0], s.Message)
 }
 
 // failures is the error of a batch in which points failed.
 func failures(failed, points int, message string) error {
 	if failed == 0 {
 		return nil
-	}
-	if message != "" {
-		message = "; the first says: " + message
 	}
 	return fmt.Errorf("%d of %d points failed (status and message in the table points)%s", failed, points, message)
 }

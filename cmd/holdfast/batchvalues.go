@@ -1,6 +1,7 @@
 package main
 
 import (
+	"fmt"
 	"path/filepath"
 
 	"holdfast/analysis/batch"
@@ -44,6 +45,9 @@ func (p pointsFile) String() string {
 
 // Set takes the name.
 func (p pointsFile) Set(path string) error {
+	if *p.path != "" {
+		return fmt.Errorf("%s is given already; put all points into one file", *p.path)
+	}
 	*p.path = path
 	return nil
 }
