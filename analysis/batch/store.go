@@ -58,7 +58,7 @@ func openStore(dir string, id identity, shard Shard) (*store, error) {
 	if err := s.admit(); err != nil {
 		return nil, err
 	}
-	if err := os.MkdirAll(s.parts, 0o777); err != nil {
+	if err := makeLasting(s.parts); err != nil {
 		return nil, &NoBatchError{dir, "cannot be used: " + err.Error()}
 	}
 	err := s.lockAll()
@@ -94,6 +94,27 @@ func (s *store) admit() error {
 	for _, e := range entries {
 		if e.Name() != partsName && !strings.HasPrefix(e.Name(), tempPrefix) {
 			return &NoBatchError{s.dir, "is in use: " + e.Name() + " is there, and no " + identityName + "; name a new or empty folder"}
+		}
+	}
+	return nil
+}
+
+// makeLasting makes a folder and those above it, and syncs the folders that hold them: else a
+// power cut may take a new folder away with all that was synced in it.
+func makeLasting(dir string) error {
+	var above []string
+	for d := filepath.Clean(dir); ; d = filepath.Dir(d) {
+		if _, err := os.Stat(d); !errors.Is(err, fs.ErrNotExist) || d == filepath.Dir(d) {
+			break
+		}
+		above = append(above, filepath.Dir(d))
+	}
+	if err := os.MkdirAll(dir, 0o777); err != nil {
+		return err
+	}
+	for _, d := range above {
+		if err := syncDir(d); err != nil && !errors.Is(err, fs.ErrPermission) { // one may be allowed to pass a folder but not to read it
+			return err
 		}
 	}
 	return nil
