@@ -2,6 +2,9 @@ package deterministic
 
 import (
 	"fmt"
+	"math"
+	"strconv"
+	"strings"
 
 	"holdfast/model"
 )
@@ -35,6 +38,20 @@ func stableName(i, count int) string {
 		return [...]string{"low", "middle", "high"}[i]
 	}
 	return fmt.Sprintf("level%d", i+1)
+}
+
+// IsStableName tells whether a stable state may be called so in a design that gives it no
+// name itself: only; low, high; low, middle, high; level1, level2 and so on.
+func IsStableName(name string) bool {
+	for count := 1; count <= 3; count++ {
+		for i := range count {
+			if name == stableName(i, count) {
+				return true
+			}
+		}
+	}
+	level, err := strconv.Atoi(strings.TrimPrefix(name, "level"))
+	return err == nil && level >= 1 && name == stableName(level-1, math.MaxInt)
 }
 
 func countKind(list []State, is func(Kind) bool) int {

@@ -18,7 +18,8 @@ type Size struct {
 	Specs []sizing.Spec
 }
 
-// check sees that the points leave the knob alone.
+// check sees that the points leave the knob alone, and that the search is one that can be
+// made.
 func (z *Size) check(p *Points) error {
 	if z == nil {
 		return nil
@@ -30,7 +31,11 @@ func (z *Size) check(p *Points) error {
 	if slices.Contains(p.Names, name) {
 		return &sizing.KnobError{Name: name, Problem: "it is sized at each point, and the points vary it as well; leave it out of one"}
 	}
-	return nil
+	n, err := p.draft.Bind(0, nil)
+	if err != nil {
+		return err
+	}
+	return sizing.Options{Knob: z.Knob, Specs: z.Specs}.Check(n)
 }
 
 // settings describe the size for the identity of the batch.

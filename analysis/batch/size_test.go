@@ -4,8 +4,10 @@ import (
 	"bytes"
 	"context"
 	"errors"
+	"io/fs"
 	"os"
 	"path/filepath"
+	"strings"
 	"testing"
 
 	"holdfast/analysis/batch"
@@ -111,5 +113,35 @@ func TestSizeOfWhatIsVaried(t *testing.T) {
 	var knob *sizing.KnobError
 	if _, err := batch.Run(context.Background(), j); !errors.As(err, &knob) {
 		t.Errorf("%v", err)
+	}
+}
+
+// What no point could ever meet is refused before the first, and no folder is made.
+func TestSizeRefused(t *testing.T) {
+	for _, c := range []struct {
+		state string
+		knob  sizing.Knob
+		want  string
+	}{
+		{"hihg", sizing.Knob{}, `there is no state "hihg"`},
+		{"saddle", sizing.Knob{}, `there is no state "saddle"`},
+		{"level0", sizing.Knob{}, `there is no state "level0"`},
+		{"high", sizing.Knob{Name: "aa", Low: 1, High: 2}, `did you mean "a"?`},
+		{"high", sizing.Knob{Name: "copies", Low: 0.2, High: 0.8}, "no whole number"},
+	} {
+		j := sized(t, filepath.Join(t.TempDir(), "out"))
+		j.Size.Knob, j.Size.Specs[0].State = c.knob, c.state
+		_, err := batch.Run(context.Background(), j)
+		if err == nil || !strings.Contains(err.Error(), c.want) {
+			t.Errorf("%s, %+v: %v", c.state, c.knob, err)
+		}
+		if _, err := os.Stat(j.Folder); !errors.Is(err, fs.ErrNotExist) {
+			t.Errorf("%s: the folder was made", c.state)
+		}
+	}
+	j := sized(t, filepath.Join(t.TempDir(), "out"))
+	j.Size.Specs[0].State = "middle" // other constants may have three states
+	if r := run(t, j); r.Failed == 0 {
+		t.Error("a state that may be there was refused, or found")
 	}
 }

@@ -25,7 +25,7 @@ type sizeTable struct {
 
 // outcomes lists how a search can end.
 func outcomes() []string {
-	return []string{string(sizing.Met), string(sizing.MetThroughout), string(sizing.NotMet), string(sizing.Undecided)}
+	return []string{string(sizing.Met), string(sizing.MetAlready), string(sizing.NotMet), string(sizing.Undecided)}
 }
 
 // sizeNumbers are the columns of numbers, with notes, in the order of Sized.numbers.
@@ -52,7 +52,7 @@ func newSizeTable(folder *records.Folder) (*sizeTable, error) {
 	t, p := records.NewTable(sizesName), &sizeTable{}
 	p.number = t.AddInt("point", "", "number of the point, from 1")
 	p.knob = t.AddText("knob", "what was turned")
-	p.outcome = t.AddLabel("outcome", outcomes(), "how the search ended; met throughout: at the low end of copies, or at the constant's own value, already")
+	p.outcome = t.AddLabel("outcome", outcomes(), "how the search ended; met already: at the low end of copies, or at the constant's own value")
 	for _, c := range sizeNumbers() {
 		p.numbers = append(p.numbers, t.AddFloat(c[0], "", c[1]))
 		t.Optional()

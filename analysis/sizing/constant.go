@@ -19,7 +19,7 @@ func (s *searcher) nearest() error {
 		return err
 	}
 	if margin(start) >= 0 {
-		return s.throughout(start)
+		return s.already(start)
 	}
 	sides, err := s.scout(start)
 	if err != nil {
@@ -46,8 +46,8 @@ func (s *searcher) nearest() error {
 	return nil
 }
 
-// throughout reports that today's setting meets the specifications, and the window.
-func (s *searcher) throughout(start *Evaluation) error {
+// already reports that today's setting meets the specifications, and the window.
+func (s *searcher) already(start *Evaluation) error {
 	low, err := s.end(start, -1)
 	if err != nil {
 		return err
@@ -57,7 +57,7 @@ func (s *searcher) throughout(start *Evaluation) error {
 		return err
 	}
 	today, nan := hold.Value(start.Setting), hold.Value(math.NaN())
-	s.report.Outcome = MetThroughout
+	s.report.Outcome = MetAlready
 	s.report.Answer = &Answer{Setting: today, Short: nan, May: today, Surely: today, Steady: today}
 	if lowerLimit(start) < 0 {
 		s.report.Answer.Surely = nan

@@ -105,7 +105,7 @@ func TestWindowEndsAtFold(t *testing.T) {
 	n := demo(t, "latch", 15)
 	r := size(t, n, sizing.Options{Knob: sizing.Knob{Name: "a", Low: 0.42, High: 0.6}}, "low >= 10 min")
 	w := r.Window
-	if r.Outcome != sizing.MetThroughout || w == nil || w.High.By != sizing.ByVanish {
+	if r.Outcome != sizing.MetAlready || w == nil || w.High.By != sizing.ByVanish {
 		t.Fatalf("%s, %+v", r.Outcome, w)
 	}
 	if end := float64(w.High.Setting); end > fold || end < fold*(1-2e-3) || !strings.Contains(w.High.Text, "high ends in a fold at 0.52041722") {
@@ -149,7 +149,7 @@ func TestNothingMeets(t *testing.T) {
 		t.Errorf("%s, best %v", r.Outcome, r.Best.Setting)
 	}
 	r = size(t, n, sizing.Options{Knob: sizing.Knob{Name: "copies", Low: 8, High: 20}}, "high >= 10 min")
-	if r.Outcome != sizing.MetThroughout || r.Answer.Setting != 8 || !math.IsNaN(float64(r.Answer.Short)) {
+	if r.Outcome != sizing.MetAlready || r.Answer.Setting != 8 || !math.IsNaN(float64(r.Answer.Short)) {
 		t.Errorf("%s, %+v", r.Outcome, r.Answer)
 	}
 }
@@ -157,7 +157,7 @@ func TestNothingMeets(t *testing.T) {
 // A state that is never left meets everything.
 func TestNeverLeft(t *testing.T) {
 	r := size(t, demo(t, "leakless", 15), sizing.Options{Knob: sizing.Knob{Name: "copies", Low: 8, High: 20}}, "low >= 1e300 min")
-	if r.Outcome != sizing.MetThroughout || !math.IsInf(float64(r.Evaluations[0].Margin), 1) {
+	if r.Outcome != sizing.MetAlready || !math.IsInf(float64(r.Evaluations[0].Margin), 1) {
 		t.Errorf("%s, margin %v", r.Outcome, r.Evaluations[0].Margin)
 	}
 }

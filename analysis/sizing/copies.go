@@ -28,7 +28,7 @@ func (s *searcher) smallest() error {
 	if b.fails != nil {
 		s.report.Answer.Short = hold.Value(b.fails.Setting)
 	} else {
-		s.report.Outcome = MetThroughout
+		s.report.Outcome = MetAlready
 	}
 	for _, step := range []func(bracket) error{s.surely, s.may, s.steady} {
 		if err := step(b); err != nil {

@@ -3,8 +3,10 @@ package sizing
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"holdfast/analysis/hold"
+	"holdfast/deterministic"
 	"holdfast/model"
 )
 
@@ -56,6 +58,28 @@ type KnobError struct{ Name, Problem string }
 
 // Error says what is wrong with it.
 func (e *KnobError) Error() string { return e.Name + ": " + e.Problem }
+
+// Check sees, before anything is evaluated, that the knob can be turned as asked, and that
+// each specification is about a state that there may be at some setting. Errors are
+// *KnobError, *SpecError and *hold.OptionError.
+func (o Options) Check(n *model.Network) error {
+	if _, err := o.complete(n); err != nil {
+		return err
+	}
+	names := []string{"low", "middle", "high"}
+	declared := map[string]bool{}
+	for _, d := range n.Declared {
+		if declared[d.State] = true; !slices.Contains(names, d.State) {
+			names = append(names, d.State)
+		}
+	}
+	for _, s := range o.Specs {
+		if s.State != Every && !declared[s.State] && !deterministic.IsStableName(s.State) {
+			return s.unknownState(names)
+		}
+	}
+	return nil
+}
 
 const defaultTolerance = 1e-3
 

@@ -16,9 +16,9 @@ type Outcome string
 const (
 	// Met: there is an answer, and settings short of it fail.
 	Met Outcome = "met"
-	// MetThroughout: the lower end of the range of copies, or today's setting of a
+	// MetAlready: the lower end of the range of copies, or today's setting of a
 	// constant, meets the specifications already.
-	MetThroughout Outcome = "met throughout"
+	MetAlready Outcome = "met already"
 	// NotMet: no setting that was evaluated meets them.
 	NotMet Outcome = "not met"
 	// Undecided: none surely meets them, but for some the limits leave it open.
