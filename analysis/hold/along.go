@@ -71,7 +71,26 @@ func (r *stagedJob) leastAction(ctx context.Context, from, to string) (staged.Co
 	if pair == nil || len(pair.Paths) == 0 {
 		return staged.Coordinate{}, errors.New("no saddle joins the two")
 	}
+	if n := r.rivals(pair); n > 1 {
+		return staged.Coordinate{}, fmt.Errorf("%d saddles join the two at nearly the same action, and a path over one leads past the others", n)
+	}
 	return r.molecules(pair.Paths[0])
+}
+
+// rivalCost is by how much the action of a path, times the copies, may be above that of the
+// cheapest one for it to count: e⁻⁹ is less than any precision that can be asked.
+const rivalCost = 9
+
+// rivals counts the paths of a pair that flips may take. Rungs at right angles to one of
+// several sort out the runs that go by the others, and no repeat then sees them.
+func (r *stagedJob) rivals(pair *action.Pair) int {
+	n := 0
+	for _, p := range pair.Paths {
+		if (p.S-pair.Paths[0].S)*r.network.Copies < rivalCost {
+			n++
+		}
+	}
+	return n
 }
 
 // pathTolerance is the relative error of the action up to which a path is found:
