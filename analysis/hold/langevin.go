@@ -6,6 +6,8 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"strconv"
+	"strings"
 
 	"holdfast/deterministic"
 	"holdfast/sde"
@@ -77,12 +79,27 @@ func (j *job) newLangevin() (*langevin, error) {
 	l.step = math.Min(sde.StepFor(l.system, points...), l.largest)
 	switch asked := j.options.Step; {
 	case asked > l.largest:
-		allowed := fmt.Sprintf("at most %.6g %s: beyond that a path overshoots its fastest mode at every step", l.largest, j.network.TimeUnit)
+		allowed := fmt.Sprintf("at most %g %s: beyond that a path overshoots its fastest mode at every step", roundedDown(l.largest), j.network.TimeUnit)
 		return nil, &OptionError{"step", asked, allowed}
 	case asked > 0:
 		l.step = asked
 	}
 	return l, nil
+}
+
+// roundedDown gives the largest number of six digits that is not above x, so that what a
+// message allows is allowed.
+func roundedDown(x float64) float64 {
+	text := strconv.FormatFloat(x, 'e', 5, 64)
+	rounded, _ := strconv.ParseFloat(text, 64)
+	if rounded <= x {
+		return rounded
+	}
+	_, exponent, _ := strings.Cut(text, "e")
+	unit, _ := strconv.ParseFloat("1e"+exponent, 64)
+	text = strconv.FormatFloat(rounded-1e-5*unit, 'e', 5, 64)
+	rounded, _ = strconv.ParseFloat(text, 64)
+	return rounded
 }
 
 func (l *langevin) start(s int) []float64 {

@@ -3,6 +3,7 @@ package hold_test
 import (
 	"context"
 	"errors"
+	"fmt"
 	"math"
 	"path/filepath"
 	"strings"
@@ -95,6 +96,20 @@ func TestLangevinStepIsRefused(t *testing.T) {
 	var option *hold.OptionError
 	if !errors.As(err, &option) || !strings.Contains(err.Error(), "at most 0.784") {
 		t.Errorf("got %v, want an OptionError with the largest step 0.784", err)
+	}
+	allowed := 0.0
+	for _, copies := range []float64{20, 30, 50, 100, 200} {
+		m, err := n.Rebind(copies, nil)
+		if err != nil {
+			t.Fatal(err)
+		}
+		_, err = hold.Run(context.Background(), m, hold.Options{Route: hold.Langevin, Step: 0.9, Runs: 1})
+		if _, scan := fmt.Sscanf(err.Error(), "step is 0.9; it must be at most %g", &allowed); scan != nil {
+			t.Fatal(err)
+		}
+		if _, err = hold.Run(context.Background(), m, hold.Options{Route: hold.Langevin, Step: allowed, Runs: 1, Until: 10}); err != nil {
+			t.Errorf("at %v copies the step that was called good: %v", copies, err)
+		}
 	}
 	if _, err = hold.Run(context.Background(), n, hold.Options{Step: 0.01}); !errors.As(err, &option) {
 		t.Errorf("a step for no Langevin paths: got %v, want an OptionError", err)
