@@ -4,13 +4,17 @@ import (
 	"context"
 	"errors"
 	"math"
+	"strconv"
+	"strings"
 	"testing"
 
 	"gonum.org/v1/gonum/integrate/quad"
 
 	"holdfast/analysis/action"
+	"holdfast/analysis/hold"
 	"holdfast/analysis/lattice"
 	"holdfast/internal/zoo"
+	"holdfast/model"
 )
 
 // leakyAction gives S and its derivatives in r and s for the way from one root of
@@ -117,6 +121,26 @@ func TestActionAgrees(t *testing.T) {
 	}
 }
 
+// From one lattice at very few copies, where the prefactor's part and the leading order
+// nearly cancel, the error still holds what the lattice says.
+func TestActionFromOneLattice(t *testing.T) {
+	for _, name := range []string{"latch", "leakless", "pair"} {
+		for _, copies := range []float64{2.5, 3, 3.5, 3.9} {
+			rep := run(t, design(t, name, copies, nil), Options{})
+			if !strings.Contains(rep.Action, "lattices at "+strconv.FormatFloat(copies/2, 'g', 4, 64)+" copies") {
+				t.Fatalf("%s: by action: %s", name, rep.Action)
+			}
+			for i := range rep.Blocks {
+				for k := range rep.Blocks[i].Levers {
+					if l := &rep.Blocks[i].Levers[k]; l.Agreement != "agree" {
+						t.Errorf("%s at %v copies, %s, %s: %v by lattice, %v by action", name, copies, rep.Blocks[i].From, l.Name, l.Slope(), l.By(Action))
+					}
+				}
+			}
+		}
+	}
+}
+
 // By action alone, from lattices at fewer copies, against the lattice there.
 func TestActionAlone(t *testing.T) {
 	n := zoo.LeakyActivator(0.45, 0.02, 2000)
@@ -129,6 +153,99 @@ func TestActionAlone(t *testing.T) {
 				t.Errorf("%s, %s: %v, want %v", b.From, b.Levers[k].Name, s, want)
 			}
 		}
+	}
+}
+
+// transcribedPair is the pair of genes with their transcripts, in four species, which no
+// lattice holds at any number of copies.
+func transcribedPair(t *testing.T, copies float64) *model.Network {
+	t.Helper()
+	d, err := model.Parse("transcribed.toml", []byte(`
+title = "Two genes and their transcripts (invented)"
+time = "min"
+copies = 60
+[species]
+tide = {}
+ebb = { readout = true }
+tow = {}
+flow = {}
+[constants]
+rate = 2.5
+half = 1.0
+loss = 1.0
+make = 1.0
+dilution = 0.7
+[[reaction]]
+name = "tide"
+makes = { tide = 1 }
+rate = "rate*hill_fall(flow, half, 2)"
+[[reaction]]
+name = "tow"
+makes = { tow = 1 }
+rate = "rate*hill_fall(ebb, half, 2)"
+[[reaction]]
+name = "tide lost"
+uses = { tide = 1 }
+mass_action = "loss"
+[[reaction]]
+name = "tow lost"
+uses = { tow = 1 }
+mass_action = "loss"
+[[reaction]]
+name = "ebb"
+needs = { tide = 1 }
+makes = { ebb = 1 }
+mass_action = "make"
+[[reaction]]
+name = "flow"
+needs = { tow = 1 }
+makes = { flow = 1 }
+mass_action = "make"
+[[reaction]]
+name = "ebb lost"
+uses = { ebb = 1 }
+mass_action = "dilution"
+[[reaction]]
+name = "flow lost"
+uses = { flow = 1 }
+mass_action = "dilution"
+`))
+	if err != nil {
+		t.Fatal(err)
+	}
+	n, err := d.Bind(copies, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return n
+}
+
+// Where no lattice is in reach, auto takes differences and puts the leading order by
+// action beside them, with no error: the prefactor's part is not known. The exponent has no
+// unit of time, so that its slopes in all rates add up to 0; and none of amount, so that
+// those in rate and half do to that in copies.
+func TestActionBesideDifferences(t *testing.T) {
+	if underRace {
+		t.Skip("takes a minute under the race detector")
+	}
+	rep := run(t, transcribedPair(t, 12), Options{Hold: hold.Options{Route: hold.Runs, Runs: 20, Seed: 1}})
+	if !strings.HasPrefix(rep.Route, "differences") || !strings.Contains(rep.Action, "leading order") {
+		t.Fatalf("route %q, by action %q", rep.Route, rep.Action)
+	}
+	b := block(t, rep, "low")
+	slope := func(name string) float64 {
+		s := b.lever(name).By(Action)
+		if !math.IsNaN(float64(s.Low)) || s.Value != s.Leading {
+			t.Errorf("%s: %+v, want the leading order with no error", name, s)
+		}
+		return float64(s.Value)
+	}
+	rates := slope("rate") + slope("loss") + slope("make") + slope("dilution")
+	if math.Abs(rates) > 0.02*slope("rate") {
+		t.Errorf("slopes in the rates add up to %v, want 0 beside %v", rates, slope("rate"))
+	}
+	if sum, copies := slope("rate")+slope("half"), slope("copies"); math.Abs(sum-copies) > 0.02*copies || copies < 1 {
+		t.Errorf("slopes in rate and half add up to %v, that in copies is %v", sum, copies)
 	}
 }
 

@@ -25,6 +25,7 @@ type job struct {
 	survey  *deterministic.Map // of the list
 	report  *Report
 	losses  [][2]*Loss // by parameter: below and above
+	paths   []exponent // once exponents has found them
 }
 
 // Run surveys the network, finds the slopes of every hold time in every constant and in
@@ -123,7 +124,7 @@ func (j *job) choose(ctx context.Context) error {
 		return err
 	}
 	j.report.Route = j.differencesText(reason)
-	return j.byDifferences(ctx)
+	return j.differencesAndAction(ctx)
 }
 
 // beyond tells that only the lattice's numbers are at fault.
@@ -160,6 +161,19 @@ func (j *job) latticeAndAction(ctx context.Context) error {
 		return err
 	}
 	return j.addAction(ctx)
+}
+
+// differencesAndAction takes the slopes from hold jobs, with those by action beside.
+func (j *job) differencesAndAction(ctx context.Context) error {
+	beside, err := j.leadingOrder(ctx)
+	if err != nil {
+		return err
+	}
+	if err := j.byDifferences(ctx); err != nil {
+		return err
+	}
+	beside()
+	return nil
 }
 
 // varies tells whether a constant varies across cells or in time.

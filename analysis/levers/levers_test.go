@@ -229,6 +229,10 @@ func TestRefusals(t *testing.T) {
 			t.Errorf("%+v: %v", o, err)
 		}
 	}
+	_, err := Run(context.Background(), zoo.Latch(10), Options{Step: math.Log(3)})
+	if err == nil || err.Error() != "step is 200 %; it must be from 0.1 % to 64 %" {
+		t.Errorf("a step of 200 %%: %v", err)
+	}
 	var one *deterministic.OneStateError
 	if _, err := Run(context.Background(), design(t, "latch", 20, map[string]float64{"a": 1}), Options{}); !errors.As(err, &one) {
 		t.Errorf("one state: %v", err)
@@ -347,6 +351,19 @@ func TestVaryingConstants(t *testing.T) {
 	}
 	if !strings.Contains(r.Route, "constants vary") {
 		t.Errorf("route %q", r.Route)
+	}
+}
+
+// However large a factor is, its power of ten is written whole: e^300 = 1.94e130, and
+// 1.01^50000 = 1.17e216 (computed).
+func TestFactor(t *testing.T) {
+	for _, c := range []struct {
+		log  float64
+		want string
+	}{{math.Log(123), "120"}, {300, "1.9e130"}, {50000 * math.Log1p(0.01), "1.2e216"}} {
+		if got := factor(c.log); got != c.want {
+			t.Errorf("factor of %v: %s, want %s", c.log, got, c.want)
+		}
 	}
 }
 

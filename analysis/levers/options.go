@@ -2,6 +2,7 @@ package levers
 
 import (
 	"fmt"
+	"math"
 	"runtime"
 	"slices"
 	"strings"
@@ -31,8 +32,8 @@ const (
 	// intervals of ±10 % on the two leave ±0.7 on the slope, while the mean slope over the
 	// step differs from today's by about its second derivative over 600.
 	defaultStep = 0.0953101798
-	leastStep   = 1e-3
-	mostStep    = 0.5
+	leastStep   = 9.995e-4 // 0.1 % up
+	mostStep    = 0.5      // 64 % up
 )
 
 // Options say how the slopes are found. The zero value is right for most designs.
@@ -61,7 +62,7 @@ func (o Options) complete() (Options, error) {
 		o.Step = defaultStep
 	}
 	if !(o.Step >= leastStep && o.Step <= mostStep) {
-		return o, &hold.OptionError{Name: "step", Value: o.Step, Allowed: fmt.Sprintf("from %g to %g", leastStep, mostStep)}
+		return o, &hold.OptionError{Name: "step", Value: fmt.Sprintf("%.4g %%", 100*math.Expm1(o.Step)), Allowed: "from 0.1 % to 64 %"}
 	}
 	if err := o.Hold.Check(); err != nil {
 		return o, err

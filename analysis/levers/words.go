@@ -166,7 +166,7 @@ func factor(log float64) string {
 		return short(math.Exp(log))
 	}
 	whole, part := math.Modf(log / math.Ln10)
-	return short(math.Pow(10, part)) + "e" + short(whole)
+	return short(math.Pow(10, part)) + "e" + strconv.FormatFloat(whole, 'f', 0, 64)
 }
 
 // short writes a number with two digits.

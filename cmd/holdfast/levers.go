@@ -165,7 +165,8 @@ func meanText(r *levers.Report, b *levers.Block) string {
 	return fmt.Sprintf("holds %s %s today (%s)", text, r.TimeUnit, b.HoldRoute)
 }
 
-// slopeText writes a slope with its sign and its error.
+// slopeText writes a slope with its sign and its error; ≈ where no error is known, as of
+// the leading order alone.
 func slopeText(s levers.Slope) string {
 	v, half := float64(s.Value), float64(s.High-s.Low)/2
 	switch {
@@ -173,6 +174,8 @@ func slopeText(s levers.Slope) string {
 		return "–"
 	case v == 0 && half == 0:
 		return "0"
+	case math.IsNaN(half):
+		return "≈ " + withSign(v, 3)
 	case half < 0.02*math.Abs(v):
 		return withSign(v, 4) + " ± " + digits(half, 1)
 	}
