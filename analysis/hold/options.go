@@ -14,6 +14,9 @@ const (
 	defaultPrecision = 0.1
 	// defaultEvents is what two cores do in a few seconds on a small network.
 	defaultEvents = 600_000_000
+	// stagedEvents is the same where staged runs are asked for by name: they know what the
+	// precision takes, and this is about a minute on two cores.
+	stagedEvents = 6_000_000_000
 )
 
 // Options say how a hold job is done. The zero value is a job of the default
@@ -160,6 +163,9 @@ func (o Options) complete() (Options, error) {
 	}
 	if o.Events == 0 && o.Runs == 0 && o.Until == 0 {
 		o.Events = defaultEvents
+		if o.Route == Staged {
+			o.Events = stagedEvents
+		}
 	}
 	return o, nil
 }

@@ -41,7 +41,7 @@ func TestIntervalsHoldTheTruth(t *testing.T) {
 	for _, c := range []struct {
 		copies             float64
 		seeds, least, most int
-	}{{15, 1000, 930, 970}, {60, 200, 182, 198}} {
+	}{{10, 1000, 930, 970}, {60, 200, 182, 198}} {
 		m := survey(t, zoo.LeakyActivator(0.4, 0.01, c.copies))
 		p := plan(m, 0, 1)
 		p.Precision, p.Threads = 0.5, 2

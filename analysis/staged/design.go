@@ -75,18 +75,26 @@ func (j *job) design(first *design, pilot []*repeat) (d *design, n int, e Ending
 	inflated := math.Max(1, total.relativeVariance()/first.variance)
 	d = l.design(math.Min(inflated, mostInflation))
 	n = repeatsFor(spare*inflated*d.variance, j.plan.Precision)
-	if j.plan.Events == 0 {
-		return d, n, Reached
-	}
+	n, e = j.afford(d, n, fewestRepeats)
+	return d, n, e
+}
+
+// events is about what a repeat takes.
+func (d *design) events() float64 {
 	each := d.time * d.flux * d.crossing
 	for k, runs := range d.runs {
 		each += float64(runs) * d.costs[k]
 	}
+	return each
+}
+
+// afford cuts a number of repeats down to what the budget has left, and says if it did.
+func (j *job) afford(d *design, n, least int) (int, Ending) {
 	left := float64(j.plan.Events - j.events.Load())
-	if most := max(int(left/each), fewestRepeats); most < n {
-		return d, most, Spent
+	if most := max(int(left/d.events()), least); j.plan.Events > 0 && most < n {
+		return most, Spent
 	}
-	return d, n, Reached
+	return n, Reached
 }
 
 // mostInflation is what repeats are enlarged for at most.

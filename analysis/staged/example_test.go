@@ -28,5 +28,5 @@ func Example() {
 		return
 	}
 	fmt.Printf("mean dwell %.3g min, from %.3g to %.3g, in %d stages\n", 1/r.Rate, 1/r.High, 1/r.Low, len(r.Stages))
-	// Output: mean dwell 8.88e+04 min, from 6.89e+04 to 1.15e+05, in 8 stages
+	// Output: mean dwell 8.09e+04 min, from 5.97e+04 to 1.09e+05, in 15 stages
 }

@@ -15,6 +15,9 @@ import (
 // Schlögl in a larger volume. The statistic is the distance of the logarithm of the rate
 // in its own standard errors, Student's t; a false alarm in a million for each.
 func TestChainsUpTo1e21(t *testing.T) {
+	if underRace {
+		t.Skip("left to the plain run")
+	}
 	for _, c := range []struct {
 		network *model.Network
 		from    int

@@ -15,9 +15,10 @@ const (
 	// crossingTimes is about how many relaxation times lie between two crossings of the
 	// first rung, so that they know little of each other.
 	crossingTimes = 1.5
-	// aim is the chance of a stage. Work at a given precision goes as
-	// (1−p)/(p ln²p), which is least at 0.2; a little more keeps families apart.
-	aim = 0.25
+	// aim is the chance of a stage. Were all runs alike in cost, work at a given precision would
+	// go as (1−p)/(p ln²p), which is least at 0.2. But the nearer the rungs are, the sooner a run
+	// is dropped or done: in the latch a half takes fewer events than a quarter.
+	aim = 0.5
 	// pilotRuns is the number of runs that a stage is placed by.
 	pilotRuns = 240
 	// mostPilotRuns is how many are made before a stage counts as one that never

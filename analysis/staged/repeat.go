@@ -9,7 +9,7 @@ import (
 const (
 	// keep is the chance that a run goes on that has fallen back by a rung: less saves
 	// events, but the few that come back then weigh too much.
-	keep = 0.5
+	keep = 0.7
 	// families is the number of stretches of the first stage.
 	families = ssa.Walkers * ssa.Stretches
 )

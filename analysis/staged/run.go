@@ -3,6 +3,7 @@ package staged
 import (
 	"context"
 	"errors"
+	"fmt"
 	"sync"
 	"sync/atomic"
 	"time"
@@ -17,9 +18,8 @@ const (
 	// Streams of the pilots; repeat i has stream i.
 	pilotStream       = 1 << 37
 	pilotRepeatStream = 1 << 36
-	secondPilotStream = 1 << 35
-	// manyRepeats are so many that a second pilot, of repeats as they will be, is worth its cost: the
-	// first one's are smaller, and their variance says too much.
+	// manyRepeats are so many that they tell their own spread: where the pilot asks for more, these
+	// are made first, and as many more as they ask for.
 	manyRepeats = 64
 )
 
@@ -55,13 +55,16 @@ func Run(ctx context.Context, p Plan) (*Result, error) {
 		return nil, err
 	}
 	d, n, ending := j.design(first, pilot)
-	if n > manyRepeats {
-		if pilot, err = j.repeats(ctx, d, pilotRepeats, secondPilotStream, "pilot"); err != nil {
-			return nil, err
-		}
-		n = min(n, repeatsFor(spare*estimate(d, pilot).relativeVariance(), j.plan.Precision))
+	many := n > manyRepeats
+	stage := fmt.Sprintf("repeats, about %.2g events", float64(n)*d.events())
+	if many {
+		n = manyRepeats
 	}
-	made, err := j.repeats(ctx, d, n, 0, "repeats")
+	made, err := j.repeats(ctx, d, n, 0, stage)
+	for more := many; err == nil && more; more = len(made) > n && ending == Reached {
+		n = len(made)
+		made, ending, err = j.goOn(ctx, d, made)
+	}
 	if ctx.Err() != nil && len(made) >= 2 {
 		ending, err = Cancelled, nil
 	}
@@ -74,6 +77,24 @@ func Run(ctx context.Context, p Plan) (*Result, error) {
 		return r, &StuckError{From: j.name(p.From), To: j.name(p.To), Share: d.steps[len(d.steps)-1].share, Runs: n * d.runs[len(d.runs)-1]}
 	}
 	return r, nil
+}
+
+// slack asks for a few more repeats than the spread does, so that one look is mostly enough.
+const slack = 1.05
+
+// goOn makes as many more repeats as those made say that the precision takes. The mean of
+// many repeats and their spread know little of each other, so that the one is not biased
+// by looking at the other; few repeats are never made more.
+func (j *job) goOn(ctx context.Context, d *design, made []*repeat) ([]*repeat, Ending, error) {
+	r := estimate(d, made)
+	if r.Rate == 0 || r.High <= r.Rate*(1+j.plan.Precision) {
+		return made, Reached, nil
+	}
+	n := len(made)
+	between := float64(n) * r.StandardError * r.StandardError / (r.Rate * r.Rate)
+	more, ending := j.afford(d, max(1, repeatsFor(slack*between, j.plan.Precision)-n), 0)
+	added, err := j.repeats(ctx, d, more, uint64(n), "more repeats")
+	return append(made, added...), ending, err
 }
 
 // climber gives a climber on the plan's ladder with the random numbers of a stream.

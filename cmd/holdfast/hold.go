@@ -55,7 +55,7 @@ func effortFlags(f *pflag.FlagSet, o *hold.Options, memory *float64) {
 	positiveFlag(f, memory, "memory", "most GiB that the lattice may take (4 if not given)")
 	positiveFlag(f, &o.Precision, "precision", "relative half-width of the 95 % interval to reach (0.1 if not given)")
 	countFlag(f, &o.Runs, "runs", "runs of each state, each to its first flip, instead of as many as needed")
-	countFlag(f, &o.Events, "events", "most reaction events in all, or steps of Langevin paths\n(6e8 if no limit is given)")
+	countFlag(f, &o.Events, "events", "most reaction events in all, or steps of Langevin paths\n(6e8 if no limit is given; 6e9 with --route staged)")
 	positiveFlag(f, &o.Step, "step", "step of Langevin paths, in the design's unit (0.02 over\nthe fastest rate if not given)")
 	f.StringVar(&o.Along, "along", "", "what the progress of staged runs is measured along: `path`\n(of least action, if not given), line or a species")
 	positiveFlag(f, &o.Until, "until", "longest time that one run lasts, in the design's unit")
