@@ -38,7 +38,7 @@ func sizeNumbers() [][2]string {
 		{"steady", "number of copies from which on all that was evaluated meets it"},
 		{"window_low", "of a constant: lower end of the window of settings that meet it"},
 		{"window_high", "its upper end"},
-		{"found", "mean dwell or chance at the setting, in the unit of the column unit"},
+		{"found", "mean dwell or chance at the setting, in the unit of the column unit; infinite where the state is never left"},
 		{"found_low", "its lower limit"},
 		{"found_high", "its upper limit"},
 	}
@@ -84,7 +84,7 @@ func (p *sizeTable) append(a *answer) error {
 		}
 	}
 	for i, v := range s.numbers() {
-		if math.IsInf(v, 0) && i < len(p.numbers)-1 {
+		if math.IsInf(v, 0) && i < len(p.numbers)-3 { // only what was found may be: the state is never left
 			v = math.NaN()
 		}
 		w.Float(p.numbers[i], v)
@@ -150,4 +150,17 @@ type SizeRow struct {
 	High        hold.Value     `json:"found_high"`
 	Sampled     bool           `json:"sampled"`
 	Evaluations int64          `json:"evaluations"`
+}
+
+// Check gives what was found at the setting as the search itself told it.
+func (r *SizeRow) Check() sizing.Check {
+	nan := hold.Value(math.NaN())
+	c := sizing.Check{
+		State: r.State, Route: r.Route, Found: r.Found, Low: r.Low, High: r.High, Sampled: r.Sampled,
+		Losses: [3]hold.Value{nan, nan, nan}, Error: (r.High - r.Low) / 2,
+	}
+	if r.Unit == sizing.ChanceUnit {
+		c.Losses = [3]hold.Value{1 - r.Found, 1 - r.Low, 1 - r.High}
+	}
+	return c
 }

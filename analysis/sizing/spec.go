@@ -10,6 +10,9 @@ import (
 // Every stands in a specification for each state of the design.
 const Every = "every"
 
+// ChanceUnit is the unit of what is found for a specification that asks for a chance.
+const ChanceUnit = "chance"
+
 // A Spec is one demand on a state: a mean dwell of at least Time, or, where Chance is
 // above 0, at least that chance of holding for Time.
 type Spec struct {
@@ -62,10 +65,10 @@ func (s Spec) String() string {
 }
 
 // FoundUnit is the unit of what is found for the specification: generations, the
-// design's unit of time, or "chance".
+// design's unit of time, or ChanceUnit.
 func (s Spec) FoundUnit() string {
 	if s.Chance > 0 {
-		return "chance"
+		return ChanceUnit
 	}
 	return s.Unit
 }

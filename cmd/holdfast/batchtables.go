@@ -114,10 +114,8 @@ func sizeCells(r *batch.Row) []string {
 	if z == nil || z.Route == "" {
 		return []string{"–", "", "", "", "", "", r.Status}
 	}
-	found := digits(float64(z.Found), 7)
-	if z.Sampled {
-		found = interval(z.Found, z.Low, z.High)
-	}
+	check := z.Check()
+	found := found(&check)
 	if z.Outcome == sizing.NotMet || z.Outcome == sizing.Undecided {
 		return []string{"best " + setting(z.Setting), "", "", z.State, found, z.Unit, string(z.Outcome)}
 	}

@@ -109,12 +109,15 @@ func found(c *sizing.Check) string {
 	return fmt.Sprintf("%s ± %s", digits(float64(c.Found), 7), digits(float64(c.Error), 1))
 }
 
-// foundChance writes a chance, to more digits where it is not sampled.
+// foundChance writes a chance: to seven digits where its bounds agree in all of them, else
+// with its limits.
 func foundChance(c *sizing.Check) string {
-	if c.Sampled || c.Losses[0] < 0.0005 {
+	text := digits(float64(c.Found), 7)
+	near := c.Losses[0] < 0.0005 // so near 1 that its loss is what tells
+	if c.Sampled || near || digits(float64(c.Low), 7) != text || digits(float64(c.High), 7) != text {
 		return chanceInterval(hold.HoldChance{Chance: c.Found, Low: c.Low, High: c.High, Loss: c.Losses})
 	}
-	return digits(float64(c.Found), 7)
+	return text
 }
 
 // sizeUnit names what was found.
