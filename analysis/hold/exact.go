@@ -68,8 +68,12 @@ func (j *job) mostMolecules() int64 {
 	for _, n := range j.network.StartCounts() {
 		most = math.Max(most, float64(n))
 	}
-	return int64(math.Min(math.Max(100*most, leastRunaway), 1e12))
+	return int64(math.Min(math.Max(100*most, leastRunaway), mostRunaway))
 }
 
-// leastRunaway is the smallest count that is called running away.
-const leastRunaway = 100_000
+const (
+	// leastRunaway is the smallest count that is called running away.
+	leastRunaway = 100_000
+	// mostRunaway is the largest: beyond it a count is no longer exact as a float64.
+	mostRunaway = 1 << 53
+)

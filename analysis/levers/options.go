@@ -58,6 +58,9 @@ func (o Options) complete() (Options, error) {
 	if !slices.Contains(Routes(), o.Route) {
 		return o, &hold.OptionError{Name: "route", Value: fmt.Sprintf("%q", o.Route), Allowed: "one of " + strings.Join(Routes(), ", ")}
 	}
+	if o.Step != 0 && o.Route != Auto && o.Route != Differences {
+		return o, &hold.OptionError{Name: "step", Value: fmt.Sprintf("given for the route %s", o.Route), Allowed: "left out there: only the route " + Differences + " turns constants by steps"}
+	}
 	if o.Step == 0 {
 		o.Step = defaultStep
 	}
