@@ -7,7 +7,6 @@ import (
 
 	"holdfast/analysis/action"
 	"holdfast/analysis/dwell"
-	"holdfast/deterministic"
 )
 
 const (
@@ -116,15 +115,16 @@ func (w *weighing) findExponents(ctx context.Context) error {
 	return nil
 }
 
-// bustle is the number of events in a unit of time at the busiest saddle, or, without
-// one, at the busiest state.
+// bustle is the number of events in a unit of time at the busiest saddle or other
+// unstable point (of one species there is no saddle), or, without one, at the busiest state.
 func (w *weighing) bustle() float64 {
 	most := 0.0
-	for i := range w.survey.States {
-		s := &w.survey.States[i]
-		if s.Kind != deterministic.Saddle && len(w.survey.States) > len(w.survey.Stable()) {
-			continue
-		}
+	states := w.survey.States
+	if stable := len(w.survey.Stable()); len(states) > stable {
+		states = states[stable:]
+	}
+	for i := range states {
+		s := &states[i]
 		sum := 0.0
 		for r := range w.network.Reactions {
 			sum += w.network.Reactions[r].Scale * w.network.Flux(r, s.Amounts)
