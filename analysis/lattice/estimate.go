@@ -60,7 +60,7 @@ func (p *Problem) lay(ctx context.Context, b Box) (*laid, error) {
 	if slices.Max(b.High) >= math.MaxInt32 {
 		return nil, p.tooMany(int(min(b.volume(), math.MaxInt64/bytesPerNode/8)), b)
 	}
-	limit := int(min(float64(p.memory())/bytesPerNode, math.MaxInt32-1))
+	limit := int(min(float64(p.memory())/p.leastPerNode(), math.MaxInt32-1))
 	if n := p.fullStates(b); n > 64*float64(limit) {
 		return nil, p.tooMany(int(n/64), b)
 	}
@@ -122,11 +122,17 @@ func (p *Problem) names(which []bool) []string {
 	return out
 }
 
+// leastPerNode is the memory in bytes that a node takes besides the factors, with the vectors
+// of the solution. More states than fit by it alone need not be counted.
+func (p *Problem) leastPerNode() float64 {
+	vectors := 8 + 8*len(p.Cores)
+	return residentShare * float64(bytesPerNode+8*vectors)
+}
+
 func (p *Problem) estimate(l *laid) Estimate {
-	vectors := int64(8 + 8*len(p.Cores))
 	return Estimate{
 		States: l.states(), Nodes: l.nodes(), Box: l.box,
-		Bytes:           residentBase + int64(residentShare*float64(8*(l.numbers+2*l.peak)+int64(l.nodes())*(bytesPerNode+8*vectors))),
+		Bytes:           residentBase + int64(residentShare*float64(8*(l.numbers+2*l.peak))+float64(l.nodes())*p.leastPerNode()),
 		Seconds:         l.work/usualSpeed + float64(l.nodes())*4e-6,
 		Multiplications: l.work,
 		Allowed:         p.memory(),

@@ -30,7 +30,7 @@ func TestRefusals(t *testing.T) {
 	}
 
 	poor := latch
-	poor.MaxMemory = 40 << 20
+	poor.MaxMemory = 60 << 20
 	var large *TooLargeError
 	if err := refusal(t, poor, "allow more memory"); !errors.As(err, &large) || large.Estimate.States < 50000 || large.Estimate.Bytes < poor.MaxMemory {
 		t.Errorf("got %v, want a TooLargeError with the estimate", err)
