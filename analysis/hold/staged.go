@@ -161,6 +161,9 @@ func (r *stagedJob) describe(from, to int, along string, s *staged.Result) {
 	if s.Missed {
 		r.warn("%s: the repeats disagree more than chance (their variance is %.2g times what each expects of itself): there may be a way between the states that this coordinate misses; hold it against another (--along)", pair, s.Disagreement)
 	}
+	if s.Effective < fewFlips {
+		r.warn("%s: as good as %.2g independent flips only: so few know neither the mean nor its interval well; rely on it no further than its order of magnitude, and take another --along or more events", pair, s.Effective)
+	}
 	if s.Emptied > 0 {
 		r.warn("%s: %d of the runs came to a state that no reaction leads out of and that is none of the states: leaving that way is in no rate here; --route runs counts it", pair, s.Emptied)
 	}
@@ -168,6 +171,10 @@ func (r *stagedJob) describe(from, to int, along string, s *staged.Result) {
 		r.warn("%s: the interval reaches %.2g %% from the mean, wider than the %.2g %% asked%s", pair, 100*half, 100*r.options.Precision, advice(s.Ending))
 	}
 }
+
+// fewFlips is the number of independent flips below which an interval on the logarithm
+// stands for little: its own width is then known to no better than a half.
+const fewFlips = 10
 
 func advice(e staged.Ending) string {
 	if e == staged.Spent {
