@@ -24,6 +24,9 @@ func seeds(t *testing.T, usual int) int {
 // seeds 93 or more must hold.
 func TestCopiesIntervalHolds(t *testing.T) {
 	if underRace {
+		t.Skip("left to the plain run")
+	}
+	if underRace {
 		t.Skip("left to the run without the race detector")
 	}
 	n := demo(t, "latch", 12)
@@ -51,6 +54,9 @@ func TestCopiesIntervalHolds(t *testing.T) {
 // exponential numbers at every setting, so that all limits err together, once in twenty
 // seeds: of 600 seeds tried by hand, 565 intervals held.
 func TestConstantIntervalHolds(t *testing.T) {
+	if underRace {
+		t.Skip("left to the plain run")
+	}
 	if underRace {
 		t.Skip("left to the run without the race detector")
 	}
