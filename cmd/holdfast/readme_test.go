@@ -16,6 +16,9 @@ import (
 // console blocks, and holds the output shown against what comes out, but for seconds. With
 // -update-readme it writes the pages anew; read the difference.
 func TestReadme(t *testing.T) {
+	if underRace {
+		t.Skip("left to the plain run")
+	}
 	t.Chdir(filepath.Join("..", ".."))
 	pages, err := filepath.Glob("docs/*.md")
 	if err != nil {
