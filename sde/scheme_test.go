@@ -6,6 +6,7 @@ import (
 
 	"gonum.org/v1/gonum/stat/distuv"
 
+	"holdfast/internal/race"
 	"holdfast/sde"
 )
 
@@ -45,7 +46,7 @@ func moments(x []float64, f func(float64) float64) (mean, variance float64) {
 // race detector.
 func long(t *testing.T) {
 	t.Helper()
-	if sde.UnderRace {
+	if race.Enabled {
 		t.Skip("long under the race detector")
 	}
 }

@@ -9,6 +9,7 @@ import (
 	"sync"
 	"testing"
 
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -235,7 +236,7 @@ func TestSpreadChangesNothing(t *testing.T) {
 // spreads are threads and lanes; those of many threads come first.
 func spreads() [][2]int {
 	all := [][2]int{{7, 8}, {2, 5}, {7, 1}, {1, 1}, {1, 3}, {1, 64}}
-	if UnderRace {
+	if race.Enabled {
 		return all[:2]
 	}
 	return all

@@ -7,6 +7,7 @@ import (
 
 	"gonum.org/v1/gonum/stat/distuv"
 
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 	"holdfast/ssa"
@@ -19,7 +20,7 @@ const alarm = 1e-6
 // race detector.
 func long(t *testing.T) {
 	t.Helper()
-	if ssa.UnderRace {
+	if race.Enabled {
 		t.Skip("long under the race detector")
 	}
 }

@@ -6,6 +6,7 @@ import (
 	"slices"
 	"testing"
 
+	"holdfast/internal/race"
 	"holdfast/internal/variation"
 	"holdfast/model"
 	"holdfast/ssa"
@@ -117,7 +118,7 @@ func series(s float64, f func(k float64) float64) (sum float64) {
 // process's by less than 0.2 %, which is checked too; held for a whole memory it does so
 // by far more than the sampling error, and has to be the scheme's.
 func TestModulatedBirthRate(t *testing.T) {
-	if ssa.UnderRace {
+	if race.Enabled {
 		t.Skip("many events")
 	}
 	long(t)

@@ -8,6 +8,8 @@ import (
 	"path/filepath"
 	"testing"
 	"time"
+
+	"holdfast/internal/race"
 )
 
 // A batch that is killed a hundred times at random moments, and begun anew each time,
@@ -16,7 +18,7 @@ import (
 // ended, another is begun.
 func TestKills(t *testing.T) {
 	kills := 100
-	if underRace {
+	if race.Enabled {
 		kills = 8
 	}
 	want := whole(t)

@@ -10,6 +10,7 @@ import (
 	"holdfast/analysis/action"
 	"holdfast/analysis/batch"
 	"holdfast/deterministic"
+	"holdfast/internal/race"
 )
 
 // The logarithm of the mean dwell of a batch over copies Ω grows as Ω S, where S is the
@@ -18,7 +19,7 @@ import (
 // falls off in powers of 1/Ω, so S is the second coefficient of ln τ = a + S Ω + b/Ω through
 // the three largest copy numbers; its error is what a fourth one with the next power changes.
 func TestSlopeIsTheAction(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	draft, err := latch()

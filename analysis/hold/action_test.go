@@ -10,6 +10,7 @@ import (
 
 	"holdfast/analysis/hold"
 	"holdfast/analysis/records"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -19,7 +20,7 @@ import (
 // lattice; those at 200 are in the README's table). The intervals are to be of
 // use: within a factor of 1.1.
 func TestActionCarriesOn(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("six lattices")
 	}
 	for copies, want := range map[float64]map[string]float64{
@@ -117,7 +118,7 @@ func TestActionRefuses(t *testing.T) {
 
 // TestActionStops: a job that is stopped says so.
 func TestActionStops(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("a lattice")
 	}
 	ctx, cancel := context.WithCancel(context.Background())

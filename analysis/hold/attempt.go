@@ -10,11 +10,6 @@ import (
 	"holdfast/analysis/records"
 )
 
-// actionRoute is the route of least action.
-const actionRoute = "action"
-
-func hasRoute(route string) bool { return slices.Contains(Routes(), route) }
-
 // errNoAdvance tells that staged runs did not get to some state.
 var errNoAdvance = errors.New("its runs did not get on to some state")
 

@@ -6,6 +6,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/internal/race"
 	"holdfast/model"
 )
 
@@ -52,7 +53,7 @@ mass_action = "0.3"
 // of the ratio over the relative standard error, Student's t with nine degrees of freedom
 // or more, within ±10.7 (a false alarm in a million or less).
 func TestStagedRunsCountBothWays(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	draft, err := model.Parse("coupled.toml", []byte(coupled))

@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 )
 
@@ -15,7 +16,7 @@ import (
 // statistic is the logarithm of rates over its standard error 1/√flips, within ±4.9 (a
 // false alarm in a million).
 func TestDimerSwitchByExactRuns(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	rate := zoo.DimerSwitchFlipRate()

@@ -11,6 +11,7 @@ import (
 
 	"holdfast/analysis/hold"
 	"holdfast/deterministic"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -82,7 +83,7 @@ func TestSchloglPassages(t *testing.T) {
 }
 
 func TestSchloglRuns(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	n := declare(zoo.Schlogl(), counts("low", 100, 100), counts("high", 235, math.MaxInt64))
@@ -97,7 +98,7 @@ func TestSchloglRuns(t *testing.T) {
 // 95 % intervals hold the truth (calibration). With a coverage of 95 % the count is
 // binomial with standard deviation 6.9, so that the band of ±20 is 2.9 of them.
 func TestCoverageOnTwoStateChain(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	const repeats, forth, back = 1000, 0.02, 0.05
@@ -126,7 +127,7 @@ func TestCoverageOnTwoStateChain(t *testing.T) {
 // The lattice and the runs share start and target: the means agree, at a copy
 // number so low that every difference of definition would show.
 func TestRoutesAgree(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	for _, name := range []string{"latch", "pair", "leakless"} {
@@ -160,7 +161,7 @@ func TestThreadsAndLanesChangeNothing(t *testing.T) {
 }
 
 func TestPrecisionIsReached(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	r := run(t, demo(t, "pair", 12), hold.Options{Seed: 2, Route: hold.Runs, Precision: 0.05})
@@ -276,7 +277,7 @@ func TestReportIsPlainJSON(t *testing.T) {
 // (calibration). The dwells of the two states are independent, so that each copy
 // number gives two counts of 200.
 func TestRunsCoverTheLattice(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	const seeds = 200

@@ -10,6 +10,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 	"holdfast/sde"
@@ -45,7 +46,7 @@ func diffusionPassage(n *model.Network, a, b float64) float64 {
 // mean time of the diffusion by quadrature (computed here), n = 400 flips, within 4.9 standard
 // errors (a false alarm in a million) and what halving the step moves; the exact chain's time differs.
 func TestLangevinPassage(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	n := declare(zoo.Schlogl(), counts("low", 100, 100), counts("high", 400, math.MaxInt64))
@@ -171,7 +172,7 @@ func TestLangevinCautions(t *testing.T) {
 
 // The verdict of the second route says how far off the approximation is, with an interval.
 func TestLangevinVerdict(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	r := run(t, demo(t, "latch", 15), hold.Options{Seed: 4, Route: hold.Lattice, Second: hold.Langevin, Precision: 0.15})

@@ -5,13 +5,14 @@ import (
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/internal/race"
 	"holdfast/model"
 )
 
 // A gene without leak has one species and no saddle, but an unstable point: what staged
 // runs would take is weighed there too, and at a million copies is beyond their budget.
 func TestAutoWeighsStagedRunsOfOneSpecies(t *testing.T) {
-	if testing.Short() || underRace {
+	if testing.Short() || race.Enabled {
 		t.Skip("left to the plain run")
 	}
 	draft, err := model.Parse("gene.toml", []byte(`

@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 )
 
@@ -15,7 +16,7 @@ import (
 // The statistic is the logarithm of the rate over its standard error, Student's t
 // with nine degrees of freedom or more, within ±10.7 (a false alarm in a million or less).
 func TestDimerSwitchByStagedRuns(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	r := run(t, zoo.DimerSwitch(), hold.Options{Seed: 1, Route: hold.Staged, Precision: 0.3})

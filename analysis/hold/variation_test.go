@@ -9,6 +9,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/hold"
+	"holdfast/internal/race"
 	"holdfast/model"
 )
 
@@ -63,7 +64,7 @@ func mixed(t testing.TB, network *model.Network, seed uint64, runs int64) *hold.
 // jobs: a 95 % interval holds its truth in 475 ± 4.9, and fewer than 448 are seen by
 // chance once in 10⁷ (5.5 standard errors); more than 500 are not.
 func TestMixedCoverage(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("a calibration")
 	}
 	const k, s, jobs = 0.5, 0.4, 500

@@ -141,11 +141,11 @@ func (w *weighing) rare(beside string) []candidate {
 		return nil
 	}
 	staged := candidate{Staged, w.rarity(), w.staged, beside}
-	if w.problem != nil || w.exponent < leastRare || !hasRoute(actionRoute) {
+	if w.problem != nil || w.exponent < leastRare {
 		return []candidate{staged}
 	}
 	reason := fmt.Sprintf("paths of least action and a prefactor from fewer copies, as flips are very rare: exponents up to %.3g", w.exponent)
-	action := candidate{actionRoute, reason, actionSeconds, fmt.Sprintf("staged runs would take about %.2g s; %s", w.staged, beside)}
+	action := candidate{Action, reason, actionSeconds, fmt.Sprintf("staged runs would take about %.2g s; %s", w.staged, beside)}
 	if w.staged > float64(w.options.Events)*eventSeconds && w.options.Events > 0 {
 		return []candidate{action, staged}
 	}

@@ -15,6 +15,7 @@ import (
 	"holdfast/analysis/kramers"
 	"holdfast/deterministic"
 	"holdfast/deterministic/branch"
+	"holdfast/internal/race"
 	"holdfast/model"
 	"holdfast/sde"
 )
@@ -198,7 +199,7 @@ func (f *foldTable) check(t *testing.T, lines []string) {
 			t.Errorf("%s\ndoes not hold %s", line, f.estimates(t, k))
 		}
 	}
-	if underRace {
+	if race.Enabled {
 		return
 	}
 	last := len(f.rows) - 1

@@ -13,6 +13,7 @@ import (
 	"holdfast/analysis/action"
 	"holdfast/analysis/hold"
 	"holdfast/analysis/lattice"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -77,7 +78,7 @@ func TestActionOfOneSpecies(t *testing.T) {
 // S off by δ would make it grow by δ times the copies instead. In bursts, whose mean is
 // made of two constants.
 func TestPrefactorSettles(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("takes a minute under the race detector")
 	}
 	n := zoo.BurstLatch(100)
@@ -106,7 +107,7 @@ func TestPrefactorSettles(t *testing.T) {
 // In two species: the slopes by action, prefactor's part and all, are those of the lattice
 // within their error.
 func TestActionAgrees(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("takes a minute under the race detector")
 	}
 	for name, copies := range map[string]float64{"latch": 18, "leakless": 20, "pair": 26} {
@@ -225,7 +226,7 @@ mass_action = "dilution"
 // unit of time, so that its slopes in all rates add up to 0; and none of amount, so that
 // those in rate and half do to that in copies.
 func TestActionBesideDifferences(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("takes a minute under the race detector")
 	}
 	rep := run(t, transcribedPair(t, 12), Options{Hold: hold.Options{Route: hold.Runs, Runs: 20, Seed: 1}})
@@ -251,7 +252,7 @@ func TestActionBesideDifferences(t *testing.T) {
 
 // What each route refuses, and what stands in its place.
 func TestRoutesRefuse(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("takes a minute under the race detector")
 	}
 	n := design(t, "operator", 0, nil)

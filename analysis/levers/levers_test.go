@@ -11,6 +11,7 @@ import (
 	"holdfast/analysis/hold"
 	"holdfast/analysis/records"
 	"holdfast/deterministic"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -156,7 +157,7 @@ func TestUnreadConstant(t *testing.T) {
 // the half-widths here): above 45 with 8 degrees of freedom once in 3e6. On 1,000 other seeds the sum was 7.57 in mean
 // and 31.8 at most.
 func TestDifferencesOfRuns(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("takes a minute under the race detector")
 	}
 	n := design(t, "latch", 8, nil)
@@ -182,7 +183,7 @@ func TestDifferencesOfRuns(t *testing.T) {
 // Differences of lattice hold times are extrapolated, and their intervals cover the
 // lattice's own slopes.
 func TestDifferencesOfLattice(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("takes a minute under the race detector")
 	}
 	n := design(t, "pair", 6, nil)

@@ -8,6 +8,7 @@ import (
 
 	"holdfast/analysis/hold"
 	"holdfast/analysis/sizing"
+	"holdfast/internal/race"
 )
 
 // seeds is how many seeds a calibration takes; HOLDFAST_SEEDS makes more by hand.
@@ -23,10 +24,10 @@ func seeds(t *testing.T, usual int) int {
 // the 95 % interval at the true answer, or at its neighbour, misses on one side: of 100
 // seeds 93 or more must hold.
 func TestCopiesIntervalHolds(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the plain run")
 	}
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	n := demo(t, "latch", 12)
@@ -54,10 +55,10 @@ func TestCopiesIntervalHolds(t *testing.T) {
 // exponential numbers at every setting, so that all limits err together, once in twenty
 // seeds: of 600 seeds tried by hand, 565 intervals held.
 func TestConstantIntervalHolds(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the plain run")
 	}
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the run without the race detector")
 	}
 	n := twoStates(0.1, 0.05)

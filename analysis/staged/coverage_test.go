@@ -5,6 +5,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/staged"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 )
 
@@ -35,7 +36,7 @@ const firstSeed = 1
 // million minutes (closed double sum). The limits are the task's own: at 95 % a count of
 // 1,000 lies within ±20 but for 0.3 %, so the seeds are fixed.
 func TestIntervalsHoldTheTruth(t *testing.T) {
-	if testing.Short() || underRace {
+	if testing.Short() || race.Enabled {
 		t.Skip("left to the plain run")
 	}
 	for _, c := range []struct {

@@ -6,6 +6,7 @@ import (
 	"testing"
 
 	"holdfast/analysis/staged"
+	"holdfast/internal/race"
 	"holdfast/internal/zoo"
 	"holdfast/model"
 )
@@ -15,7 +16,7 @@ import (
 // Schlögl in a larger volume. The statistic is the distance of the logarithm of the rate
 // in its own standard errors, Student's t; a false alarm in a million for each.
 func TestChainsUpTo1e21(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the plain run")
 	}
 	for _, c := range []struct {

@@ -10,13 +10,15 @@ import (
 	"regexp"
 	"strings"
 	"testing"
+
+	"holdfast/internal/race"
 )
 
 // TestReadme runs every command that the README and the pages in docs show, in their
 // console blocks, and holds the output shown against what comes out, but for seconds. With
 // -update-readme it writes the pages anew; read the difference.
 func TestReadme(t *testing.T) {
-	if underRace {
+	if race.Enabled {
 		t.Skip("left to the plain run")
 	}
 	t.Chdir(filepath.Join("..", ".."))

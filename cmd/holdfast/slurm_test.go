@@ -7,6 +7,8 @@ import (
 	"os/exec"
 	"path/filepath"
 	"testing"
+
+	"holdfast/internal/race"
 )
 
 // unavailable is the exit status of nodes.sh where there can be no Slurm.
@@ -17,7 +19,7 @@ const unavailable = 69
 // Slurm where it is missing and may be installed; in CI it must run, elsewhere it is
 // skipped with what was missing.
 func TestSlurm(t *testing.T) {
-	if testing.Short() || underRace {
+	if testing.Short() || race.Enabled {
 		t.Skip("a cluster takes a minute; left to the plain run")
 	}
 	scripts, err := filepath.Abs(filepath.Join("testdata", "slurm"))

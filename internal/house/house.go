@@ -25,6 +25,7 @@ func Layers() []Layer {
 		{"model", nil},
 		{"internal/stream", nil},
 		{"internal/variation", []string{"model", "internal/stream"}},
+		{"internal/race", nil},
 		{"internal/version", nil},
 		{"internal/zoo", []string{"model"}},
 		{"internal/house", nil},

@@ -1,6 +1,0 @@
-//go:build !race
-
-package kramers_test
-
-// underRace tells that the race detector is on.
-const underRace = false

@@ -1,6 +1,0 @@
-//go:build !race
-
-package levers
-
-// underRace tells that the race detector is on.
-const underRace = false
